@@ -1,0 +1,1 @@
+//! Text to theories and terms, and back.

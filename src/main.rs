@@ -1,0 +1,3 @@
+//! The `equable` program.
+
+fn main() {}

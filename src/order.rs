@@ -1,0 +1,1 @@
+//! Reduction orders and the choice of their parameters.

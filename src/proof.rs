@@ -1,0 +1,1 @@
+//! Proof objects and the independent checkers.

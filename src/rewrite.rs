@@ -1,0 +1,1 @@
+//! The table of rewrites, the index of rules, and ordered rewriting.

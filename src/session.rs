@@ -1,0 +1,1 @@
+//! One open theory with all that is known about it.

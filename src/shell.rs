@@ -1,0 +1,1 @@
+//! The line editor, the commands and the batch commands.

@@ -1,0 +1,1 @@
+//! Symbols, hash-consed terms, substitutions, positions, matching and unification.

@@ -1,0 +1,1 @@
+//! Signatures with names, laws, definitions and claims.
