@@ -122,6 +122,15 @@ impl Order {
         self.variable_weight
     }
 
+    /// A number for a constant that is larger for a greater constant, over all constants.
+    pub fn constant_key(&self, constant: Symbol) -> u128 {
+        let weight = match self.kind {
+            OrderKind::Kbo => self.weights[constant.index()],
+            OrderKind::Lpo => 0,
+        };
+        u128::from(weight) << 64 | u128::from(self.ranks[constant.index()])
+    }
+
     /// Is the first symbol above the second in the precedence?
     pub fn above(&self, f: Symbol, g: Symbol) -> bool {
         self.ranks[f.index()] > self.ranks[g.index()]

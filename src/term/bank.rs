@@ -48,6 +48,11 @@ pub struct Mark {
 }
 
 impl Mark {
+    /// How many terms there were when the mark was taken.
+    pub fn terms(self) -> usize {
+        self.nodes as usize
+    }
+
     /// Did this term exist when the mark was taken?
     pub fn has(self, term: TermId) -> bool {
         term.0 < self.nodes
