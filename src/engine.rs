@@ -1,1 +1,23 @@
-//! The saturation loop.
+//! The saturation loop: unfailing completion (Bachmair, Dershowitz & Plaisted 1989) on a
+//! rewriting system.
+//!
+//! An [`Engine`] is given laws and makes rules of them and of their consequences until the rules
+//! are complete on ground terms, or until it is stopped; it can be run again at any time. Every
+//! rule carries the record of its derivation. This floor knows no names and no text.
+
+mod ac;
+mod instance;
+mod occurrences;
+mod overlap;
+mod pair;
+mod record;
+mod reduce;
+mod replay;
+mod run;
+#[cfg(test)]
+mod tests;
+mod waiting;
+
+pub use record::{LawId, Origin, Record, RecordStep};
+pub use replay::{Peak, ReplayError};
+pub use run::{Counts, Engine, Outcome};

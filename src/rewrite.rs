@@ -6,6 +6,7 @@
 //! there are: that is the engine's business.
 
 mod canonical;
+mod canonical_steps;
 mod explain;
 mod ground;
 mod index;

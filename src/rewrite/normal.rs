@@ -1,7 +1,7 @@
 //! Normal forms: from the table where they are known, else by rewriting from the inside out.
 
 use super::{Reason, RuleId, System, Use};
-use crate::term::TermId;
+use crate::term::{Substitution, TermId};
 use std::sync::Arc;
 use std::sync::atomic::{AtomicBool, Ordering};
 use std::time::Instant;
@@ -231,5 +231,25 @@ impl System {
             }
         }
         None
+    }
+
+    /// Does the test hold for any active rule whose looked-for side matches the term, with the
+    /// substitution that makes it match?
+    pub fn any_match(
+        &mut self,
+        term: TermId,
+        mut test: impl FnMut(&System, Use, &Substitution) -> bool,
+    ) -> bool {
+        let mut matcher = std::mem::take(&mut self.matcher);
+        matcher.start(term);
+        let mut found = false;
+        while let Some(by) = matcher.next(&self.index, &self.bank) {
+            if test(self, by, &matcher.substitution) {
+                found = true;
+                break;
+            }
+        }
+        self.matcher = matcher;
+        found
     }
 }

@@ -261,7 +261,7 @@ impl System {
     }
 
     /// The term that an open variable of this sort becomes.
-    pub(super) fn least(&self, sort: Sort) -> Option<TermId> {
+    pub fn least(&self, sort: Sort) -> Option<TermId> {
         let of = |least: &[TermId]| {
             let term = least.get(usize::from(sort.0)).copied();
             term.filter(|term| term.is_some())
@@ -293,6 +293,22 @@ impl System {
     pub fn rollback(&mut self, mark: Mark) {
         self.table.rollback();
         self.bank.rollback(mark);
+    }
+
+    /// Does a rule that leaves variables open decrease this term, which it matches?
+    pub fn reduces_open(&mut self, term: TermId, by: Use) -> bool {
+        let mark = self.bank.mark();
+        self.matcher.start(term);
+        let mut reduces = false;
+        while let Some(hit) = self.matcher.next(&self.index, &self.bank) {
+            if hit == by {
+                let next = self.replacement(by);
+                reduces = next.is_some_and(|next| self.order.greater(&self.bank, term, next));
+                break;
+            }
+        }
+        self.bank.rollback(mark);
+        reduces
     }
 
     /// The instance of a rule's replacing side under the last hit's substitution.

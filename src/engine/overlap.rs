@@ -1,0 +1,284 @@
+//! Overlaps of a new rule with the active ones.
+
+use super::occurrences::{path, subterms};
+use super::run::Engine;
+use super::waiting::{INNER_BACKWARD, OUTER_BACKWARD, OUTER_IS_PARTNER, Recipe};
+use crate::rewrite::{Limits, RuleId, Stopped, Use};
+use crate::term::{Scoped, Side, TermId};
+
+/// The overlaps of one rule, in the making. Interrupted, it goes on where it was.
+pub(super) struct Forming {
+    rule: RuleId,
+    candidates: Vec<Candidate>,
+    next: usize,
+    pairs: Vec<Recipe>,
+}
+
+#[derive(Clone, Copy)]
+struct Candidate {
+    outer: Use,
+    at: u16,
+    inner: Use,
+}
+
+/// Priority of a pair: the larger side counts four times (measured against the sum of both, which
+/// solved fewer of the harder problems).
+pub(super) fn priority(large: u32, small: u32) -> u32 {
+    let (large, small) = (large.max(small), large.min(small));
+    large.saturating_mul(4).saturating_add(small)
+}
+
+impl Engine {
+    /// Lists where a new active rule may overlap with active rules, itself included.
+    pub(super) fn start_forming(&mut self, rule: RuleId) {
+        let mut candidates = Vec::new();
+        let sides = if self.system.rule(rule).oriented {
+            1
+        } else {
+            2
+        };
+        for backward in [false, true].into_iter().take(sides) {
+            let own = Use { rule, backward };
+            let (side, _) = self.system.rule(rule).sides(backward);
+            self.as_inner(own, side, &mut candidates);
+            self.as_outer(own, side, &mut candidates);
+        }
+        self.forming = Some(Forming {
+            rule,
+            candidates,
+            next: 0,
+            pairs: Vec::new(),
+        });
+    }
+
+    fn as_inner(&mut self, inner: Use, side: TermId, candidates: &mut Vec<Candidate>) {
+        let system = &self.system;
+        let mut offer = |by: Use, at: u16| {
+            if let Some(rule) = system.current(by.rule) {
+                candidates.push(Candidate {
+                    outer: Use { rule, ..by },
+                    at,
+                    inner,
+                });
+            }
+        };
+        match system.bank.as_symbol(side) {
+            Some(symbol) => {
+                self.occurrences.clean(system, symbol);
+                self.occurrences
+                    .of(symbol)
+                    .iter()
+                    .for_each(|o| offer(o.by, o.at));
+            }
+            None => {
+                let sort = system.bank.sort(side);
+                let same = self
+                    .occurrences
+                    .all()
+                    .filter(|o| system.bank.sort(o.term) == sort);
+                same.for_each(|o| offer(o.by, o.at));
+            }
+        }
+    }
+
+    /// The rule itself as inner rule was met by [`Engine::as_inner`] already.
+    fn as_outer(&self, outer: Use, side: TermId, candidates: &mut Vec<Candidate>) {
+        let system = &self.system;
+        for (at, term) in subterms(system, side) {
+            let mut offer = |by: Use| {
+                if let Some(rule) = system.current(by.rule)
+                    && rule != outer.rule
+                {
+                    candidates.push(Candidate {
+                        outer,
+                        at,
+                        inner: Use { rule, ..by },
+                    });
+                }
+            };
+            let symbol = system.bank.as_symbol(term).expect("no variable");
+            // Root against root is symmetric, so that one of the two ways is enough.
+            let roots = self
+                .occurrences
+                .of(symbol)
+                .iter()
+                .filter(|o| o.at == 0 && at != 0);
+            roots.for_each(|o| offer(o.by));
+            self.occurrences
+                .variables(system.bank.sort(term))
+                .for_each(offer);
+        }
+    }
+
+    /// Makes, simplifies and weighs the overlaps that were listed; those that do not join wait.
+    pub(super) fn continue_forming(&mut self, limits: &mut Limits) -> Result<(), Stopped> {
+        let Some(mut forming) = self.forming.take() else {
+            return Ok(());
+        };
+        while let Some(&candidate) = forming.candidates.get(forming.next) {
+            match self.form(forming.rule, candidate, limits) {
+                Ok(recipe) => forming.pairs.extend(recipe),
+                Err(stopped) => {
+                    self.forming = Some(forming);
+                    return Err(stopped);
+                }
+            }
+            forming.next += 1;
+        }
+        self.waiting.push_batch(forming.rule, forming.pairs);
+        Ok(())
+    }
+
+    fn form(
+        &mut self,
+        own: RuleId,
+        candidate: Candidate,
+        limits: &mut Limits,
+    ) -> Result<Option<Recipe>, Stopped> {
+        limits.poll(self.system.bank.len())?;
+        let Candidate { outer, at, inner } = candidate;
+        if !self.unifies(outer, at, inner) {
+            return Ok(None);
+        }
+        let mark = self.system.mark();
+        self.counts.formed += 1;
+        let pair = self.build(outer, at, inner);
+        let weight = match pair {
+            Some((left, right)) => self.weigh(left, right, limits),
+            None => Ok(None),
+        };
+        self.system.rollback(mark);
+        let Some(priority) = weight? else {
+            return Ok(None);
+        };
+        let own_is_inner = inner.rule == own;
+        let partner = if own_is_inner { outer.rule } else { inner.rule };
+        let flag = |on: bool, bit: u16| if on { bit } else { 0 };
+        let flags = flag(own_is_inner && partner != own, OUTER_IS_PARTNER)
+            | flag(outer.backward, OUTER_BACKWARD)
+            | flag(inner.backward, INNER_BACKWARD);
+        Ok(Some(Recipe {
+            priority,
+            partner: partner.0,
+            at,
+            flags,
+        }))
+    }
+
+    /// The priority of a pair that does not join.
+    fn weigh(
+        &mut self,
+        left: TermId,
+        right: TermId,
+        limits: &mut Limits,
+    ) -> Result<Option<u32>, Stopped> {
+        if left == right {
+            return Ok(None);
+        }
+        let left = self.system.normal_form(left, limits)?;
+        let right = self.system.normal_form(right, limits)?;
+        if left == right || self.is_instance(left, right) || self.joins_by_ac(left, right) {
+            return Ok(None);
+        }
+        Ok(Some(priority(
+            self.system.bank.size(left),
+            self.system.bank.size(right),
+        )))
+    }
+
+    /// Unifies the inner rule's side with the place in the outer rule's side.
+    pub(super) fn unifies(&mut self, outer: Use, at: u16, inner: Use) -> bool {
+        let (side, _) = self.system.rule(outer.rule).sides(outer.backward);
+        let (inner_side, _) = self.system.rule(inner.rule).sides(inner.backward);
+        // A rule at its own root is trivial, unless it leaves variables open.
+        if outer == inner && at == 0 && !self.system.rule(outer.rule).has_extra(outer.backward) {
+            return false;
+        }
+        let mut here = side;
+        for &step in &path(&self.system, side, at) {
+            here = self.system.bank.arguments(here)[step as usize];
+        }
+        self.unifier.reset();
+        let place = Scoped {
+            term: here,
+            side: Side::Left,
+        };
+        let looked_for = Scoped {
+            term: inner_side,
+            side: Side::Right,
+        };
+        self.unifier.unify(&self.system.bank, place, looked_for)
+    }
+
+    /// The critical pair of an overlap that unifies: what the inner rule makes of the peak, and
+    /// what the outer rule makes of it. Nothing if one of them cannot decrease there.
+    pub(super) fn build(&mut self, outer: Use, at: u16, inner: Use) -> Option<(TermId, TermId)> {
+        let (side, outer_right) = self.system.rule(outer.rule).sides(outer.backward);
+        let (inner_left, inner_right) = self.system.rule(inner.rule).sides(inner.backward);
+        let outer_left = Scoped {
+            term: side,
+            side: Side::Left,
+        };
+        let outer_right = Scoped {
+            term: outer_right,
+            side: Side::Left,
+        };
+        let inner_left = Scoped {
+            term: inner_left,
+            side: Side::Right,
+        };
+        let inner_right = Scoped {
+            term: inner_right,
+            side: Side::Right,
+        };
+        let places = path(&self.system, side, at);
+        let made = self.unifier.build(&mut self.system.bank, inner_right);
+        if !self.system.rule(inner.rule).oriented {
+            let from = self.unifier.build(&mut self.system.bank, inner_left);
+            if made == from || self.system.order.greater(&self.system.bank, made, from) {
+                return None;
+            }
+        }
+        let right = self.unifier.build(&mut self.system.bank, outer_right);
+        if !self.system.rule(outer.rule).oriented {
+            let from = self.unifier.build(&mut self.system.bank, outer_left);
+            if right == from || self.system.order.greater(&self.system.bank, right, from) {
+                return None;
+            }
+        }
+        Some((self.build_around(side, &places, made), right))
+    }
+
+    /// The outer rule's side under the unifier, with what the inner rule made at a place.
+    fn build_around(&mut self, side: TermId, places: &[u32], made: TermId) -> TermId {
+        let bank = &mut self.system.bank;
+        let mut spine = Vec::with_capacity(places.len());
+        let mut here = side;
+        for &step in places {
+            spine.push(here);
+            here = bank.arguments(here)[step as usize];
+        }
+        let mut made = made;
+        let mut arguments = Vec::new();
+        for (&above, &step) in spine.iter().zip(places).rev() {
+            arguments.clear();
+            for place in 0..bank.arguments(above).len() {
+                let term = bank.arguments(above)[place];
+                arguments.push(if place == step as usize {
+                    made
+                } else {
+                    self.unifier.build(
+                        bank,
+                        Scoped {
+                            term,
+                            side: Side::Left,
+                        },
+                    )
+                });
+            }
+            let symbol = bank.as_symbol(above).expect("it has arguments");
+            made = bank.apply(symbol, &arguments);
+        }
+        made
+    }
+}

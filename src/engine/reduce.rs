@@ -1,0 +1,158 @@
+//! Simplifying the active rules by a new one.
+
+use super::record::{Origin, Record};
+use super::run::Engine;
+use crate::rewrite::{Limits, RuleId, Stopped, Use};
+use crate::term::{Substitution, TermId, instantiate, match_term};
+use rustc_hash::FxHashSet;
+
+impl Engine {
+    /// Retires the active rules that the new one makes redundant or whose left side it reduces;
+    /// notes those whose right side it reduces.
+    pub(super) fn reduce_others(&mut self, new: RuleId) {
+        let mut retired = FxHashSet::default();
+        let mut stale = FxHashSet::default();
+        let sides = if self.system.rule(new).oriented { 1 } else { 2 };
+        for backward in [false, true].into_iter().take(sides) {
+            let by = Use {
+                rule: new,
+                backward,
+            };
+            let (pattern, _) = self.system.rule(new).sides(backward);
+            for (id, in_left) in self.reducible(by, pattern) {
+                if in_left {
+                    retired.insert(id);
+                } else {
+                    stale.insert(id);
+                }
+            }
+        }
+        let mut retired: Vec<RuleId> = retired.into_iter().collect();
+        retired.sort_unstable();
+        for &id in &retired {
+            self.retire(id);
+            self.waiting.push_whole(id, self.priority_of(id));
+        }
+        let mut stale: Vec<RuleId> = stale.into_iter().filter(|s| !retired.contains(s)).collect();
+        stale.sort_unstable();
+        self.stale.extend(stale);
+        let rule = self.system.rule(new);
+        let (left, right) = (rule.left, rule.right);
+        let itself = Use {
+            rule: new,
+            backward: false,
+        };
+        if rule.oriented && self.reduces(itself, left, right) {
+            self.stale.push(new);
+        }
+    }
+
+    /// Takes a rule out of use, with its waiting overlaps.
+    pub(super) fn retire(&mut self, id: RuleId) {
+        self.unoriented -= usize::from(!self.system.rule(id).oriented);
+        self.system.retire(id);
+        self.counts.orphans += self.waiting.drop_batch(id) as u64;
+        self.counts.retired += 1;
+    }
+
+    /// The active rules, other than the new one, that it reduces, and whether in the side whose
+    /// change makes the overlaps of the rule void.
+    fn reducible(&mut self, by: Use, pattern: TermId) -> Vec<(RuleId, bool)> {
+        let mut found = Vec::new();
+        let ids: Vec<RuleId> = self.active_rules().filter(|id| *id != by.rule).collect();
+        for id in ids {
+            let rule = self.system.rule(id);
+            let (left, right, oriented) = (rule.left, rule.right, rule.oriented);
+            if self.reduces(by, pattern, left) || !oriented && self.reduces(by, pattern, right) {
+                found.push((id, true));
+            } else if oriented && self.reduces(by, pattern, right) {
+                found.push((id, false));
+            } else if !oriented && self.subsumes(by, left, right) {
+                found.push((id, true));
+            }
+        }
+        found
+    }
+
+    /// Does the new rule rewrite some subterm of the term?
+    fn reduces(&mut self, by: Use, pattern: TermId, term: TermId) -> bool {
+        let bank = &self.system.bank;
+        if bank.size(term) < bank.size(pattern) {
+            return false;
+        }
+        let mut seen = FxHashSet::default();
+        let mut stack = vec![term];
+        let mut substitution = Substitution::default();
+        while let Some(term) = stack.pop() {
+            let bank = &self.system.bank;
+            if bank.size(term) < bank.size(pattern) || !seen.insert(term) {
+                continue;
+            }
+            stack.extend(bank.arguments(term));
+            if bank.as_symbol(term).is_none() || bank.head(term) != bank.head(pattern) {
+                if bank.as_variable(pattern).is_none() || bank.as_symbol(term).is_none() {
+                    continue;
+                }
+            }
+            substitution.reset(0);
+            if match_term(bank, pattern, term, &mut substitution)
+                && self.decreases(by, term, &mut substitution)
+            {
+                return true;
+            }
+        }
+        false
+    }
+
+    fn decreases(&mut self, by: Use, term: TermId, substitution: &mut Substitution) -> bool {
+        let rule = self.system.rule(by.rule);
+        if rule.oriented {
+            return true;
+        }
+        let (_, to) = rule.sides(by.backward);
+        if rule.has_extra(by.backward) {
+            // Whether the open variables have a least value is the rewriter's business: a rule
+            // that is retired without need comes back unchanged.
+            return self.system.reduces_open(term, by);
+        }
+        let mark = self.system.bank.mark();
+        let next = instantiate(&mut self.system.bank, to, substitution);
+        let less = self.system.order.greater(&self.system.bank, term, next);
+        self.system.bank.rollback(mark);
+        less
+    }
+
+    /// Is the equation an instance of the new one?
+    fn subsumes(&self, by: Use, left: TermId, right: TermId) -> bool {
+        let (from, to) = self.system.rule(by.rule).sides(by.backward);
+        let bank = &self.system.bank;
+        let mut substitution = Substitution::default();
+        match_term(bank, from, left, &mut substitution)
+            && match_term(bank, to, right, &mut substitution)
+    }
+
+    /// Brings the right sides that a newer rule reduces to normal form.
+    pub(super) fn simplify_stale(&mut self, limits: &mut Limits) -> Result<(), Stopped> {
+        while let Some(&id) = self.stale.last() {
+            if self.system.current(id) == Some(id) {
+                let right = self.system.rule(id).right;
+                let normal = self.system.normal_form(right, limits)?;
+                if normal != right {
+                    let record = Record {
+                        origin: Origin::Rule(id),
+                        left: Vec::new(),
+                        right: self.steps(right, normal),
+                        swapped: false,
+                    };
+                    let by = self.system.replace(id, normal);
+                    self.records.push(record);
+                    self.waiting.hand_over(id, by);
+                    self.counts.simplified += 1;
+                    self.notice_ac(by);
+                }
+            }
+            self.stale.pop();
+        }
+        Ok(())
+    }
+}
