@@ -14,3 +14,6 @@ mod setting;
 pub use assumption::VariableOrder;
 pub use resolved::{Comparison, Order, OrderProblem};
 pub use setting::{OrderKind, OrderSetting};
+
+#[cfg(test)]
+mod tests;
