@@ -6,11 +6,20 @@
 //! polynomially many steps in the number of distinct subterms.
 
 mod assumption;
+mod candidates;
 mod kbo;
 mod lpo;
 mod resolved;
+mod search;
 mod setting;
+mod shape;
+mod weighing;
 
 pub use assumption::VariableOrder;
+pub use candidates::{Candidate, candidates, misdirected, search};
 pub use resolved::{Comparison, Order, OrderProblem};
 pub use setting::{OrderKind, OrderSetting};
+pub use shape::Law;
+
+#[cfg(test)]
+mod tests;

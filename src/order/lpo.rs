@@ -63,7 +63,7 @@ pub(super) fn greater<A: Assumption>(
 ) -> Option<bool> {
     scratch.clear();
     // Sizes, unlike ids, do not depend on what else is in the bank.
-    let size = |term| bank.size(term).min(1 << 22) as usize;
+    let size = |term| bank.size(term).min(1 << 20) as usize;
     let mut comparison = LexicographicPath {
         bank,
         ranks,
