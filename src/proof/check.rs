@@ -19,12 +19,14 @@ pub fn check(evidence: &Evidence, limit: WorkLimit) -> Outcome {
     result.into()
 }
 
-/// Judges evidence in the form of JSON. A file is paid for by its length, because the reader
-/// holds it in memory several times over.
+/// Judges evidence in the form of JSON. A file is paid for by its length and the number of values
+/// in it before it is read, because the reader holds them all in memory.
 pub fn check_json(json: &[u8], limit: WorkLimit) -> Outcome {
-    const UNITS_PER_BYTE: u64 = 6;
-    let length = (json.len() as u64).saturating_mul(UNITS_PER_BYTE);
-    let Some(left) = limit.0.checked_sub(length) else {
+    const UNITS_PER_VALUE: u64 = 40;
+    let opens = |byte: &&u8| matches!(byte, b'[' | b'{' | b',' | b':');
+    let values = json.iter().filter(opens).count() as u64;
+    let cost = (json.len() as u64).saturating_add(values.saturating_mul(UNITS_PER_VALUE));
+    let Some(left) = limit.0.checked_sub(cost) else {
         return Outcome::TooCostly;
     };
     match from_json(json) {

@@ -56,6 +56,8 @@ fn check_claim(
         .signature
         .check_conditions(terms, &claim.when, "claim")?;
     let program = algebra.compile(claim.left, claim.right, &claim.when, "claim", work)?;
+    let names = program.variables.len() + claim.with.len();
+    work.spend((names as u64).saturating_mul(claim.unknowns.len() as u64))?;
     let mut given: FxHashMap<Name, u32> = FxHashMap::default();
     for &(variable, value) in &claim.with {
         let place = || format!("claim.with.{}", terms.text(variable));

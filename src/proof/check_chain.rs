@@ -31,6 +31,7 @@ pub(super) fn check_proof(proof: &Proof, work: &mut Work) -> Result<(), Stop> {
     signature.check_conditions(terms, &claim.when, "claim")?;
     let remaining = terms.variables(&with_witness, work)?;
     for (unknown, witness) in &claim.witness {
+        work.spend(remaining.len() as u64)?;
         let place = || format!("claim.witness.{}", terms.text(*unknown));
         if remaining.contains(unknown) {
             return Err(rejected(place(), "the unknown still occurs in the claim"));
@@ -365,6 +366,7 @@ impl Chains {
             let reason = format!("{} is not known here", terms.text(step.by));
             return Err(rejected(format!("{}.by", place()), reason));
         };
+        work.spend((step.with.len() * known.variables.len()) as u64)?;
         let with = substitution(terms, signature, known, step, place)?;
         let left = terms.instantiate(known.left, &with, work)?;
         let right = terms.instantiate(known.right, &with, work)?;

@@ -137,8 +137,9 @@ fn directions(
     for (number, rule) in set.rules.iter().enumerate() {
         let mut add = |left, right| -> Result<(), Stop> {
             let known = terms.variables(&[left], work)?;
-            let extra = terms
-                .variables(&[right], work)?
+            let inside = terms.variables(&[right], work)?;
+            work.spend((known.len() * inside.len()) as u64)?;
+            let extra = inside
                 .into_iter()
                 .filter(|name| !known.contains(name))
                 .filter_map(|name| Some((name, signature.variable_sort(name)?)))
@@ -341,7 +342,7 @@ fn places(terms: &Terms, term: TermIndex, work: &mut Work) -> Result<Vec<Place>,
     let mut found = Vec::new();
     let mut waiting = vec![(Vec::new(), term)];
     while let Some((path, term)) = waiting.pop() {
-        work.spend(1 + path.len() as u64)?;
+        work.spend(10 + path.len() as u64)?;
         if let Node::Apply(_, arguments) = terms.node(term) {
             for (number, &argument) in arguments.iter().enumerate() {
                 let mut inner = path.clone();

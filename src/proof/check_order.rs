@@ -292,7 +292,7 @@ impl Comparison {
             }
             let unknown = |argument: &&TermIndex| !self.profiles.contains_key(argument);
             let arguments = terms.arguments(term);
-            work.spend(1 + arguments.len() as u64)?;
+            work.spend(10 + arguments.len() as u64)?;
             let before = waiting.len();
             waiting.extend(arguments.iter().filter(unknown));
             if waiting.len() == before {
@@ -359,7 +359,7 @@ impl Comparison {
                 continue;
             }
             let width = terms.arguments(pair.0).len() + terms.arguments(pair.1).len();
-            work.spend(2 + width as u64)?;
+            work.spend(10 + width as u64)?;
             match self.path_order_once(order, terms, pair) {
                 Ok(answer) => {
                     self.greater.insert(pair, answer);

@@ -136,7 +136,11 @@ impl NormalForms {
                         tasks.extend(arguments.iter().map(|&argument| Task::Visit(argument)));
                     }
                 }
-                Task::Build(term) => self.build(system, term, &mut tasks, work)?,
+                Task::Build(term) => {
+                    // Remembering costs memory.
+                    work.spend(10)?;
+                    self.build(system, term, &mut tasks, work)?;
+                }
                 Task::Link(term, built, reduct) => {
                     let normal = self.normal[&reduct];
                     self.normal.insert(term, normal);
@@ -281,6 +285,7 @@ pub(super) fn unify(
     let mut seen = FxHashSet::default();
     let mut waiting = vec![(one, other)];
     while let Some((one, other)) = waiting.pop() {
+        work.spend(5)?;
         let one = follow(terms, &bindings, one, work)?;
         let other = follow(terms, &bindings, other, work)?;
         if one == other || !seen.insert((one, other)) {
