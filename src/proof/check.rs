@@ -1,0 +1,36 @@
+//! One door to the three checkers.
+
+use super::check_algebra::check_algebra;
+use super::check_chain::check_proof;
+use super::check_complete::check_complete;
+use super::evidence::Evidence;
+use super::json::from_json;
+use super::work::{Outcome, Work, WorkLimit};
+
+/// Judges evidence. Does not judge whether its laws and its claim are those that somebody asked
+/// about: compare [`Evidence::laws`] and [`Evidence::claim`] with the theory and the question.
+pub fn check(evidence: &Evidence, limit: WorkLimit) -> Outcome {
+    let mut work = Work::new(limit);
+    let result = match evidence {
+        Evidence::Proof(proof) => check_proof(proof, &mut work),
+        Evidence::Algebra(algebra) => check_algebra(algebra, &mut work),
+        Evidence::Complete(set) => check_complete(set, &mut work),
+    };
+    result.into()
+}
+
+/// Judges evidence in the form of JSON. A file is paid for by its length and the number of values
+/// in it before it is read, because the reader holds them all in memory.
+pub fn check_json(json: &[u8], limit: WorkLimit) -> Outcome {
+    const UNITS_PER_VALUE: u64 = 40;
+    let opens = |byte: &&u8| matches!(byte, b'[' | b'{' | b',' | b':');
+    let values = json.iter().filter(opens).count() as u64;
+    let cost = (json.len() as u64).saturating_add(values.saturating_mul(UNITS_PER_VALUE));
+    let Some(left) = limit.0.checked_sub(cost) else {
+        return Outcome::TooCostly;
+    };
+    match from_json(json) {
+        Ok(evidence) => check(&evidence, WorkLimit(left)),
+        Err(rejection) => rejection,
+    }
+}
