@@ -78,80 +78,87 @@ impl System {
 
     /// All steps, from left to right, from one term to another that it was rewritten to.
     ///
-    /// Nothing if the table does not lead there, or if there are more than `most` steps. Costs the
-    /// steps times their depth: meant for terms of moderate size.
+    /// Nothing if the table does not lead there, or if the steps and their places together would
+    /// take more than `most` numbers. Costs the steps times their depth.
     pub fn explain(&self, from: TermId, to: TermId, most: usize) -> Option<Vec<Step>> {
         let mut steps = Vec::new();
-        let mut stack = vec![(from, to, Vec::new())];
+        let mut places = Places::default();
+        let mut taken = 0;
+        let mut stack = vec![(from, to, Places::ROOT)];
         while let Some((from, to, at)) = stack.pop() {
             if from == to {
                 continue;
             }
-            if steps.len() + stack.len() > most {
+            if taken + stack.len() > most {
                 return None;
             }
-            match self.links(from, to) {
-                Some(links) => {
-                    let mut ends = Vec::with_capacity(links.len());
-                    let mut here = from;
-                    for (next, reason) in links {
-                        ends.push((here, next, reason));
-                        here = next;
+            let links = self.links(from, to);
+            match links.as_deref() {
+                // What happened to the arguments of two terms with the same head.
+                None | Some([(_, Reason::Arguments)]) => {
+                    if self.bank.head(from) != self.bank.head(to) {
+                        return None;
                     }
-                    // A chain of one link is taken; a longer one is split into its links.
-                    if let [(before, after, reason)] = ends[..] {
-                        match reason {
-                            Reason::Arguments => self.split(before, after, at, &mut stack)?,
-                            Reason::Rule(by) => {
-                                steps.push(Step {
-                                    by: StepBy::Rule(by),
-                                    at,
-                                    before,
-                                    after,
-                                });
-                            }
-                            Reason::Canonical => {
-                                steps.push(Step {
-                                    by: StepBy::Canonical,
-                                    at,
-                                    before,
-                                    after,
-                                });
-                            }
+                    let pairs = self
+                        .bank
+                        .arguments(from)
+                        .iter()
+                        .zip(self.bank.arguments(to));
+                    for (place, (&s, &t)) in pairs.enumerate().rev() {
+                        if s != t {
+                            stack.push((s, t, places.below(at, place as u32)));
                         }
-                    } else {
-                        let parts = ends.iter().rev();
-                        stack.extend(parts.map(|(s, t, _)| (*s, *t, at.clone())));
                     }
                 }
-                None => self.split(from, to, at, &mut stack)?,
+                Some([(after, reason)]) => {
+                    let by = match *reason {
+                        Reason::Rule(by) => StepBy::Rule(by),
+                        _ => StepBy::Canonical,
+                    };
+                    let at = places.path(at);
+                    taken += 1 + at.len();
+                    steps.push(Step {
+                        by,
+                        at,
+                        before: from,
+                        after: *after,
+                    });
+                }
+                Some(links) => {
+                    let starts = std::iter::once(from).chain(links.iter().map(|link| link.0));
+                    let mut parts: Vec<_> =
+                        starts.zip(links).map(|(s, (t, _))| (s, *t, at)).collect();
+                    parts.reverse();
+                    stack.extend(parts);
+                }
             }
         }
         Some(steps)
     }
+}
 
-    fn split(
-        &self,
-        from: TermId,
-        to: TermId,
-        at: Vec<u32>,
-        stack: &mut Vec<(TermId, TermId, Vec<u32>)>,
-    ) -> Option<()> {
-        if self.bank.head(from) != self.bank.head(to) {
-            return None;
+/// Places as linked lists, so that going down costs the same at every depth.
+#[derive(Default)]
+struct Places {
+    cells: Vec<(u32, u32)>,
+}
+
+impl Places {
+    const ROOT: u32 = u32::MAX;
+
+    fn below(&mut self, at: u32, step: u32) -> u32 {
+        self.cells.push((at, step));
+        self.cells.len() as u32 - 1
+    }
+
+    fn path(&self, mut at: u32) -> Vec<u32> {
+        let mut path = Vec::new();
+        while at != Self::ROOT {
+            let (above, step) = self.cells[at as usize];
+            path.push(step);
+            at = above;
         }
-        let pairs = self
-            .bank
-            .arguments(from)
-            .iter()
-            .zip(self.bank.arguments(to));
-        for (place, (&s, &t)) in pairs.enumerate().rev() {
-            if s != t {
-                let mut below = at.clone();
-                below.push(place as u32);
-                stack.push((s, t, below));
-            }
-        }
-        Some(())
+        path.reverse();
+        path
     }
 }

@@ -1,0 +1,204 @@
+//! Chains of equalities from the engine's records and table.
+//!
+//! The engine keeps which rule was used where; here that becomes terms, one after the other, each
+//! step with the equation that it cites. Nothing is searched for.
+
+use crate::engine::{Engine, LawId, Origin, RecordStep, ReplayError};
+use crate::rewrite::{RuleId, StepBy, Use};
+use crate::term::{Substitution, TermId, instantiate, match_term, replace_at, subterm_at};
+use rustc_hash::FxHashMap;
+
+/// The equation that a step cites.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub(super) enum Cited {
+    /// A law of the theory.
+    Law(LawId),
+    /// A rule, as a lemma.
+    Rule(RuleId),
+    /// That a ground term equals its normal form, as a lemma.
+    Ground(TermId, TermId),
+}
+
+/// One step: the subterm `before` at a place becomes `after`, and the whole becomes `to`.
+#[derive(Clone, Debug)]
+pub(super) struct Link {
+    pub(super) by: Cited,
+    /// From the left to the right side of the cited equation?
+    pub(super) forward: bool,
+    pub(super) at: Vec<u32>,
+    pub(super) before: TermId,
+    pub(super) after: TermId,
+    pub(super) to: TermId,
+}
+
+/// A chain from a term through the steps.
+#[derive(Clone, Debug)]
+pub(super) struct Chain {
+    pub(super) from: TermId,
+    pub(super) links: Vec<Link>,
+}
+
+impl Chain {
+    pub(super) fn new(from: TermId) -> Self {
+        Chain { from, links: Vec::new() }
+    }
+
+    pub(super) fn end(&self) -> TermId {
+        self.links.last().map_or(self.from, |link| link.to)
+    }
+
+    /// The chain read from its end to its start.
+    pub(super) fn reversed(self) -> Chain {
+        let from = self.end();
+        let mut wholes: Vec<TermId> = self.links.iter().map(|link| link.to).collect();
+        wholes.insert(0, self.from);
+        let links = self.links.into_iter().enumerate().rev().map(|(place, link)| Link {
+            forward: !link.forward,
+            before: link.after,
+            after: link.before,
+            to: wholes[place],
+            ..link
+        });
+        Chain { from, links: links.collect() }
+    }
+
+    /// Goes on with a chain that begins where this one ends.
+    pub(super) fn then(mut self, next: Chain) -> Chain {
+        debug_assert_eq!(self.end(), next.from);
+        self.links.extend(next.links);
+        self
+    }
+
+    /// Leaves out what lies between two visits to the same term.
+    pub(super) fn without_detours(self) -> Chain {
+        let mut kept: Vec<Link> = Vec::new();
+        let mut place_of = FxHashMap::from_iter([(self.from, 0)]);
+        for link in self.links {
+            if let Some(&place) = place_of.get(&link.to) {
+                for gone in kept.drain(place..) {
+                    place_of.remove(&gone.to);
+                }
+                place_of.insert(link.to, place);
+            } else {
+                kept.push(link.clone());
+                place_of.insert(link.to, kept.len());
+            }
+        }
+        Chain { from: self.from, links: kept }
+    }
+
+    fn push(&mut self, engine: &mut Engine, by: Cited, forward: bool, at: Vec<u32>, after: TermId) {
+        let whole = self.end();
+        let bank = &mut engine.system.bank;
+        let before = subterm_at(bank, whole, &at).expect("a recorded place exists");
+        let to = replace_at(bank, whole, &at, after);
+        self.links.push(Link { by, forward, at, before, after, to });
+    }
+}
+
+/// The equation that stands for a rule: the law, if the rule is nothing but a law, and whether the
+/// two have their sides the other way round.
+pub(super) fn cited(engine: &Engine, rule: RuleId) -> (Cited, bool) {
+    let record = engine.record(rule);
+    match record.origin {
+        Origin::Law(law) if record.left.is_empty() && record.right.is_empty() => {
+            (Cited::Law(law), record.swapped)
+        }
+        _ => (Cited::Rule(rule), false),
+    }
+}
+
+/// The chain from the left to the right side of a rule, by its record.
+///
+/// The terms of the chain have variables of their own numbering; the ends are the rule's sides
+/// after renaming. New terms stay in the bank: the caller rolls back.
+pub(super) fn of_rule(engine: &mut Engine, rule: RuleId) -> Result<Chain, ReplayError> {
+    let record = engine.record(rule).clone();
+    let (left, right) = engine.origin(&record.origin)?;
+    let middle = match &record.origin {
+        Origin::Law(law) => {
+            let mut chain = Chain::new(left);
+            chain.push(engine, Cited::Law(*law), true, Vec::new(), right);
+            chain
+        }
+        Origin::Rule(from) => {
+            let mut chain = Chain::new(left);
+            let (by, flipped) = cited(engine, *from);
+            chain.push(engine, by, !flipped, Vec::new(), right);
+            chain
+        }
+        Origin::Overlap { outer, at, inner } => {
+            let peak = engine.peak(*outer, at, *inner)?;
+            let mut up = Chain::new(peak.top);
+            let made = subterm_at(&engine.system.bank, peak.left, at)
+                .ok_or_else(|| ReplayError::NoSuchPlace(at.clone()))?;
+            push_use(&mut up, engine, *inner, at.clone(), made);
+            let mut down = Chain::new(peak.top);
+            push_use(&mut down, engine, *outer, Vec::new(), peak.right);
+            up.reversed().then(down)
+        }
+    };
+    let before = follow(engine, left, &record.left)?.reversed();
+    let after = follow(engine, right, &record.right)?;
+    let chain = before.then(middle).then(after).without_detours();
+    Ok(if record.swapped { chain.reversed() } else { chain })
+}
+
+fn push_use(chain: &mut Chain, engine: &mut Engine, by: Use, at: Vec<u32>, after: TermId) {
+    let (cite, flipped) = cited(engine, by.rule);
+    chain.push(engine, cite, by.backward == flipped, at, after);
+}
+
+fn follow(
+    engine: &mut Engine,
+    from: TermId,
+    steps: &[RecordStep],
+) -> Result<Chain, ReplayError> {
+    let mut chain = Chain::new(from);
+    for step in steps {
+        let to = engine.apply_step(chain.end(), step)?;
+        let after = subterm_at(&engine.system.bank, to, &step.at)
+            .ok_or_else(|| ReplayError::NoSuchPlace(step.at.clone()))?;
+        push_use(&mut chain, engine, step.by, step.at.clone(), after);
+    }
+    Ok(chain)
+}
+
+/// The chain from a ground term to what the table has rewritten it to, in single steps.
+///
+/// Nothing if that takes too many numbers to write down; then see [`of_ground_lemma`].
+pub(super) fn of_table(
+    engine: &mut Engine,
+    from: TermId,
+    to: TermId,
+    most: usize,
+) -> Option<Chain> {
+    let steps = engine.system.explain(from, to, most)?;
+    let mut chain = Chain::new(from);
+    let mut taken = 0;
+    for step in steps {
+        match step.by {
+            StepBy::Rule(by) => push_use(&mut chain, engine, by, step.at, step.after),
+            StepBy::Canonical => {
+                for (by, below) in engine.system.canonical_steps(step.before, step.after) {
+                    let at = [&step.at[..], &below[..]].concat();
+                    taken += at.len() + 1;
+                    if taken > most {
+                        return None;
+                    }
+                    let here = subterm_at(&engine.system.bank, chain.end(), &at)?;
+                    let after = rewritten(engine, here, by)?;
+                    push_use(&mut chain, engine, by, at, after);
+                }
+            }
+        }
+    }
+    Some(chain.without_detours())
+}
+
+fn rewritten(engine: &mut Engine, term: TermId, by: Use) -> Option<TermId> {
+    let (from, to) = engine.system.rule(by.rule).sides(by.backward);
+    let mut substitution = Substitution::default();
+    match_term(&engine.system.bank, from, term, &mut substitution)
+        .then(|| instantiate(&mut engine.system.bank, to, &substitution))
+}
