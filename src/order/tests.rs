@@ -228,6 +228,9 @@ fn question_constants_are_least_and_follow_their_ranks() {
         assert_eq!(world.order.weight(high), world.order.variable_weight());
         world.order.add_least(low, 3);
         assert!(world.greater(low_term, high_term));
+        // Symbols that the setting does not name come after the named ones, as declared.
+        let expected = [3, 4, 5, 6, 7, 0, 1, 2, low.0, high.0].map(Symbol);
+        assert_eq!(world.order.precedence(), expected);
     }
 }
 
