@@ -4,7 +4,7 @@
 //! few rather different ones are tried is worth more than much time for one. The list is made from
 //! the shape of the laws alone, so that it is the same on every machine.
 
-use super::search::{Precedence, extend_for};
+use super::search::{BRIEF, PATIENT, Precedence, extend_for};
 use super::shape::{Law, Shape};
 use super::weighing::{Reweighed, weigh};
 use super::{Order, OrderKind, OrderProblem, OrderSetting};
@@ -113,7 +113,7 @@ pub fn search(bank: &Bank, directed: &[Law]) -> Option<OrderSetting> {
     let otherwise = Shape::new(bank, directed).by_arity;
     let by_path = || {
         let start = start(bank)?;
-        let precedence = extend_for(bank, &start, directed)?;
+        let precedence = extend_for(bank, &start, directed, PATIENT)?;
         Some(lpo(precedence.extend(&otherwise)))
     };
     let right = |setting: &OrderSetting| misdirected(bank, setting, directed) == Ok(vec![]);
@@ -204,10 +204,10 @@ fn lpo_for(
     laws: &[Law],
     otherwise: &[Symbol],
 ) -> Option<OrderSetting> {
-    let mut precedence = extend_for(bank, &start(bank)?, directed)?;
+    let mut precedence = extend_for(bank, &start(bank)?, directed, PATIENT)?;
     for &(left, right) in laws.iter().take(LAW_LIMIT) {
-        let better = extend_for(bank, &precedence, &[(left, right)])
-            .or_else(|| extend_for(bank, &precedence, &[(right, left)]));
+        let better = extend_for(bank, &precedence, &[(left, right)], BRIEF)
+            .or_else(|| extend_for(bank, &precedence, &[(right, left)], BRIEF));
         precedence = better.unwrap_or(precedence);
     }
     Some(lpo(precedence.extend(otherwise)))

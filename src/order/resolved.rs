@@ -136,6 +136,13 @@ impl Order {
         self.ranks[f.index()] > self.ranks[g.index()]
     }
 
+    /// All symbols, greatest first, with the constants that were added.
+    pub fn precedence(&self) -> Vec<Symbol> {
+        let mut symbols: Vec<_> = (0..self.ranks.len() as u32).map(Symbol).collect();
+        symbols.sort_by_key(|symbol| std::cmp::Reverse(self.ranks[symbol.index()]));
+        symbols
+    }
+
     /// Adds a constant below every symbol of the theory, as light as a variable. Constants added
     /// so compare by `rank_among_least`, below 2⁶³ and different for each.
     ///

@@ -5,8 +5,10 @@ use crate::term::{Bank, Head, Symbol, TermId};
 /// A law is searched for only if its pairs of subterms are at most this many.
 const PAIR_LIMIT: usize = 1 << 14;
 
-/// A search ends after about this many visits to pairs of subterms.
-const WORK_LIMIT: usize = 1 << 24;
+/// How long a search may take, in visits to pairs of subterms: for laws that must decrease, and for
+/// one that had better.
+pub(super) const PATIENT: usize = 1 << 23;
+pub(super) const BRIEF: usize = 1 << 17;
 
 /// A strict partial order of symbols, transitively closed.
 #[derive(Clone, Debug)]
@@ -194,6 +196,7 @@ pub(super) fn extend_for(
     bank: &Bank,
     start: &Precedence,
     laws: &[(TermId, TermId)],
+    limit: usize,
 ) -> Option<Precedence> {
     let laws: Option<Vec<_>> = laws.iter().map(|&law| LawPairs::new(bank, law)).collect();
     let laws = laws?;
@@ -201,6 +204,8 @@ pub(super) fn extend_for(
     let (mut known, mut work) = (Vec::new(), 0);
     'branches: while let Some(precedence) = branches.pop() {
         let mut choice = None;
+        // Copying and closing a precedence is work, too.
+        work += start.above.len() / 16;
         for law in &laws {
             let Known { surely, possibly } = law.evaluate(&precedence, &mut known);
             work += known.len();
@@ -214,7 +219,7 @@ pub(super) fn extend_for(
         let Some((f, g)) = choice else {
             return Some(precedence);
         };
-        if work > WORK_LIMIT {
+        if work > limit {
             return None;
         }
         for (f, g) in [(g, f), (f, g)] {

@@ -4,7 +4,7 @@ mod textbook;
 mod world;
 
 use super::*;
-use crate::term::{Sort, Substitution, Symbol, SymbolInfo, instantiate};
+use crate::term::{Sort, Substitution, Symbol, SymbolInfo, TermId, instantiate};
 use proptest::prelude::*;
 use textbook::Textbook;
 use world::Tree::{App, Var};
@@ -228,6 +228,9 @@ fn question_constants_are_least_and_follow_their_ranks() {
         assert_eq!(world.order.weight(high), world.order.variable_weight());
         world.order.add_least(low, 3);
         assert!(world.greater(low_term, high_term));
+        // Symbols that the setting does not name come after the named ones, as declared.
+        let expected = [3, 4, 5, 6, 7, 0, 1, 2, low.0, high.0].map(Symbol);
+        assert_eq!(world.order.precedence(), expected);
     }
 }
 
@@ -350,4 +353,52 @@ fn settings_that_are_no_orders_are_refused() {
 fn an_order_can_go_to_another_thread() {
     fn sendable<T: Send + Clone>() {}
     sendable::<Order>();
+}
+
+#[test]
+fn the_variables_must_allow_every_level_of_the_descent() {
+    // The first arguments decide by the precedence, and their variables allow it, but the second
+    // arguments spoil it; once with packed and once with wide counts.
+    let mut world = group_like(OrderKind::Kbo);
+    let both = |symbol, s: &Tree, t: &Tree| App(symbol, vec![s.clone(), t.clone()]);
+    let (x, c) = (Var(0), App(0, vec![]));
+    for stranger in [1, 20] {
+        let y = Var(stranger);
+        let upper = both(5, &both(5, &x, &y), &both(5, &c, &c));
+        let lower = both(5, &both(6, &x, &c), &both(5, &y, &y));
+        assert_eq!(world.compare(&upper, &lower), Comparison::Incomparable);
+        assert_eq!(world.compare(&lower, &upper), Comparison::Incomparable);
+        let fair = both(5, &both(6, &x, &c), &both(5, &y, &c));
+        assert_eq!(world.compare(&upper, &fair), Comparison::Greater);
+        assert_eq!(world.compare(&fair, &upper), Comparison::Less);
+    }
+}
+
+/// Prints what a comparison costs; run by hand with `--ignored --nocapture`, with optimisation.
+#[test]
+#[ignore = "a measurement"]
+fn cost_of_a_comparison() {
+    use proptest::strategy::ValueTree;
+    let mut runner = proptest::test_runner::TestRunner::deterministic();
+    for kind in KINDS {
+        let mut world = group_like(kind);
+        let terms: Vec<_> = (0..1000)
+            .map(|_| {
+                let tree = open().new_tree(&mut runner).expect("a tree").current();
+                world.term(&tree)
+            })
+            .collect();
+        let narrow = |term: &TermId| !world.bank.counts(*term).is_wide();
+        let terms: Vec<_> = terms.into_iter().filter(narrow).collect();
+        let start = std::time::Instant::now();
+        let mut greater = 0;
+        for &s in &terms {
+            greater += terms.iter().filter(|&&t| world.greater(s, t)).count();
+        }
+        let each = start.elapsed().as_nanos() / (terms.len() * terms.len()) as u128;
+        println!(
+            "{kind:?}: {each} ns a comparison, {greater} of {} greater",
+            terms.len().pow(2)
+        );
+    }
 }

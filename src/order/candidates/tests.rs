@@ -228,3 +228,29 @@ proptest! {
         }
     }
 }
+
+/// Prints how long making the list takes; run by hand with `--ignored --nocapture`.
+#[test]
+#[ignore = "a measurement"]
+fn cost_of_the_list() {
+    use proptest::strategy::ValueTree;
+    let mut runner = proptest::test_runner::TestRunner::deterministic();
+    let mut world = World::new(&ARITIES);
+    let laws: Vec<_> = (0..200)
+        .map(|_| {
+            let mut side = || texts().new_tree(&mut runner).expect("a text").current();
+            let (left, right) = (side(), side());
+            (world.term(&left), world.term(&right))
+        })
+        .collect();
+    for (laws, directed) in [(&laws[..20], 0), (&laws[..], 0), (&laws[..], 10)] {
+        let start = std::time::Instant::now();
+        let found = candidates(&world.bank, laws, &laws[..directed]);
+        println!(
+            "{} laws, {directed} directed: {} orders in {:?}",
+            laws.len(),
+            found.len(),
+            start.elapsed()
+        );
+    }
+}
