@@ -1,1 +1,4 @@
 //! One open theory with all that is known about it.
+
+mod derivation;
+mod evidence;

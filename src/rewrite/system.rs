@@ -27,7 +27,8 @@ pub struct System {
     asking: bool,
     /// How many active rules have variables on one side only.
     open_rules: usize,
-    /// Grows whenever a term that was in normal form may no longer be.
+    /// The number of the state of the rules, and in the lowest bit whether open variables become
+    /// constants of a question: what [`System::generation`] says.
     pub(super) generation: u32,
     active: usize,
     theory_symbols: usize,
@@ -62,7 +63,7 @@ impl System {
             least: Default::default(),
             asking: false,
             open_rules: 0,
-            generation: 1,
+            generation: 2,
             active: 0,
             theory_symbols: symbols.len(),
             question: Vec::new(),
@@ -89,6 +90,11 @@ impl System {
     /// All rules that ever were, in the order of their numbers.
     pub fn rules(&self) -> &[Rule] {
         &self.rules
+    }
+
+    /// The normal form of a term, if it is known by the rules as they are or were.
+    pub fn known_normal_form(&self, term: TermId) -> Option<TermId> {
+        self.table.normal(term, self.generation)
     }
 
     /// How many rules are active.
@@ -158,7 +164,7 @@ impl System {
         }
         self.active += 1;
         self.open_rules += usize::from(rule.is_open());
-        self.generation += 1;
+        self.changed();
     }
 
     /// Takes an active rule out of use.
@@ -213,7 +219,7 @@ impl System {
     /// From now on the symbol is known to be associative and commutative, by these rules.
     pub fn set_ac(&mut self, symbol: Symbol, laws: AcLaws) {
         self.ac[symbol.index()] = Some(laws);
-        self.generation += 1;
+        self.changed();
     }
 
     /// The constant that stands for the variable of a question with this rank among its variables.
@@ -237,7 +243,7 @@ impl System {
             self.ac.push(None);
             self.question.push((rank, sort));
             self.offer_least(symbol, true);
-            self.generation += 1;
+            self.changed();
             self.question.len() - 1
         });
         let symbol = Symbol((self.theory_symbols + place) as u32);
@@ -254,10 +260,14 @@ impl System {
     /// constants? Then a variable that a rule leaves open becomes the least of these constants;
     /// otherwise it becomes the theory's least constant, and without one the rule is not used.
     pub fn set_asking(&mut self, asking: bool) {
-        if self.asking != asking {
-            self.asking = asking;
-            self.generation += u32::from(self.open_rules > 0);
-        }
+        self.asking = asking;
+        self.generation = self.generation & !1 | u32::from(asking && self.open_rules > 0);
+    }
+
+    /// Terms that were in normal form may no longer be.
+    fn changed(&mut self) {
+        self.generation = self.generation + 2 & !1;
+        self.set_asking(self.asking);
     }
 
     /// The term that an open variable of this sort becomes.

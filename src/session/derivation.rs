@@ -87,7 +87,15 @@ impl Chain {
         Chain { from: self.from, links: kept }
     }
 
-    fn push(&mut self, engine: &mut Engine, by: Cited, forward: bool, at: Vec<u32>, after: TermId) {
+    /// Goes on with the steps of another chain, inside the argument at a place.
+    pub(super) fn append_below(&mut self, engine: &mut Engine, at: &[u32], below: Chain) {
+        for link in below.links {
+            let place = [at, &link.at].concat();
+            self.push(engine, link.by, link.forward, place, link.after);
+        }
+    }
+
+    pub(super) fn push(&mut self, engine: &mut Engine, by: Cited, forward: bool, at: Vec<u32>, after: TermId) {
         let whole = self.end();
         let bank = &mut engine.system.bank;
         let before = subterm_at(bank, whole, &at).expect("a recorded place exists");

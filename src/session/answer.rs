@@ -1,0 +1,155 @@
+//! Answers.
+
+use crate::proof::Evidence;
+use crate::rewrite::Stopped;
+use std::time::Duration;
+
+/// What was found out about a question. There is no fourth.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub enum Verdict {
+    /// The two sides are equal in every model of the laws.
+    Equal,
+    /// They are not.
+    NotEqual,
+    /// Neither was shown.
+    Undecided,
+}
+
+impl Verdict {
+    /// As it is printed.
+    pub fn text(self) -> &'static str {
+        match self {
+            Verdict::Equal => "equal",
+            Verdict::NotEqual => "not equal",
+            Verdict::Undecided => "undecided",
+        }
+    }
+}
+
+/// The rung of the ladder that settled a question.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
+pub enum By {
+    /// Both sides were known, with the same normal form.
+    Table,
+    /// The normal forms by the rules as they stood are the same.
+    NormalForms,
+    /// The rules are complete, and the normal forms differ.
+    Complete,
+    /// The search for a proof found one.
+    Proof,
+}
+
+impl By {
+    /// As it is printed.
+    pub fn text(self) -> &'static str {
+        match self {
+            By::Table => "table",
+            By::NormalForms => "normal forms",
+            By::Complete => "complete",
+            By::Proof => "proof",
+        }
+    }
+}
+
+/// How far a search got that settled nothing.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Frontier {
+    /// Active rules.
+    pub rules: usize,
+    /// Pairs formed.
+    pub pairs: u64,
+    /// Pairs that still wait.
+    pub waiting: usize,
+    /// Orders that were tried.
+    pub orders: usize,
+    /// Why it ended; nothing if no pair was left.
+    pub stopped: Option<Stopped>,
+    /// What else there is to say about the end.
+    pub remark: Option<String>,
+    /// What to try next, as lines to type.
+    pub next: Vec<String>,
+}
+
+/// A fault of this program: evidence that the checker rejected.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct ProgramFault {
+    /// Where in the evidence.
+    pub place: String,
+    /// What is wrong there.
+    pub reason: String,
+}
+
+/// An answer to an equation.
+#[derive(Clone, Debug)]
+pub struct Answer {
+    /// Its number in the session, from 1.
+    pub number: u32,
+    /// The question as it reads when printed, `s = t`.
+    pub question: String,
+    /// What was found out.
+    pub verdict: Verdict,
+    /// How it was settled.
+    pub by: Option<By>,
+    /// The evidence, accepted by the checker.
+    pub evidence: Option<Evidence>,
+    /// For how long it took, checking included.
+    pub elapsed: Duration,
+    /// For how long the check took.
+    pub checking: Duration,
+    /// How far the search got, if it settled nothing.
+    pub frontier: Option<Frontier>,
+    /// The normal forms of both sides where they differ, printed.
+    pub normal: Option<[String; 2]>,
+    /// Set when the evidence was rejected: then the verdict is undecided.
+    pub fault: Option<(ProgramFault, Evidence)>,
+    /// Have the laws changed since?
+    pub outdated: bool,
+}
+
+/// A term's normal form.
+#[derive(Clone, Debug)]
+pub struct NormalForm {
+    /// The normal form, printed.
+    pub text: String,
+    /// The term, printed.
+    pub term: String,
+    /// How many steps lead there, as far as they were counted.
+    pub steps: Option<usize>,
+    /// For how long it took.
+    pub elapsed: Duration,
+    /// Are the rules complete, so that the normal form is the same for all equal terms?
+    pub complete: bool,
+    /// Set when rewriting was stopped; `text` is then what had been reached.
+    pub stopped: Option<Stopped>,
+}
+
+/// How a completion went.
+#[derive(Clone, Debug)]
+pub struct Completion {
+    /// Is the rule set complete, and accepted as such by the checker?
+    pub complete: bool,
+    /// Are some equations not oriented, so that it is complete on ground terms?
+    pub ordered: bool,
+    /// Active rules.
+    pub rules: usize,
+    /// Of these, oriented.
+    pub oriented: usize,
+    /// Pairs formed by the engine that is shown.
+    pub pairs: u64,
+    /// Pairs that wait.
+    pub waiting: usize,
+    /// For how long it took, checking included.
+    pub elapsed: Duration,
+    /// The order, as a line to type.
+    pub order: String,
+    /// Why this order, as a sentence.
+    pub why: String,
+    /// How many orders were tried.
+    pub orders: usize,
+    /// Why it ended; nothing if no pair was left.
+    pub stopped: Option<Stopped>,
+    /// A sentence on what stands between this and a complete set, if anything does.
+    pub remark: Option<String>,
+    /// Set when the checker rejected the rule set.
+    pub fault: Option<(ProgramFault, Evidence)>,
+}

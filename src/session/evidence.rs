@@ -1,0 +1,527 @@
+//! Evidence from what the engine knows: chains of the engine's terms become proof objects.
+
+use super::derivation::{Chain, Cited, Link, of_rule, of_table};
+use crate::engine::{Engine, ReplayError};
+use crate::order::OrderKind;
+use crate::proof;
+use crate::proof::{Equation, Lemma, Name, Step, TermIndex, Terms, Way};
+use crate::rewrite::{Reason, RuleId};
+use crate::term::{Head, Sort, Symbol, TermId, Variable, match_term};
+use crate::term::{Substitution, renumber};
+use rustc_hash::{FxHashMap, FxHashSet};
+use std::collections::BTreeSet;
+
+/// How symbols, variables, sorts and laws are called in evidence.
+#[derive(Clone, Debug, Default)]
+pub(super) struct Naming {
+    /// By symbol of the theory.
+    pub(super) symbols: Vec<String>,
+    /// The variables of the theory, by number, with their sorts.
+    pub(super) variables: Vec<(String, Sort)>,
+    /// By sort.
+    pub(super) sorts: Vec<String>,
+    /// By law of the engine.
+    pub(super) laws: Vec<String>,
+    /// The laws that define a symbol are listed with the laws all the same: they are the theory's.
+    pub(super) typed: bool,
+    /// For each symbol the sorts of its arguments and, last, its result.
+    pub(super) types: Vec<Vec<Sort>>,
+}
+
+impl Naming {
+    /// The name of a variable of a rule: those of the theory that have its sort, then new ones.
+    pub(super) fn rule_variable(&self, variable: Variable) -> String {
+        let declared = self.variables.iter().filter(|(_, sort)| *sort == variable.sort);
+        if let Some((name, _)) = declared.clone().nth(variable.index as usize) {
+            return name.clone();
+        }
+        let sort = if self.typed { self.sorts[usize::from(variable.sort.0)].as_str() } else { "" };
+        let taken = |name: &String| {
+            self.symbols.contains(name) || self.variables.iter().any(|(known, _)| known == name)
+        };
+        let mut name = format!("x{}{sort}", variable.index + 1);
+        while taken(&name) {
+            name.push('_');
+        }
+        name
+    }
+}
+
+/// How many numbers a chain of single steps may take before it is written with lemmas.
+const FLAT: usize = 20_000;
+/// How many numbers the chain of one argument may take before it becomes a lemma.
+const INLINE: usize = 4;
+
+/// The variables of a question: the constants that stand for them, and their names.
+pub(super) type ClaimVariables = FxHashMap<(u32, Sort), String>;
+
+/// How the variables of some terms are called.
+enum Reading<'a> {
+    /// As the theory calls them.
+    Theory,
+    /// As variables of a rule, numbered anew in this order.
+    Rule(&'a [Variable]),
+}
+
+/// Writes one piece of evidence.
+pub(super) struct Writer<'a> {
+    engine: &'a mut Engine,
+    naming: &'a Naming,
+    claim_variables: &'a ClaimVariables,
+    terms: Terms,
+    ground: FxHashMap<TermId, TermIndex>,
+    variables: FxHashMap<Name, Sort>,
+    operators: BTreeSet<Symbol>,
+    laws: BTreeSet<u32>,
+    /// Rules that are cited and have to be proved.
+    rules: BTreeSet<RuleId>,
+    lemmas: Vec<Lemma>,
+}
+
+impl<'a> Writer<'a> {
+    pub(super) fn new(
+        engine: &'a mut Engine,
+        naming: &'a Naming,
+        claim_variables: &'a ClaimVariables,
+    ) -> Self {
+        Writer {
+            engine,
+            naming,
+            claim_variables,
+            terms: Terms::default(),
+            ground: FxHashMap::default(),
+            variables: FxHashMap::default(),
+            operators: BTreeSet::new(),
+            laws: BTreeSet::new(),
+            rules: BTreeSet::new(),
+            lemmas: Vec::new(),
+        }
+    }
+
+    /// The proof that two ground terms are equal, which have been rewritten to the same term.
+    /// Nothing if it is too long to be written down.
+    pub(super) fn proof(mut self, left: TermId, right: TermId) -> Option<proof::Proof> {
+        let normal = self.engine.system.known_normal_form(left)?;
+        let mark = self.engine.system.bank.mark();
+        let chain = self.meeting(left, right, normal);
+        let steps = chain.as_ref().map(|chain| self.steps(chain, &Reading::Theory));
+        let proof = steps.and_then(|steps| {
+            let ground = std::mem::take(&mut self.lemmas);
+            self.prove_rules().ok()?;
+            self.lemmas.extend(ground);
+            let (left, right) = (self.ground_term(left), self.ground_term(right));
+            let claim = proof::Claim { left, right, when: vec![], steps, witness: vec![] };
+            let laws = self.laws.clone().into_iter().map(|law| self.law(law)).collect();
+            Some(proof::Proof {
+                types: self.types(),
+                laws,
+                definitions: Vec::new(),
+                lemmas: std::mem::take(&mut self.lemmas),
+                claim,
+                terms: std::mem::take(&mut self.terms),
+            })
+        });
+        self.engine.system.bank.rollback(mark);
+        proof
+    }
+
+    /// The active rules as a complete set, with the question that they decide and the normal forms
+    /// of its sides, if there is one.
+    pub(super) fn complete(
+        mut self,
+        claim: Option<([TermId; 2], [TermId; 2])>,
+    ) -> Result<proof::CompleteSet, ReplayError> {
+        let mark = self.engine.system.bank.mark();
+        let active: Vec<RuleId> = self.engine.active_rules().collect();
+        self.rules.extend(&active);
+        let proved = self.prove_rules();
+        self.engine.system.bank.rollback(mark);
+        proved?;
+        let rules = active.iter().map(|&id| self.rule(id)).collect();
+        let laws = (0..self.engine.laws().len() as u32).map(|law| self.law(law)).collect();
+        let claim = claim.map(|([left, right], normal)| proof::CompleteClaim {
+            left: self.ground_term(left),
+            right: self.ground_term(right),
+            normal: normal.map(|term| self.ground_term(term)),
+        });
+        self.operators.extend((0..self.naming.symbols.len() as u32).map(Symbol));
+        let order = self.order();
+        Ok(proof::CompleteSet {
+            types: self.types(),
+            laws,
+            definitions: Vec::new(),
+            lemmas: self.lemmas,
+            order,
+            rules,
+            claim,
+            terms: self.terms,
+        })
+    }
+
+    fn meeting(&mut self, left: TermId, right: TermId, normal: TermId) -> Option<Chain> {
+        let there = self.to_normal(left, normal)?;
+        let back = self.to_normal(right, normal)?;
+        Some(there.then(back.reversed()).without_detours())
+    }
+
+    /// The chain to the normal form, in single steps or, if that is too long, by lemmas about
+    /// subterms.
+    fn to_normal(&mut self, from: TermId, to: TermId) -> Option<Chain> {
+        if let Some(chain) = of_table(self.engine, from, to, FLAT) {
+            return Some(chain);
+        }
+        let known = FxHashSet::default();
+        self.ground_lemmas(from, to, known)
+    }
+
+    /// Proves, as lemmas, that the subterms on the way equal what they were rewritten to; the
+    /// chain of the whole term by these.
+    fn ground_lemmas(
+        &mut self,
+        from: TermId,
+        to: TermId,
+        mut known: FxHashSet<(TermId, TermId)>,
+    ) -> Option<Chain> {
+        let mut stack = vec![(from, to)];
+        while let Some(&(s, t)) = stack.last() {
+            if known.contains(&(s, t)) {
+                stack.pop();
+                continue;
+            }
+            let (chain, needed) = ground_chain(self.engine, s, t)?;
+            let open: Vec<_> = needed.into_iter().filter(|pair| !known.contains(pair)).collect();
+            if !open.is_empty() {
+                stack.extend(open);
+                continue;
+            }
+            stack.pop();
+            if stack.is_empty() {
+                return Some(chain);
+            }
+            known.insert((s, t));
+            self.ground_lemma(&chain);
+        }
+        Some(Chain::new(from))
+    }
+
+    fn ground_lemma(&mut self, chain: &Chain) {
+        let steps = self.steps(chain, &Reading::Theory);
+        let (left, right) = (self.ground_term(chain.from), self.ground_term(chain.end()));
+        let name = self.terms.name(&ground_name(chain.from, chain.end()));
+        let equation = Equation { name, left, right, when: Vec::new() };
+        self.lemmas.push(Lemma { equation, steps });
+    }
+
+    /// Proves the cited rules, and those that their proofs cite, in the order of their numbers,
+    /// which is the order of their derivation.
+    fn prove_rules(&mut self) -> Result<(), ReplayError> {
+        let mut lemmas = Vec::new();
+        while let Some(rule) = self.rules.pop_last() {
+            let chain = of_rule(self.engine, rule)?;
+            let bank = &mut self.engine.system.bank;
+            let (_, mut order) = renumber(bank, [chain.from, chain.end()]);
+            for link in &chain.links {
+                for variable in bank.variables(link.to) {
+                    if !order.contains(&variable) {
+                        order.push(variable);
+                    }
+                }
+            }
+            // The variables of the sides come first, so that the numbers are those of the rule.
+            let steps = self.steps(&chain, &Reading::Rule(&order));
+            let rule = self.rule(rule);
+            let proof::Rule { name, left, right, .. } = rule;
+            let equation = Equation { name, left, right, when: Vec::new() };
+            lemmas.push(Lemma { equation, steps });
+        }
+        lemmas.reverse();
+        self.lemmas = lemmas;
+        Ok(())
+    }
+
+    fn steps(&mut self, chain: &Chain, reading: &Reading) -> Vec<Step> {
+        let mut memo = FxHashMap::default();
+        chain.links.iter().map(|link| self.step(link, reading, &mut memo)).collect()
+    }
+
+    fn step(
+        &mut self,
+        link: &Link,
+        reading: &Reading,
+        memo: &mut FxHashMap<TermId, TermIndex>,
+    ) -> Step {
+        let (left, right) = match link.by {
+            Cited::Law(law) => self.engine.laws()[law.0 as usize],
+            Cited::Rule(rule) => self.engine.system.rule(rule).sides(false),
+            Cited::Ground(from, to) => (from, to),
+        };
+        let (from, to) =
+            if link.forward { (link.before, link.after) } else { (link.after, link.before) };
+        let mut substitution = Substitution::default();
+        let bank = &self.engine.system.bank;
+        let fits = match_term(bank, left, from, &mut substitution)
+            && match_term(bank, right, to, &mut substitution);
+        debug_assert!(fits, "a step is an instance of what it cites");
+        let mut variables = bank.variables(left);
+        variables.extend(bank.variables(right));
+        let mut with: Vec<(Name, TermIndex)> = Vec::new();
+        for variable in variables {
+            let name = match link.by {
+                Cited::Law(_) => self.naming.variables[variable.index as usize].0.clone(),
+                _ => self.naming.rule_variable(variable),
+            };
+            let name = self.variable_name(&name, variable.sort);
+            if with.iter().all(|(known, _)| *known != name) {
+                let value = substitution.get(variable.index);
+                with.push((name, self.term(value, reading, memo)));
+            }
+        }
+        if let Cited::Ground(..) = link.by {
+            with = self.identity(left, right);
+        }
+        Step {
+            by: self.citation(link.by),
+            way: if link.forward { Way::Forward } else { Way::Backward },
+            at: link.at.clone(),
+            with,
+            to: self.term(link.to, reading, memo),
+            given: Vec::new(),
+        }
+    }
+
+    /// A lemma about the question's own terms is used with its variables as they are.
+    fn identity(&mut self, left: TermId, right: TermId) -> Vec<(Name, TermIndex)> {
+        if self.claim_variables.is_empty() {
+            return Vec::new();
+        }
+        let mut seen = FxHashSet::default();
+        let mut stack = vec![left, right];
+        let mut with = Vec::new();
+        while let Some(term) = stack.pop() {
+            if !seen.insert(term) {
+                continue;
+            }
+            let bank = &self.engine.system.bank;
+            stack.extend(bank.arguments(term));
+            let symbol = bank.as_symbol(term);
+            if symbol.is_some_and(|s| self.engine.system.question_rank(s).is_some()) {
+                let variable = self.ground_term(term);
+                if let proof::Node::Variable(name) = self.terms.node(variable) {
+                    with.push((name, variable));
+                }
+            }
+        }
+        with
+    }
+
+    fn citation(&mut self, by: Cited) -> Name {
+        match by {
+            Cited::Law(law) => {
+                self.laws.insert(law.0);
+                self.terms.name(&self.naming.laws[law.0 as usize])
+            }
+            Cited::Rule(rule) => {
+                self.rules.insert(rule);
+                self.terms.name(&rule_name(rule))
+            }
+            Cited::Ground(from, to) => self.terms.name(&ground_name(from, to)),
+        }
+    }
+
+    fn law(&mut self, law: u32) -> Equation {
+        let (left, right) = self.engine.laws()[law as usize];
+        let mut memo = FxHashMap::default();
+        Equation {
+            name: self.terms.name(&self.naming.laws[law as usize]),
+            left: self.term(left, &Reading::Theory, &mut memo),
+            right: self.term(right, &Reading::Theory, &mut memo),
+            when: Vec::new(),
+        }
+    }
+
+    fn rule(&mut self, id: RuleId) -> proof::Rule {
+        let rule = self.engine.system.rule(id);
+        let (left, right, oriented) = (rule.left, rule.right, rule.oriented);
+        let mut order = self.engine.system.bank.variables(left);
+        for variable in self.engine.system.bank.variables(right) {
+            if !order.contains(&variable) {
+                order.push(variable);
+            }
+        }
+        let mut memo = FxHashMap::default();
+        proof::Rule {
+            name: self.terms.name(&rule_name(id)),
+            left: self.term(left, &Reading::Rule(&order), &mut memo),
+            right: self.term(right, &Reading::Rule(&order), &mut memo),
+            oriented,
+        }
+    }
+
+    fn ground_term(&mut self, term: TermId) -> TermIndex {
+        self.term(term, &Reading::Theory, &mut FxHashMap::default())
+    }
+
+    /// The plain form of a term of the engine.
+    fn term(
+        &mut self,
+        term: TermId,
+        reading: &Reading,
+        memo: &mut FxHashMap<TermId, TermIndex>,
+    ) -> TermIndex {
+        let mut stack = vec![term];
+        let mut arguments = Vec::new();
+        while let Some(&top) = stack.last() {
+            let ground = self.engine.system.bank.is_ground(top);
+            let known = |t: &TermId| self.ground.get(t).or_else(|| memo.get(t)).copied();
+            if known(&top).is_some() {
+                stack.pop();
+                continue;
+            }
+            let bank = &self.engine.system.bank;
+            let before = stack.len();
+            stack.extend(bank.arguments(top).iter().filter(|a| known(a).is_none()));
+            if stack.len() > before {
+                continue;
+            }
+            arguments.clear();
+            arguments.extend(bank.arguments(top).iter().filter_map(known));
+            let head = bank.head(top);
+            let made = match head {
+                Head::Variable(variable) => self.variable(variable, reading),
+                Head::Symbol(symbol) => self.application(symbol, &arguments),
+            };
+            if ground { self.ground.insert(top, made) } else { memo.insert(top, made) };
+            stack.pop();
+        }
+        self.ground.get(&term).or_else(|| memo.get(&term)).copied().expect("it was just made")
+    }
+
+    fn application(&mut self, symbol: Symbol, arguments: &[TermIndex]) -> TermIndex {
+        match self.engine.system.question_rank(symbol) {
+            Some(rank) => {
+                let name = self.claim_variables.get(&rank).cloned();
+                let name = name.unwrap_or_else(|| format!("any{}", rank.0));
+                let name = self.variable_name(&name, rank.1);
+                self.terms.variable_named(name)
+            }
+            None => {
+                self.operators.insert(symbol);
+                self.terms.apply(&self.naming.symbols[symbol.index()], arguments)
+            }
+        }
+    }
+
+    fn variable(&mut self, variable: Variable, reading: &Reading) -> TermIndex {
+        let name = match reading {
+            Reading::Theory => self.naming.variables[variable.index as usize].0.clone(),
+            Reading::Rule(order) => {
+                let place = order.iter().position(|v| *v == variable);
+                let index = place.expect("all variables of the chain are listed") as u32;
+                self.naming.rule_variable(Variable { index, ..variable })
+            }
+        };
+        let name = self.variable_name(&name, variable.sort);
+        self.terms.variable_named(name)
+    }
+
+    fn variable_name(&mut self, name: &str, sort: Sort) -> Name {
+        let name = self.terms.name(name);
+        self.variables.insert(name, sort);
+        name
+    }
+
+    fn types(&mut self) -> Option<proof::Types> {
+        if !self.naming.typed {
+            return None;
+        }
+        let mut types = proof::Types::default();
+        for symbol in &self.operators {
+            let name = self.terms.name(&self.naming.symbols[symbol.index()]);
+            let sorts = self.naming.types[symbol.index()].iter();
+            let sorts = sorts.map(|s| self.terms.name(&self.naming.sorts[usize::from(s.0)]));
+            types.operators.push((name, sorts.collect()));
+        }
+        for (name, sort) in &self.variables {
+            let sort = self.terms.name(&self.naming.sorts[usize::from(sort.0)]);
+            types.variables.push((*name, sort));
+        }
+        types.variables.sort_unstable();
+        Some(types)
+    }
+
+    fn order(&mut self) -> proof::StatedOrder {
+        let order = &self.engine.system.order;
+        let theory = |s: &Symbol| s.index() < self.naming.symbols.len();
+        let precedence: Vec<Symbol> = order.precedence().into_iter().filter(theory).collect();
+        let kbo = order.kind() == OrderKind::Kbo;
+        let weight = |s: &Symbol| u64::from(order.weight(*s));
+        let weights: Vec<u64> = precedence.iter().map(weight).collect();
+        let names: Vec<Name> = precedence
+            .iter()
+            .map(|s| self.terms.name(&self.naming.symbols[s.index()]))
+            .collect();
+        proof::StatedOrder {
+            kind: if kbo {
+                proof::OrderKind::KnuthBendix
+            } else {
+                proof::OrderKind::LexicographicPath
+            },
+            weights: if kbo { names.iter().copied().zip(weights).collect() } else { Vec::new() },
+            precedence: names,
+            variable: u64::from(order.variable_weight()),
+        }
+    }
+}
+
+/// How a rule is called.
+pub(super) fn rule_name(rule: RuleId) -> String {
+    format!("rule {}", rule.0 + 1)
+}
+
+fn ground_name(from: TermId, to: TermId) -> String {
+    format!("value {}-{}", from.0, to.0)
+}
+
+/// The chain of one ground term by its own steps, in which what happened to an argument is one
+/// step by a lemma; and these lemmas.
+fn ground_chain(
+    engine: &mut Engine,
+    from: TermId,
+    to: TermId,
+) -> Option<(Chain, Vec<(TermId, TermId)>)> {
+    let links = match engine.system.links(from, to) {
+        Some(links) => links,
+        None => vec![(to, Reason::Arguments)],
+    };
+    let mut chain = Chain::new(from);
+    let mut needed = Vec::new();
+    for (next, reason) in links {
+        let here = chain.end();
+        match reason {
+            Reason::Rule(_) | Reason::Canonical => {
+                chain = chain.then(of_table(engine, here, next, FLAT)?);
+            }
+            Reason::Arguments => {
+                if engine.system.bank.head(here) != engine.system.bank.head(next) {
+                    return None;
+                }
+                for place in 0..engine.system.bank.arguments(here).len() {
+                    let s = engine.system.bank.arguments(here)[place];
+                    let t = engine.system.bank.arguments(next)[place];
+                    if s == t {
+                        continue;
+                    }
+                    let at = vec![place as u32];
+                    match of_table(engine, s, t, INLINE) {
+                        Some(below) => chain.append_below(engine, &at, below),
+                        None => {
+                            needed.push((s, t));
+                            chain.push(engine, Cited::Ground(s, t), true, at, t);
+                        }
+                    }
+                }
+            }
+        }
+    }
+    Some((chain, needed))
+}

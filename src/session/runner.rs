@@ -1,0 +1,234 @@
+//! A theory in an engine.
+
+use super::evidence::{ClaimVariables, Naming, Writer};
+use crate::engine::Engine;
+use crate::order::{Order, OrderProblem, OrderSetting};
+use crate::proof;
+use crate::rewrite::Limits;
+use crate::term::{Copier, Sort, Symbol, TermId, Variable};
+use crate::theory::Theory;
+use rustc_hash::FxHashMap;
+
+/// A question in an engine: ground terms, in which constants stand for the variables.
+#[derive(Clone, Debug)]
+pub(super) struct Asked {
+    pub(super) left: TermId,
+    pub(super) right: TermId,
+    pub(super) variables: ClaimVariables,
+}
+
+/// An engine with one order, and what of the theory it has.
+pub(super) struct Runner {
+    pub(super) engine: Engine,
+    pub(super) setting: OrderSetting,
+    /// Why this order is tried.
+    pub(super) why: &'static str,
+    pub(super) naming: Naming,
+    /// The theory's terms in the engine's bank.
+    copier: Copier,
+    symbols: usize,
+    /// The laws that the engine has, as sides in the theory's bank.
+    laws: Vec<(String, TermId, TermId)>,
+}
+
+impl Runner {
+    pub(super) fn new(
+        theory: &Theory,
+        setting: OrderSetting,
+        why: &'static str,
+    ) -> Result<Self, OrderProblem> {
+        let symbols = theory.bank.symbols();
+        let order = Order::new(&setting, symbols)?;
+        let mut runner = Runner {
+            engine: Engine::new(order, symbols),
+            setting,
+            why,
+            naming: naming(theory),
+            copier: Copier::default(),
+            symbols: symbols.len(),
+            laws: Vec::new(),
+        };
+        runner.add_laws(theory);
+        Ok(runner)
+    }
+
+    /// Takes in what was added to the theory since. False if more has changed than that.
+    pub(super) fn catch_up(&mut self, theory: &Theory) -> bool {
+        let known = theory.laws.iter().zip(&self.laws).all(|(law, (name, left, right))| {
+            law.name == *name && (law.left, law.right) == (*left, *right)
+        });
+        if theory.bank.symbols().len() != self.symbols
+            || theory.laws.len() < self.laws.len()
+            || !known
+        {
+            return false;
+        }
+        self.naming = naming(theory);
+        self.add_laws(theory);
+        true
+    }
+
+    fn add_laws(&mut self, theory: &Theory) {
+        for law in &theory.laws[self.laws.len()..] {
+            let left = self.term(theory, law.left);
+            let right = self.term(theory, law.right);
+            self.engine.add_law(left, right);
+            self.laws.push((law.name.clone(), law.left, law.right));
+        }
+    }
+
+    /// A term of the theory, with its variables, in the engine's bank.
+    pub(super) fn term(&mut self, theory: &Theory, term: TermId) -> TermId {
+        let bank = &mut self.engine.system.bank;
+        self.copier.copy(&theory.bank, bank, term, |s| s, |bank, v| bank.variable(v))
+    }
+
+    /// A question in the engine. The constants for its variables are in the order of the alphabet,
+    /// the earlier the smaller.
+    pub(super) fn ask(&mut self, theory: &Theory, left: TermId, right: TermId) -> Asked {
+        let mut variables = theory.bank.variables(left);
+        variables.extend(theory.bank.variables(right));
+        let name = |v: &Variable| theory.signature.variables()[v.index as usize].name.as_str();
+        variables.sort_by(|a, b| name(a).cmp(name(b)));
+        variables.dedup();
+        let rank: FxHashMap<Variable, u32> =
+            variables.iter().enumerate().map(|(rank, v)| (*v, rank as u32)).collect();
+        let system = &mut self.engine.system;
+        let constants: FxHashMap<Variable, TermId> = variables
+            .iter()
+            .map(|v| (*v, system.question_constant(rank[v], v.sort)))
+            .collect();
+        let mut copier = Copier::default();
+        let mut copy = |term| {
+            copier.copy(&theory.bank, &mut system.bank, term, |s| s, |_, v| constants[&v])
+        };
+        let (left, right) = (copy(left), copy(right));
+        let variables: ClaimVariables =
+            variables.iter().map(|v| ((rank[v], v.sort), name(v).to_owned())).collect();
+        Asked { left, right, variables }
+    }
+
+    /// The normal form of a question's term, or why it was stopped.
+    pub(super) fn normal_form(
+        &mut self,
+        term: TermId,
+        limits: &mut Limits,
+    ) -> Result<TermId, crate::rewrite::Stopped> {
+        self.engine.system.set_asking(true);
+        let normal = self.engine.system.normal_form(term, limits);
+        self.engine.system.set_asking(false);
+        normal
+    }
+
+    /// The proof that the sides of a question are equal, once their normal forms are the same.
+    /// Nothing if it would be too long.
+    pub(super) fn proof(&mut self, asked: &Asked) -> Option<proof::Proof> {
+        self.engine.system.set_asking(true);
+        let writer = Writer::new(&mut self.engine, &self.naming, &asked.variables);
+        let proof = writer.proof(asked.left, asked.right);
+        self.engine.system.set_asking(false);
+        proof
+    }
+
+    /// The active rules as a complete set, with the two normal forms of a question.
+    pub(super) fn complete_set(
+        &mut self,
+        question: Option<(&Asked, [TermId; 2])>,
+    ) -> Option<proof::CompleteSet> {
+        let none = ClaimVariables::default();
+        let variables = question.map_or(&none, |(asked, _)| &asked.variables);
+        let claim = question.map(|(asked, _)| [asked.left, asked.right]);
+        let normal = question.map(|(_, normal)| normal);
+        let writer = Writer::new(&mut self.engine, &self.naming, variables);
+        writer.complete(claim.zip(normal)).ok()
+    }
+
+    /// A term of the engine, ground, in the theory's bank, with the variables back.
+    pub(super) fn term_back(
+        &self,
+        theory: &mut Theory,
+        term: TermId,
+        variables: &ClaimVariables,
+    ) -> TermId {
+        let system = &self.engine.system;
+        let of_name: FxHashMap<&str, u32> = theory
+            .signature
+            .variables()
+            .iter()
+            .enumerate()
+            .map(|(index, v)| (v.name.as_str(), index as u32))
+            .collect();
+        let numbers: FxHashMap<(u32, Sort), u32> = variables
+            .iter()
+            .filter_map(|(rank, name)| Some((*rank, *of_name.get(name.as_str())?)))
+            .collect();
+        copy_back(system, &mut theory.bank, term, &numbers)
+    }
+}
+
+/// Copies a ground term, constants of a question becoming variables.
+fn copy_back(
+    system: &crate::rewrite::System,
+    bank: &mut crate::term::Bank,
+    term: TermId,
+    numbers: &FxHashMap<(u32, Sort), u32>,
+) -> TermId {
+    let mut known: FxHashMap<TermId, TermId> = FxHashMap::default();
+    let mut stack = vec![term];
+    let mut arguments = Vec::new();
+    while let Some(&top) = stack.last() {
+        if known.contains_key(&top) {
+            stack.pop();
+            continue;
+        }
+        let before = stack.len();
+        stack.extend(system.bank.arguments(top).iter().filter(|a| !known.contains_key(a)));
+        if stack.len() > before {
+            continue;
+        }
+        arguments.clear();
+        arguments.extend(system.bank.arguments(top).iter().map(|a| known[a]));
+        let symbol = system.bank.as_symbol(top).expect("a question's terms are ground");
+        let made = match system.question_rank(symbol) {
+            Some(rank) => {
+                let index = numbers.get(&rank).copied().unwrap_or(0);
+                bank.variable(Variable { index, sort: rank.1 })
+            }
+            None => bank.apply(symbol, &arguments),
+        };
+        known.insert(top, made);
+        stack.pop();
+    }
+    known[&term]
+}
+
+fn naming(theory: &Theory) -> Naming {
+    let signature = &theory.signature;
+    let twice = |name: &str, place: usize| {
+        signature.symbols().iter().enumerate().any(|(p, s)| p != place && s.name == name)
+    };
+    let symbols = signature.symbols().iter().enumerate().map(|(place, symbol)| {
+        if twice(&symbol.name, place) {
+            format!("{}/{}", symbol.name, symbol.arguments.len())
+        } else {
+            symbol.name.clone()
+        }
+    });
+    let types = signature.symbols().iter().map(|symbol| {
+        symbol.arguments.iter().copied().chain([symbol.result]).collect::<Vec<Sort>>()
+    });
+    Naming {
+        symbols: symbols.collect(),
+        variables: signature.variables().iter().map(|v| (v.name.clone(), v.sort)).collect(),
+        sorts: signature.sorts().to_vec(),
+        laws: theory.laws.iter().map(|law| law.name.clone()).collect(),
+        typed: signature.has_sorts(),
+        types: types.collect(),
+    }
+}
+
+/// The number of a symbol of the theory in evidence, if the name is one.
+pub(super) fn symbol_of(naming: &Naming, name: &str) -> Option<Symbol> {
+    let place = naming.symbols.iter().position(|known| known == name)?;
+    Some(Symbol(place as u32))
+}

@@ -1,0 +1,236 @@
+//! The engines of a session: one per order that is tried.
+//!
+//! While no order is stated, several are tried for a short time each, longer each round, and the
+//! first that completes is kept. Each engine keeps its state, so that no work is done twice. Some
+//! questions are settled by an order that never completes, so all engines take part in a search.
+
+use super::control::Work;
+use super::runner::{Asked, Runner};
+use crate::engine::Outcome;
+use crate::order::{Candidate, OrderSetting, candidates};
+use crate::rewrite::Stopped;
+use crate::term::TermId;
+use crate::theory::{LawKind, Theory};
+use std::time::Duration;
+
+/// How a search by all engines ended.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Ended {
+    /// This engine is complete.
+    Complete(usize),
+    /// The sides of the question met in this engine.
+    Met(usize),
+    /// No engine has a pair left, but each has given some up.
+    Exhausted,
+    /// Stopped from outside, or by a bound.
+    Stopped(Stopped),
+}
+
+/// Why there is no engine.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub enum NoOrder {
+    /// No order was found in which all directed rules decrease.
+    Directed,
+    /// The stated order is not admissible for the symbols as they are now.
+    Stated(crate::order::OrderProblem),
+    /// In the stated order these directed rules, by name, do not decrease.
+    Misdirected(Vec<String>),
+}
+
+/// The length of the first slice; each round's slices are twice as long.
+const FIRST_SLICE: Duration = Duration::from_millis(40);
+
+#[derive(Default)]
+pub(super) struct Workers {
+    runners: Vec<Runner>,
+    /// Orders that have no engine yet.
+    planned: Vec<Candidate>,
+    /// The engine that answers from its rules.
+    best: usize,
+    /// How many orders have been tried, those that were let go included.
+    tried: usize,
+    /// How long the next slices are.
+    slice: Option<Duration>,
+    /// Did one complete?
+    settled: bool,
+}
+
+impl Workers {
+    /// Engines for the theory as it is: those there are, with what was added since, or new ones.
+    pub(super) fn catch_up(&mut self, theory: &Theory) -> Result<(), NoOrder> {
+        let laws = self.runners.first().map(|runner| runner.engine.laws().len());
+        let kept = !self.runners.is_empty()
+            && self.runners.iter_mut().all(|runner| runner.catch_up(theory));
+        if !kept {
+            *self = Workers::fresh(theory)?;
+        } else if laws != self.runners.first().map(|runner| runner.engine.laws().len()) {
+            self.plan_again(theory)?;
+        }
+        Ok(())
+    }
+
+    /// After new laws, the order that completed the old ones is tried first, not alone.
+    fn plan_again(&mut self, theory: &Theory) -> Result<(), NoOrder> {
+        self.settled = false;
+        let mut fresh = Workers::plan(theory)?;
+        fresh.retain(|c| self.runners.iter().all(|runner| runner.setting != c.setting));
+        self.planned = fresh;
+        Ok(())
+    }
+
+    fn fresh(theory: &Theory) -> Result<Self, NoOrder> {
+        let mut workers = Workers { planned: Workers::plan(theory)?, ..Workers::default() };
+        workers.start_next(theory)?;
+        Ok(workers)
+    }
+
+    /// The orders to try, the first one last.
+    fn plan(theory: &Theory) -> Result<Vec<Candidate>, NoOrder> {
+        let sides = |kind: fn(LawKind) -> bool| -> Vec<(TermId, TermId)> {
+            let laws = theory.laws.iter().filter(|law| kind(law.kind));
+            laws.map(|law| (law.left, law.right)).collect()
+        };
+        let directed = sides(|kind| kind == LawKind::Rule);
+        let mut planned = match &theory.order {
+            Some(setting) => {
+                check_directed(theory, setting)?;
+                vec![Candidate { setting: setting.clone(), why: "is the one that was stated" }]
+            }
+            None => {
+                let rest = sides(|kind| kind != LawKind::Rule);
+                candidates(&theory.bank, &rest, &directed)
+            }
+        };
+        if planned.is_empty() {
+            return Err(NoOrder::Directed);
+        }
+        planned.reverse();
+        Ok(planned)
+    }
+
+    /// Begins with rules that were derived under a stated order.
+    pub(super) fn begin_with(runner: Runner) -> Self {
+        Workers { runners: vec![runner], tried: 1, ..Workers::default() }
+    }
+
+    fn start_next(&mut self, theory: &Theory) -> Result<bool, NoOrder> {
+        let Some(candidate) = self.planned.pop() else { return Ok(false) };
+        let runner = Runner::new(theory, candidate.setting, candidate.why);
+        self.runners.push(runner.map_err(NoOrder::Stated)?);
+        self.tried += 1;
+        Ok(true)
+    }
+
+    /// The engine that answers.
+    pub(super) fn best(&mut self) -> Option<&mut Runner> {
+        self.runners.get_mut(self.best)
+    }
+
+    pub(super) fn best_ref(&self) -> Option<&Runner> {
+        self.runners.get(self.best)
+    }
+
+    pub(super) fn get(&mut self, place: usize) -> &mut Runner {
+        &mut self.runners[place]
+    }
+
+    pub(super) fn tried(&self) -> usize {
+        self.tried
+    }
+
+    /// Pairs formed by all engines.
+    pub(super) fn formed(&self) -> u64 {
+        self.runners.iter().map(|runner| runner.engine.counts().formed).sum()
+    }
+
+    /// Runs the engines in turn until one completes, the question is met, or the work is over.
+    pub(super) fn run(
+        &mut self,
+        theory: &Theory,
+        question: Option<(TermId, TermId)>,
+        work: &mut Work,
+    ) -> Result<Ended, NoOrder> {
+        let mut slice = self.slice.unwrap_or(FIRST_SLICE);
+        loop {
+            let mut exhausted = true;
+            let mut place = 0;
+            loop {
+                if place == self.runners.len() && (self.settled || !self.start_next(theory)?) {
+                    break;
+                }
+                match self.run_one(theory, place, question, slice, work) {
+                    Outcome::Complete => {
+                        self.settle(place);
+                        return Ok(Ended::Complete(self.best));
+                    }
+                    Outcome::Met => return Ok(Ended::Met(place)),
+                    Outcome::Exhausted => {}
+                    Outcome::Stopped(stopped) => {
+                        exhausted &= stopped == Stopped::Memory;
+                        if work.is_over() {
+                            self.slice = Some(slice);
+                            self.choose();
+                            let stopped =
+                                if work.is_stopped() { Stopped::Interrupted } else { Stopped::Time };
+                            return Ok(Ended::Stopped(stopped));
+                        }
+                    }
+                }
+                place += 1;
+            }
+            if exhausted {
+                self.choose();
+                return Ok(Ended::Exhausted);
+            }
+            slice *= 2;
+        }
+    }
+
+    fn run_one(
+        &mut self,
+        theory: &Theory,
+        place: usize,
+        question: Option<(TermId, TermId)>,
+        slice: Duration,
+        work: &mut Work,
+    ) -> Outcome {
+        let alone = self.runners.len() == 1 && (self.settled || self.planned.is_empty());
+        let mut limits = work.limits((!alone).then_some(slice));
+        let all = self.formed();
+        let runner = &mut self.runners[place];
+        let asked: Option<Asked> = question.map(|(s, t)| runner.ask(theory, s, t));
+        let others = all - runner.engine.counts().formed;
+        let sides = asked.map(|asked| (asked.left, asked.right));
+        runner.engine.run(&mut limits, sides, |engine| work.tell(engine, others))
+    }
+
+    /// Keeps the engine that completed and lets the others go.
+    fn settle(&mut self, place: usize) {
+        self.runners.swap(0, place);
+        self.runners.truncate(1);
+        self.planned.clear();
+        self.best = 0;
+        self.settled = true;
+        self.slice = None;
+    }
+
+    /// The most promising engine is the one with the fewest rules: under an order that suits the
+    /// laws, rules make each other redundant.
+    fn choose(&mut self) {
+        let rules = |place: &usize| self.runners[*place].engine.system.active();
+        self.best = (0..self.runners.len()).min_by_key(rules).unwrap_or(0);
+    }
+}
+
+/// In a stated order, all directed rules must decrease.
+pub(super) fn check_directed(theory: &Theory, setting: &OrderSetting) -> Result<(), NoOrder> {
+    let rules: Vec<_> = theory.laws.iter().filter(|law| law.kind == LawKind::Rule).collect();
+    let sides: Vec<_> = rules.iter().map(|law| (law.left, law.right)).collect();
+    let wrong = crate::order::misdirected(&theory.bank, setting, &sides);
+    match wrong.map_err(NoOrder::Stated)? {
+        wrong if wrong.is_empty() => Ok(()),
+        wrong => {
+            Err(NoOrder::Misdirected(wrong.iter().map(|&at| rules[at].name.clone()).collect()))
+        }
+    }
+}
