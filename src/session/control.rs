@@ -52,7 +52,14 @@ impl<'a, 'c> Work<'a, 'c> {
     ) -> Self {
         let begun = Instant::now();
         let doing = doing.into();
-        Work { control, doing, begun, budget, told: begun, formed_before: 0 }
+        Work {
+            control,
+            doing,
+            begun,
+            budget,
+            told: begun,
+            formed_before: 0,
+        }
     }
 
     pub(super) fn formed_before(mut self, formed: u64) -> Self {

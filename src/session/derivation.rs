@@ -40,7 +40,10 @@ pub(super) struct Chain {
 
 impl Chain {
     pub(super) fn new(from: TermId) -> Self {
-        Chain { from, links: Vec::new() }
+        Chain {
+            from,
+            links: Vec::new(),
+        }
     }
 
     pub(super) fn end(&self) -> TermId {
@@ -52,14 +55,22 @@ impl Chain {
         let from = self.end();
         let mut wholes: Vec<TermId> = self.links.iter().map(|link| link.to).collect();
         wholes.insert(0, self.from);
-        let links = self.links.into_iter().enumerate().rev().map(|(place, link)| Link {
-            forward: !link.forward,
-            before: link.after,
-            after: link.before,
-            to: wholes[place],
-            ..link
-        });
-        Chain { from, links: links.collect() }
+        let links = self
+            .links
+            .into_iter()
+            .enumerate()
+            .rev()
+            .map(|(place, link)| Link {
+                forward: !link.forward,
+                before: link.after,
+                after: link.before,
+                to: wholes[place],
+                ..link
+            });
+        Chain {
+            from,
+            links: links.collect(),
+        }
     }
 
     /// Goes on with a chain that begins where this one ends.
@@ -84,7 +95,10 @@ impl Chain {
                 place_of.insert(link.to, kept.len());
             }
         }
-        Chain { from: self.from, links: kept }
+        Chain {
+            from: self.from,
+            links: kept,
+        }
     }
 
     /// Goes on with the steps of another chain, inside the argument at a place.
@@ -95,12 +109,26 @@ impl Chain {
         }
     }
 
-    pub(super) fn push(&mut self, engine: &mut Engine, by: Cited, forward: bool, at: Vec<u32>, after: TermId) {
+    pub(super) fn push(
+        &mut self,
+        engine: &mut Engine,
+        by: Cited,
+        forward: bool,
+        at: Vec<u32>,
+        after: TermId,
+    ) {
         let whole = self.end();
         let bank = &mut engine.system.bank;
         let before = subterm_at(bank, whole, &at).expect("a recorded place exists");
         let to = replace_at(bank, whole, &at, after);
-        self.links.push(Link { by, forward, at, before, after, to });
+        self.links.push(Link {
+            by,
+            forward,
+            at,
+            before,
+            after,
+            to,
+        });
     }
 }
 
@@ -149,7 +177,11 @@ pub(super) fn of_rule(engine: &mut Engine, rule: RuleId) -> Result<Chain, Replay
     let before = follow(engine, left, &record.left)?.reversed();
     let after = follow(engine, right, &record.right)?;
     let chain = before.then(middle).then(after).without_detours();
-    Ok(if record.swapped { chain.reversed() } else { chain })
+    Ok(if record.swapped {
+        chain.reversed()
+    } else {
+        chain
+    })
 }
 
 fn push_use(chain: &mut Chain, engine: &mut Engine, by: Use, at: Vec<u32>, after: TermId) {
@@ -157,11 +189,7 @@ fn push_use(chain: &mut Chain, engine: &mut Engine, by: Use, at: Vec<u32>, after
     chain.push(engine, cite, by.backward == flipped, at, after);
 }
 
-fn follow(
-    engine: &mut Engine,
-    from: TermId,
-    steps: &[RecordStep],
-) -> Result<Chain, ReplayError> {
+fn follow(engine: &mut Engine, from: TermId, steps: &[RecordStep]) -> Result<Chain, ReplayError> {
     let mut chain = Chain::new(from);
     for step in steps {
         let to = engine.apply_step(chain.end(), step)?;

@@ -31,11 +31,18 @@ pub(super) struct Naming {
 impl Naming {
     /// The name of a variable of a rule: those of the theory that have its sort, then new ones.
     pub(super) fn rule_variable(&self, variable: Variable) -> String {
-        let declared = self.variables.iter().filter(|(_, sort)| *sort == variable.sort);
+        let declared = self
+            .variables
+            .iter()
+            .filter(|(_, sort)| *sort == variable.sort);
         if let Some((name, _)) = declared.clone().nth(variable.index as usize) {
             return name.clone();
         }
-        let sort = if self.typed { self.sorts[usize::from(variable.sort.0)].as_str() } else { "" };
+        let sort = if self.typed {
+            self.sorts[usize::from(variable.sort.0)].as_str()
+        } else {
+            ""
+        };
         let taken = |name: &String| {
             self.symbols.contains(name) || self.variables.iter().any(|(known, _)| known == name)
         };
@@ -104,14 +111,27 @@ impl<'a> Writer<'a> {
         let normal = self.engine.system.known_normal_form(left)?;
         let mark = self.engine.system.bank.mark();
         let chain = self.meeting(left, right, normal);
-        let steps = chain.as_ref().map(|chain| self.steps(chain, &Reading::Theory));
+        let steps = chain
+            .as_ref()
+            .map(|chain| self.steps(chain, &Reading::Theory));
         let proof = steps.and_then(|steps| {
             let ground = std::mem::take(&mut self.lemmas);
             self.prove_rules().ok()?;
             self.lemmas.extend(ground);
             let (left, right) = (self.ground_term(left), self.ground_term(right));
-            let claim = proof::Claim { left, right, when: vec![], steps, witness: vec![] };
-            let laws = self.laws.clone().into_iter().map(|law| self.law(law)).collect();
+            let claim = proof::Claim {
+                left,
+                right,
+                when: vec![],
+                steps,
+                witness: vec![],
+            };
+            let laws = self
+                .laws
+                .clone()
+                .into_iter()
+                .map(|law| self.law(law))
+                .collect();
             Some(proof::Proof {
                 types: self.types(),
                 laws,
@@ -138,13 +158,16 @@ impl<'a> Writer<'a> {
         self.engine.system.bank.rollback(mark);
         proved?;
         let rules = active.iter().map(|&id| self.rule(id)).collect();
-        let laws = (0..self.engine.laws().len() as u32).map(|law| self.law(law)).collect();
+        let laws = (0..self.engine.laws().len() as u32)
+            .map(|law| self.law(law))
+            .collect();
         let claim = claim.map(|([left, right], normal)| proof::CompleteClaim {
             left: self.ground_term(left),
             right: self.ground_term(right),
             normal: normal.map(|term| self.ground_term(term)),
         });
-        self.operators.extend((0..self.naming.symbols.len() as u32).map(Symbol));
+        self.operators
+            .extend((0..self.naming.symbols.len() as u32).map(Symbol));
         let order = self.order();
         Ok(proof::CompleteSet {
             types: self.types(),
@@ -189,7 +212,10 @@ impl<'a> Writer<'a> {
                 continue;
             }
             let (chain, needed) = ground_chain(self.engine, s, t)?;
-            let open: Vec<_> = needed.into_iter().filter(|pair| !known.contains(pair)).collect();
+            let open: Vec<_> = needed
+                .into_iter()
+                .filter(|pair| !known.contains(pair))
+                .collect();
             if !open.is_empty() {
                 stack.extend(open);
                 continue;
@@ -208,7 +234,12 @@ impl<'a> Writer<'a> {
         let steps = self.steps(chain, &Reading::Theory);
         let (left, right) = (self.ground_term(chain.from), self.ground_term(chain.end()));
         let name = self.terms.name(&ground_name(chain.from, chain.end()));
-        let equation = Equation { name, left, right, when: Vec::new() };
+        let equation = Equation {
+            name,
+            left,
+            right,
+            when: Vec::new(),
+        };
         self.lemmas.push(Lemma { equation, steps });
     }
 
@@ -230,8 +261,15 @@ impl<'a> Writer<'a> {
             // The variables of the sides come first, so that the numbers are those of the rule.
             let steps = self.steps(&chain, &Reading::Rule(&order));
             let rule = self.rule(rule);
-            let proof::Rule { name, left, right, .. } = rule;
-            let equation = Equation { name, left, right, when: Vec::new() };
+            let proof::Rule {
+                name, left, right, ..
+            } = rule;
+            let equation = Equation {
+                name,
+                left,
+                right,
+                when: Vec::new(),
+            };
             lemmas.push(Lemma { equation, steps });
         }
         lemmas.reverse();
@@ -241,7 +279,11 @@ impl<'a> Writer<'a> {
 
     fn steps(&mut self, chain: &Chain, reading: &Reading) -> Vec<Step> {
         let mut memo = FxHashMap::default();
-        chain.links.iter().map(|link| self.step(link, reading, &mut memo)).collect()
+        chain
+            .links
+            .iter()
+            .map(|link| self.step(link, reading, &mut memo))
+            .collect()
     }
 
     fn step(
@@ -255,8 +297,11 @@ impl<'a> Writer<'a> {
             Cited::Rule(rule) => self.engine.system.rule(rule).sides(false),
             Cited::Ground(from, to) => (from, to),
         };
-        let (from, to) =
-            if link.forward { (link.before, link.after) } else { (link.after, link.before) };
+        let (from, to) = if link.forward {
+            (link.before, link.after)
+        } else {
+            (link.after, link.before)
+        };
         let mut substitution = Substitution::default();
         let bank = &self.engine.system.bank;
         let fits = match_term(bank, left, from, &mut substitution)
@@ -281,7 +326,11 @@ impl<'a> Writer<'a> {
         }
         Step {
             by: self.citation(link.by),
-            way: if link.forward { Way::Forward } else { Way::Backward },
+            way: if link.forward {
+                Way::Forward
+            } else {
+                Way::Backward
+            },
             at: link.at.clone(),
             with,
             to: self.term(link.to, reading, memo),
@@ -390,10 +439,18 @@ impl<'a> Writer<'a> {
                 Head::Variable(variable) => self.variable(variable, reading),
                 Head::Symbol(symbol) => self.application(symbol, &arguments),
             };
-            if ground { self.ground.insert(top, made) } else { memo.insert(top, made) };
+            if ground {
+                self.ground.insert(top, made)
+            } else {
+                memo.insert(top, made)
+            };
             stack.pop();
         }
-        self.ground.get(&term).or_else(|| memo.get(&term)).copied().expect("it was just made")
+        self.ground
+            .get(&term)
+            .or_else(|| memo.get(&term))
+            .copied()
+            .expect("it was just made")
     }
 
     fn application(&mut self, symbol: Symbol, arguments: &[TermIndex]) -> TermIndex {
@@ -406,7 +463,8 @@ impl<'a> Writer<'a> {
             }
             None => {
                 self.operators.insert(symbol);
-                self.terms.apply(&self.naming.symbols[symbol.index()], arguments)
+                self.terms
+                    .apply(&self.naming.symbols[symbol.index()], arguments)
             }
         }
     }
@@ -466,7 +524,11 @@ impl<'a> Writer<'a> {
             } else {
                 proof::OrderKind::LexicographicPath
             },
-            weights: if kbo { names.iter().copied().zip(weights).collect() } else { Vec::new() },
+            weights: if kbo {
+                names.iter().copied().zip(weights).collect()
+            } else {
+                Vec::new()
+            },
             precedence: names,
             variable: u64::from(order.variable_weight()),
         }

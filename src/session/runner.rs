@@ -54,9 +54,13 @@ impl Runner {
 
     /// Takes in what was added to the theory since. False if more has changed than that.
     pub(super) fn catch_up(&mut self, theory: &Theory) -> bool {
-        let known = theory.laws.iter().zip(&self.laws).all(|(law, (name, left, right))| {
-            law.name == *name && (law.left, law.right) == (*left, *right)
-        });
+        let known = theory
+            .laws
+            .iter()
+            .zip(&self.laws)
+            .all(|(law, (name, left, right))| {
+                law.name == *name && (law.left, law.right) == (*left, *right)
+            });
         if theory.bank.symbols().len() != self.symbols
             || theory.laws.len() < self.laws.len()
             || !known
@@ -80,7 +84,8 @@ impl Runner {
     /// A term of the theory, with its variables, in the engine's bank.
     pub(super) fn term(&mut self, theory: &Theory, term: TermId) -> TermId {
         let bank = &mut self.engine.system.bank;
-        self.copier.copy(&theory.bank, bank, term, |s| s, |bank, v| bank.variable(v))
+        self.copier
+            .copy(&theory.bank, bank, term, |s| s, |bank, v| bank.variable(v))
     }
 
     /// A question in the engine. The constants for its variables are in the order of the alphabet,
@@ -91,8 +96,11 @@ impl Runner {
         let name = |v: &Variable| theory.signature.variables()[v.index as usize].name.as_str();
         variables.sort_by(|a, b| name(a).cmp(name(b)));
         variables.dedup();
-        let rank: FxHashMap<Variable, u32> =
-            variables.iter().enumerate().map(|(rank, v)| (*v, rank as u32)).collect();
+        let rank: FxHashMap<Variable, u32> = variables
+            .iter()
+            .enumerate()
+            .map(|(rank, v)| (*v, rank as u32))
+            .collect();
         let system = &mut self.engine.system;
         let constants: FxHashMap<Variable, TermId> = variables
             .iter()
@@ -100,12 +108,24 @@ impl Runner {
             .collect();
         let mut copier = Copier::default();
         let mut copy = |term| {
-            copier.copy(&theory.bank, &mut system.bank, term, |s| s, |_, v| constants[&v])
+            copier.copy(
+                &theory.bank,
+                &mut system.bank,
+                term,
+                |s| s,
+                |_, v| constants[&v],
+            )
         };
         let (left, right) = (copy(left), copy(right));
-        let variables: ClaimVariables =
-            variables.iter().map(|v| ((rank[v], v.sort), name(v).to_owned())).collect();
-        Asked { left, right, variables }
+        let variables: ClaimVariables = variables
+            .iter()
+            .map(|v| ((rank[v], v.sort), name(v).to_owned()))
+            .collect();
+        Asked {
+            left,
+            right,
+            variables,
+        }
     }
 
     /// The normal form of a question's term, or why it was stopped.
@@ -182,17 +202,29 @@ fn copy_back(
             continue;
         }
         let before = stack.len();
-        stack.extend(system.bank.arguments(top).iter().filter(|a| !known.contains_key(a)));
+        stack.extend(
+            system
+                .bank
+                .arguments(top)
+                .iter()
+                .filter(|a| !known.contains_key(a)),
+        );
         if stack.len() > before {
             continue;
         }
         arguments.clear();
         arguments.extend(system.bank.arguments(top).iter().map(|a| known[a]));
-        let symbol = system.bank.as_symbol(top).expect("a question's terms are ground");
+        let symbol = system
+            .bank
+            .as_symbol(top)
+            .expect("a question's terms are ground");
         let made = match system.question_rank(symbol) {
             Some(rank) => {
                 let index = numbers.get(&rank).copied().unwrap_or(0);
-                bank.variable(Variable { index, sort: rank.1 })
+                bank.variable(Variable {
+                    index,
+                    sort: rank.1,
+                })
             }
             None => bank.apply(symbol, &arguments),
         };
@@ -205,21 +237,38 @@ fn copy_back(
 fn naming(theory: &Theory) -> Naming {
     let signature = &theory.signature;
     let twice = |name: &str, place: usize| {
-        signature.symbols().iter().enumerate().any(|(p, s)| p != place && s.name == name)
+        signature
+            .symbols()
+            .iter()
+            .enumerate()
+            .any(|(p, s)| p != place && s.name == name)
     };
-    let symbols = signature.symbols().iter().enumerate().map(|(place, symbol)| {
-        if twice(&symbol.name, place) {
-            format!("{}/{}", symbol.name, symbol.arguments.len())
-        } else {
-            symbol.name.clone()
-        }
-    });
+    let symbols = signature
+        .symbols()
+        .iter()
+        .enumerate()
+        .map(|(place, symbol)| {
+            if twice(&symbol.name, place) {
+                format!("{}/{}", symbol.name, symbol.arguments.len())
+            } else {
+                symbol.name.clone()
+            }
+        });
     let types = signature.symbols().iter().map(|symbol| {
-        symbol.arguments.iter().copied().chain([symbol.result]).collect::<Vec<Sort>>()
+        symbol
+            .arguments
+            .iter()
+            .copied()
+            .chain([symbol.result])
+            .collect::<Vec<Sort>>()
     });
     Naming {
         symbols: symbols.collect(),
-        variables: signature.variables().iter().map(|v| (v.name.clone(), v.sort)).collect(),
+        variables: signature
+            .variables()
+            .iter()
+            .map(|v| (v.name.clone(), v.sort))
+            .collect(),
         sorts: signature.sorts().to_vec(),
         laws: theory.laws.iter().map(|law| law.name.clone()).collect(),
         typed: signature.has_sorts(),

@@ -1,12 +1,5 @@
-//! Evidence as text: its plain terms become terms of a bank of their own, for the printer.
+//! Evidence as text.
 
-use super::runner::symbol_of_name;
-use crate::language::{Names, Printed, Printer, SymbolName, TheoryNames};
-use crate::proof::{self, Node, TermIndex, Terms, Way};
-use crate::term::{Bank, Symbol, TermId, Variable};
-use crate::theory::{Signature, Theory};
-use rustc_hash::FxHashMap;
-use std::borrow::Cow;
 use std::ops::Range;
 
 /// One line of a chain of equalities: what the step before led to, and by what.
@@ -42,25 +35,4 @@ pub struct ProofText {
     pub lemmas: Vec<LemmaText>,
     /// The chain of the claim.
     pub lines: Vec<ProofLine>,
-}
-
-/// Longer terms are cut in a line of a proof.
-const LONGEST_LINE: usize = 4_000;
-
-struct SheetNames<'t> {
-    signature: &'t Signature,
-    variables: Vec<String>,
-}
-
-impl Names for SheetNames<'_> {
-    fn symbol(&self, symbol: Symbol) -> SymbolName<'_> {
-        match TheoryNames(self.signature).symbol(symbol) {
-            known if symbol.index() < self.signature.symbols().len() => known.name_only(),
-            unknown => unknown.name_only(),
-        }
-    }
-
-    fn variable(&self, variable: Variable) -> Cow<'_, str> {
-        Cow::Borrowed(&self.variables[variable.index as usize])
-    }
 }

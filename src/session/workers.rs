@@ -58,12 +58,23 @@ pub(super) struct Workers {
 impl Workers {
     /// Engines for the theory as it is: those there are, with what was added since, or new ones.
     pub(super) fn catch_up(&mut self, theory: &Theory) -> Result<(), NoOrder> {
-        let laws = self.runners.first().map(|runner| runner.engine.laws().len());
+        let laws = self
+            .runners
+            .first()
+            .map(|runner| runner.engine.laws().len());
         let kept = !self.runners.is_empty()
-            && self.runners.iter_mut().all(|runner| runner.catch_up(theory));
+            && self
+                .runners
+                .iter_mut()
+                .all(|runner| runner.catch_up(theory));
         if !kept {
             *self = Workers::fresh(theory)?;
-        } else if laws != self.runners.first().map(|runner| runner.engine.laws().len()) {
+        } else if laws
+            != self
+                .runners
+                .first()
+                .map(|runner| runner.engine.laws().len())
+        {
             self.plan_again(theory)?;
         }
         Ok(())
@@ -73,13 +84,20 @@ impl Workers {
     fn plan_again(&mut self, theory: &Theory) -> Result<(), NoOrder> {
         self.settled = false;
         let mut fresh = Workers::plan(theory)?;
-        fresh.retain(|c| self.runners.iter().all(|runner| runner.setting != c.setting));
+        fresh.retain(|c| {
+            self.runners
+                .iter()
+                .all(|runner| runner.setting != c.setting)
+        });
         self.planned = fresh;
         Ok(())
     }
 
     fn fresh(theory: &Theory) -> Result<Self, NoOrder> {
-        let mut workers = Workers { planned: Workers::plan(theory)?, ..Workers::default() };
+        let mut workers = Workers {
+            planned: Workers::plan(theory)?,
+            ..Workers::default()
+        };
         workers.start_next(theory)?;
         Ok(workers)
     }
@@ -94,7 +112,10 @@ impl Workers {
         let mut planned = match &theory.order {
             Some(setting) => {
                 check_directed(theory, setting)?;
-                vec![Candidate { setting: setting.clone(), why: "is the one that was stated" }]
+                vec![Candidate {
+                    setting: setting.clone(),
+                    why: "is the one that was stated",
+                }]
             }
             None => {
                 let rest = sides(|kind| kind != LawKind::Rule);
@@ -110,11 +131,17 @@ impl Workers {
 
     /// Begins with rules that were derived under a stated order.
     pub(super) fn begin_with(runner: Runner) -> Self {
-        Workers { runners: vec![runner], tried: 1, ..Workers::default() }
+        Workers {
+            runners: vec![runner],
+            tried: 1,
+            ..Workers::default()
+        }
     }
 
     fn start_next(&mut self, theory: &Theory) -> Result<bool, NoOrder> {
-        let Some(candidate) = self.planned.pop() else { return Ok(false) };
+        let Some(candidate) = self.planned.pop() else {
+            return Ok(false);
+        };
         let runner = Runner::new(theory, candidate.setting, candidate.why);
         self.runners.push(runner.map_err(NoOrder::Stated)?);
         self.tried += 1;
@@ -140,7 +167,10 @@ impl Workers {
 
     /// Pairs formed by all engines.
     pub(super) fn formed(&self) -> u64 {
-        self.runners.iter().map(|runner| runner.engine.counts().formed).sum()
+        self.runners
+            .iter()
+            .map(|runner| runner.engine.counts().formed)
+            .sum()
     }
 
     /// Runs the engines in turn until one completes, the question is met, or the work is over.
@@ -170,8 +200,11 @@ impl Workers {
                         if work.is_over() {
                             self.slice = Some(slice);
                             self.choose();
-                            let stopped =
-                                if work.is_stopped() { Stopped::Interrupted } else { Stopped::Time };
+                            let stopped = if work.is_stopped() {
+                                Stopped::Interrupted
+                            } else {
+                                Stopped::Time
+                            };
                             return Ok(Ended::Stopped(stopped));
                         }
                     }
@@ -201,7 +234,9 @@ impl Workers {
         let asked: Option<Asked> = question.map(|(s, t)| runner.ask(theory, s, t));
         let others = all - runner.engine.counts().formed;
         let sides = asked.map(|asked| (asked.left, asked.right));
-        runner.engine.run(&mut limits, sides, |engine| work.tell(engine, others))
+        runner
+            .engine
+            .run(&mut limits, sides, |engine| work.tell(engine, others))
     }
 
     /// Keeps the engine that completed and lets the others go.
@@ -224,13 +259,17 @@ impl Workers {
 
 /// In a stated order, all directed rules must decrease.
 pub(super) fn check_directed(theory: &Theory, setting: &OrderSetting) -> Result<(), NoOrder> {
-    let rules: Vec<_> = theory.laws.iter().filter(|law| law.kind == LawKind::Rule).collect();
+    let rules: Vec<_> = theory
+        .laws
+        .iter()
+        .filter(|law| law.kind == LawKind::Rule)
+        .collect();
     let sides: Vec<_> = rules.iter().map(|law| (law.left, law.right)).collect();
     let wrong = crate::order::misdirected(&theory.bank, setting, &sides);
     match wrong.map_err(NoOrder::Stated)? {
         wrong if wrong.is_empty() => Ok(()),
-        wrong => {
-            Err(NoOrder::Misdirected(wrong.iter().map(|&at| rules[at].name.clone()).collect()))
-        }
+        wrong => Err(NoOrder::Misdirected(
+            wrong.iter().map(|&at| rules[at].name.clone()).collect(),
+        )),
     }
 }
