@@ -32,6 +32,7 @@ pub use property::{PROPERTIES, PropertyRow};
 pub use question::{Question, law_name, parse_question, parse_question_prefix};
 pub use read::{decode, read_theory};
 pub use split::is_open;
+pub use symbols::print_symbol;
 pub use using::{Loaded, Loader, NoLoader};
 pub use words::{
     DECLARATIONS, RESERVED, first_word, is_declaration, is_reserved, nearest, quote_law,

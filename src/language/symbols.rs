@@ -469,7 +469,7 @@ pub(crate) fn number(text: &str, most: usize) -> Option<usize> {
 }
 
 /// The line that declares a symbol.
-pub(crate) fn print_symbol(signature: &Signature, symbol: crate::term::Symbol) -> String {
+pub fn print_symbol(signature: &Signature, symbol: crate::term::Symbol) -> String {
     let declaration = &signature.symbols()[symbol.index()];
     let name = super::quote_symbol(&declaration.name);
     let count = declaration.arguments.len();

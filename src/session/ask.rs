@@ -1,6 +1,7 @@
 //! The ladder: a question goes from the cheapest rung to the dearest.
 
 use super::control::{Control, Work};
+use super::sheet::Sheet;
 use super::workers::Ended;
 use super::{Answer, By, Frontier, ProgramFault, Session, SessionFault, Verdict};
 use crate::proof::{self, Evidence, WorkLimit};
@@ -9,7 +10,7 @@ use crate::term::TermId;
 use std::time::{Duration, Instant};
 
 /// How much checking one answer's evidence may take; see [`WorkLimit`].
-const CHECK_LIMIT: WorkLimit = WorkLimit(200_000_000);
+pub(super) const CHECK_LIMIT: WorkLimit = WorkLimit(200_000_000);
 
 /// What a rung has shown, before its evidence is checked.
 enum Shown {
@@ -207,7 +208,9 @@ impl Session {
     }
 
     fn normal_texts(&self, evidence: Option<&Evidence>) -> Option<[String; 2]> {
-        let _ = evidence;
-        todo!()
+        let Some(Evidence::Complete(set)) = evidence else { return None };
+        let naming = &self.workers.best_ref()?.naming;
+        let mut sheet = Sheet::new(&self.theory, naming, &set.terms);
+        Some(set.claim.as_ref()?.normal.map(|term| sheet.text(term)))
     }
 }

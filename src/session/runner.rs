@@ -4,7 +4,7 @@ use super::evidence::{ClaimVariables, Naming, Writer};
 use crate::engine::Engine;
 use crate::order::{Order, OrderProblem, OrderSetting};
 use crate::proof;
-use crate::rewrite::Limits;
+use crate::rewrite::{Limits, RuleId};
 use crate::term::{Copier, Sort, Symbol, TermId, Variable};
 use crate::theory::Theory;
 use rustc_hash::FxHashMap;
@@ -61,15 +61,25 @@ impl Runner {
             .all(|(law, (name, left, right))| {
                 law.name == *name && (law.left, law.right) == (*left, *right)
             });
-        if theory.bank.symbols().len() != self.symbols
-            || theory.laws.len() < self.laws.len()
-            || !known
-        {
+        if !self.is_part_of(theory) {
             return false;
         }
         self.naming = naming(theory);
         self.add_laws(theory);
         true
+    }
+
+    /// Has the engine nothing that the theory has not?
+    fn is_part_of(&self, theory: &Theory) -> bool {
+        let same = theory.laws.iter().zip(&self.laws).all(|(law, (name, left, right))| {
+            law.name == *name && (law.left, law.right) == (*left, *right)
+        });
+        theory.bank.symbols().len() == self.symbols && theory.laws.len() >= self.laws.len() && same
+    }
+
+    /// Has the engine all laws of the theory, and no others?
+    pub(super) fn is_current(&self, theory: &Theory) -> bool {
+        self.is_part_of(theory) && theory.laws.len() == self.laws.len()
     }
 
     fn add_laws(&mut self, theory: &Theory) {
@@ -148,6 +158,23 @@ impl Runner {
         let proof = writer.proof(asked.left, asked.right);
         self.engine.system.set_asking(false);
         proof
+    }
+
+    /// The chain from a question's left side to its normal form, as a proof without lemmas' proofs.
+    pub(super) fn trace(
+        &mut self,
+        asked: &Asked,
+        normal: TermId,
+        most: usize,
+    ) -> Option<proof::Proof> {
+        let writer = Writer::new(&mut self.engine, &self.naming, &asked.variables);
+        writer.trace(asked.left, normal, most)
+    }
+
+    /// The proof of a rule.
+    pub(super) fn rule_proof(&mut self, rule: RuleId) -> Option<proof::Proof> {
+        let none = ClaimVariables::default();
+        Writer::new(&mut self.engine, &self.naming, &none).rule_proof(rule).ok()
     }
 
     /// The active rules as a complete set, with the two normal forms of a question.
@@ -234,26 +261,19 @@ fn copy_back(
     known[&term]
 }
 
-fn naming(theory: &Theory) -> Naming {
+pub(super) fn naming(theory: &Theory) -> Naming {
     let signature = &theory.signature;
-    let twice = |name: &str, place: usize| {
-        signature
-            .symbols()
-            .iter()
-            .enumerate()
-            .any(|(p, s)| p != place && s.name == name)
-    };
-    let symbols = signature
-        .symbols()
-        .iter()
-        .enumerate()
-        .map(|(place, symbol)| {
-            if twice(&symbol.name, place) {
-                format!("{}/{}", symbol.name, symbol.arguments.len())
-            } else {
-                symbol.name.clone()
-            }
-        });
+    let mut times: FxHashMap<&str, u32> = FxHashMap::default();
+    for symbol in signature.symbols() {
+        *times.entry(&symbol.name).or_default() += 1;
+    }
+    let symbols = signature.symbols().iter().map(|symbol| {
+        if times[symbol.name.as_str()] > 1 {
+            format!("{}/{}", symbol.name, symbol.arguments.len())
+        } else {
+            symbol.name.clone()
+        }
+    });
     let types = signature.symbols().iter().map(|symbol| {
         symbol
             .arguments
@@ -274,10 +294,4 @@ fn naming(theory: &Theory) -> Naming {
         typed: signature.has_sorts(),
         types: types.collect(),
     }
-}
-
-/// The number of a symbol of the theory in evidence, if the name is one.
-pub(super) fn symbol_of(naming: &Naming, name: &str) -> Option<Symbol> {
-    let place = naming.symbols.iter().position(|known| known == name)?;
-    Some(Symbol(place as u32))
 }

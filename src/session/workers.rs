@@ -257,6 +257,14 @@ impl Workers {
     }
 }
 
+/// Is there an order under which all directed rules decrease?
+pub(super) fn can_plan(theory: &Theory) -> Result<(), NoOrder> {
+    if theory.laws.iter().all(|law| law.kind != LawKind::Rule) {
+        return Ok(());
+    }
+    Workers::plan(theory).and_then(|plan| if plan.is_empty() { Err(NoOrder::Directed) } else { Ok(()) })
+}
+
 /// In a stated order, all directed rules must decrease.
 pub(super) fn check_directed(theory: &Theory, setting: &OrderSetting) -> Result<(), NoOrder> {
     let rules: Vec<_> = theory
