@@ -7,10 +7,10 @@ use serde_json::Value;
 use std::collections::BTreeMap;
 
 /// A small generator (xorshift, Marsaglia 2003), so that failures can be repeated.
-struct Random(u64);
+pub struct Random(pub u64);
 
 impl Random {
-    fn below(&mut self, bound: usize) -> usize {
+    pub fn below(&mut self, bound: usize) -> usize {
         self.0 ^= self.0 << 13;
         self.0 ^= self.0 >> 7;
         self.0 ^= self.0 << 17;
