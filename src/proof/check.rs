@@ -13,8 +13,9 @@ const UNITS_PER_TERM: u64 = 15;
 /// What reading a JSON value costs, in memory above all.
 const UNITS_PER_VALUE: u64 = 12;
 
-/// Judges evidence. Does not judge whether its laws and its claim are those that somebody asked
-/// about: compare [`Evidence::laws`] and [`Evidence::claim`] with the theory and the question.
+/// Judges evidence. Does not judge whether its laws, sorts and claim are those that somebody asked
+/// about: compare [`Evidence::laws`], [`Evidence::types`] and [`Evidence::claim`] with the theory
+/// and the question.
 pub fn check(evidence: &Evidence, limit: WorkLimit) -> Outcome {
     let mut work = Work::new(limit);
     // The checkers copy the terms, since they make instances.

@@ -47,6 +47,26 @@ fn a_lemma_is_not_known_before_it_is_proved() {
 }
 
 #[test]
+fn unused_lemmas_go() {
+    let mut made = group_proof();
+    let steps = made.claim.steps.drain(..1).collect();
+    made.claim.right = term(&mut made.terms, "m(i(m(x,y)),e())");
+    made.claim.steps = steps;
+    made.drop_unused_lemmas();
+    let names: Vec<&str> = made
+        .lemmas
+        .iter()
+        .map(|l| made.terms.text(l.equation.name))
+        .collect();
+    assert_eq!(names, ["cancel", "twice unit", "twice", "right unit"]);
+    accepted(Evidence::Proof(made));
+    let mut set = groups(OrderKind::KnuthBendix);
+    set.drop_unused_lemmas();
+    assert_eq!(set.lemmas.len(), 9);
+    accepted(Evidence::Complete(set));
+}
+
+#[test]
 fn a_million_levels() {
     let mut terms = Terms::default();
     let law = equation(&mut terms, "flip", "a()", "b()");

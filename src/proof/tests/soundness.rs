@@ -31,6 +31,7 @@ fn random_set(random: &mut Random) -> CompleteSet {
         .collect();
     // Each law is oriented if that is possible one way; the checker is asked.
     let operators = [("f", random.below(2) as u64), ("m", 1), ("a", 1)];
+    let kind = [OrderKind::KnuthBendix, OrderKind::LexicographicPath][random.below(2)];
     let mut laws = Vec::new();
     for [left, right] in &sides {
         let ways = [
@@ -39,7 +40,8 @@ fn random_set(random: &mut Random) -> CompleteSet {
             (left, right, false),
         ];
         let decreases = |&(left, right, oriented): &(&String, &String, bool)| {
-            let set = laws_only(&[(left, right, oriented)], &operators);
+            let mut set = laws_only(&[(left, right, oriented)], &operators);
+            set.order.kind = kind;
             match check(&Evidence::Complete(set), WorkLimit(2_000_000)) {
                 Outcome::Rejected { reason, .. } => !reason.contains("stated order"),
                 _ => true,
@@ -49,7 +51,9 @@ fn random_set(random: &mut Random) -> CompleteSet {
         laws.push((left.as_str(), right.as_str(), oriented));
     }
     // The claim makes c and d constants of what is certified.
-    claiming(laws_only(&laws, &operators), ["c", "d"], ["c", "d"])
+    let mut set = claiming(laws_only(&laws, &operators), ["c", "d"], ["c", "d"]);
+    set.order.kind = kind;
+    set
 }
 
 /// Ground rewriting over f, m, a and two constants below them, as the checker does it.
