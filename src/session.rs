@@ -9,6 +9,7 @@ mod change;
 mod check;
 mod control;
 mod derivation;
+mod derived;
 mod evidence;
 mod library;
 mod runner;

@@ -86,7 +86,9 @@ impl System {
             if from == to || !seen.insert((from, to)) {
                 continue;
             }
-            let links = self.links(from, to).unwrap_or_else(|| vec![(to, Reason::Arguments)]);
+            let links = self
+                .links(from, to)
+                .unwrap_or_else(|| vec![(to, Reason::Arguments)]);
             let mut here = from;
             for (next, reason) in links {
                 if reason != Reason::Arguments {

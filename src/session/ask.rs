@@ -208,7 +208,9 @@ impl Session {
     }
 
     fn normal_texts(&self, evidence: Option<&Evidence>) -> Option<[String; 2]> {
-        let Some(Evidence::Complete(set)) = evidence else { return None };
+        let Some(Evidence::Complete(set)) = evidence else {
+            return None;
+        };
         let naming = &self.workers.best_ref()?.naming;
         let mut sheet = Sheet::new(&self.theory, naming, &set.terms);
         Some(set.claim.as_ref()?.normal.map(|term| sheet.text(term)))

@@ -44,9 +44,8 @@ impl Session {
             .theory
             .declare(text, "typed", &self.library)
             .map_err(ChangeFault::Text)?;
-        let orders = |change: &Change| {
-            matches!(change, Change::Order | Change::Law(_) | Change::Used(_))
-        };
+        let orders =
+            |change: &Change| matches!(change, Change::Order | Change::Law(_) | Change::Used(_));
         if changes.iter().any(orders)
             && let Err(fault) = self.check_order()
         {

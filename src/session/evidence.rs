@@ -150,11 +150,22 @@ impl<'a> Writer<'a> {
 
     fn finish(mut self, left: TermId, right: TermId, steps: Vec<Step>) -> proof::Proof {
         let (left, right) = (self.ground_term(left), self.ground_term(right));
-        self.finished(proof::Claim { left, right, when: vec![], steps, witness: vec![] })
+        self.finished(proof::Claim {
+            left,
+            right,
+            when: vec![],
+            steps,
+            witness: vec![],
+        })
     }
 
     fn finished(mut self, claim: proof::Claim) -> proof::Proof {
-        let laws = self.laws.clone().into_iter().map(|law| self.law(law)).collect();
+        let laws = self
+            .laws
+            .clone()
+            .into_iter()
+            .map(|law| self.law(law))
+            .collect();
         proof::Proof {
             types: self.types(),
             laws,

@@ -5,7 +5,7 @@ use crate::engine::Engine;
 use crate::order::{Order, OrderProblem, OrderSetting};
 use crate::proof;
 use crate::rewrite::{Limits, RuleId};
-use crate::term::{Copier, Sort, Symbol, TermId, Variable};
+use crate::term::{Copier, Sort, TermId, Variable};
 use crate::theory::Theory;
 use rustc_hash::FxHashMap;
 
@@ -54,13 +54,6 @@ impl Runner {
 
     /// Takes in what was added to the theory since. False if more has changed than that.
     pub(super) fn catch_up(&mut self, theory: &Theory) -> bool {
-        let known = theory
-            .laws
-            .iter()
-            .zip(&self.laws)
-            .all(|(law, (name, left, right))| {
-                law.name == *name && (law.left, law.right) == (*left, *right)
-            });
         if !self.is_part_of(theory) {
             return false;
         }
@@ -71,9 +64,13 @@ impl Runner {
 
     /// Has the engine nothing that the theory has not?
     fn is_part_of(&self, theory: &Theory) -> bool {
-        let same = theory.laws.iter().zip(&self.laws).all(|(law, (name, left, right))| {
-            law.name == *name && (law.left, law.right) == (*left, *right)
-        });
+        let same = theory
+            .laws
+            .iter()
+            .zip(&self.laws)
+            .all(|(law, (name, left, right))| {
+                law.name == *name && (law.left, law.right) == (*left, *right)
+            });
         theory.bank.symbols().len() == self.symbols && theory.laws.len() >= self.laws.len() && same
     }
 
@@ -174,7 +171,9 @@ impl Runner {
     /// The proof of a rule.
     pub(super) fn rule_proof(&mut self, rule: RuleId) -> Option<proof::Proof> {
         let none = ClaimVariables::default();
-        Writer::new(&mut self.engine, &self.naming, &none).rule_proof(rule).ok()
+        Writer::new(&mut self.engine, &self.naming, &none)
+            .rule_proof(rule)
+            .ok()
     }
 
     /// The active rules as a complete set, with the two normal forms of a question.

@@ -64,8 +64,14 @@ struct SheetNames<'s> {
 
 impl Names for SheetNames<'_> {
     fn symbol(&self, symbol: Symbol) -> SymbolName<'_> {
-        let known = self.signature.symbol(symbol).expect("evidence has the theory's symbols");
-        SymbolName { name: Cow::Borrowed(&known.name), fixity: known.fixity }
+        let known = self
+            .signature
+            .symbol(symbol)
+            .expect("evidence has the theory's symbols");
+        SymbolName {
+            name: Cow::Borrowed(&known.name),
+            fixity: known.fixity,
+        }
     }
 
     fn variable(&self, variable: Variable) -> Cow<'_, str> {
@@ -82,7 +88,9 @@ impl<'t> Sheet<'t> {
         let symbols = naming.symbols.iter().enumerate();
         Sheet {
             signature: &theory.signature,
-            symbols: symbols.map(|(n, name)| (name.clone(), Symbol(n as u32))).collect(),
+            symbols: symbols
+                .map(|(n, name)| (name.clone(), Symbol(n as u32)))
+                .collect(),
             terms,
             bank,
             variables: Vec::new(),
@@ -116,7 +124,10 @@ impl<'t> Sheet<'t> {
 
     fn line(&mut self, step: &proof::Step) -> ProofLine {
         let term = self.term(step.to);
-        let names = SheetNames { signature: self.signature, variables: &self.variables };
+        let names = SheetNames {
+            signature: self.signature,
+            variables: &self.variables,
+        };
         let printer = Printer::new(&names).limit(LONGEST_LINE);
         let printed = printer.print(&self.bank, term, Some(&step.at));
         ProofLine {
@@ -134,8 +145,13 @@ impl<'t> Sheet<'t> {
 
     pub(super) fn text(&mut self, term: TermIndex) -> String {
         let term = self.term(term);
-        let names = SheetNames { signature: self.signature, variables: &self.variables };
-        Printer::new(&names).limit(LONGEST_LINE).term(&self.bank, term)
+        let names = SheetNames {
+            signature: self.signature,
+            variables: &self.variables,
+        };
+        Printer::new(&names)
+            .limit(LONGEST_LINE)
+            .term(&self.bank, term)
     }
 
     fn term(&mut self, term: TermIndex) -> TermId {
@@ -174,6 +190,9 @@ impl<'t> Sheet<'t> {
             self.variables.push(name.to_owned());
             self.variables.len() - 1
         });
-        self.bank.variable(Variable { index: index as u32, sort: Sort(0) })
+        self.bank.variable(Variable {
+            index: index as u32,
+            sort: Sort(0),
+        })
     }
 }

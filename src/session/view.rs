@@ -113,7 +113,9 @@ impl Session {
 
     /// The active rules, oldest first. Empty before anything was completed or asked.
     pub fn rules(&self) -> Vec<RuleView> {
-        let Some(runner) = self.workers.best_ref() else { return Vec::new() };
+        let Some(runner) = self.workers.best_ref() else {
+            return Vec::new();
+        };
         let engine = &runner.engine;
         let view = |id: RuleId| {
             let rule = engine.system.rule(id);
@@ -135,12 +137,17 @@ impl Session {
     fn rule_text(&self, bank: &Bank, left: TermId, sign: &str, right: TermId) -> String {
         let base = TheoryNames(&self.theory.signature);
         let names = RuleNames::new(&base, &self.theory.signature, bank, &[left, right]);
-        Printer::new(&names).limit(LONGEST_RULE).equation(bank, left, sign, right)
+        Printer::new(&names)
+            .limit(LONGEST_RULE)
+            .equation(bank, left, sign, right)
     }
 
     /// The symbols, in the order of declaration.
     pub fn symbols(&self) -> Vec<SymbolView> {
-        let known = self.workers.best_ref().map_or(&[][..], |r| r.engine.ac_symbols());
+        let known = self
+            .workers
+            .best_ref()
+            .map_or(&[][..], |r| r.engine.ac_symbols());
         let symbols = self.theory.signature.symbols().iter().enumerate();
         let view = |(place, declaration): (usize, &crate::theory::SymbolDeclaration)| {
             let symbol = Symbol(place as u32);
@@ -156,7 +163,11 @@ impl Session {
     /// The claims.
     pub fn claims(&self) -> Vec<ClaimView> {
         let view = |claim: &crate::theory::Claim| {
-            let sign = if claim.expected == Expected::Equal { "=" } else { "!=" };
+            let sign = if claim.expected == Expected::Equal {
+                "="
+            } else {
+                "!="
+            };
             ClaimView {
                 name: claim.name.clone(),
                 text: self.equation_text(claim.left, sign, claim.right),
@@ -173,7 +184,9 @@ impl Session {
         let setting = self.theory.order.as_ref().or(runner.map(|r| &r.setting));
         let engine = runner.map(|r| &r.engine);
         let oriented = |e: &crate::engine::Engine| {
-            e.active_rules().filter(|id| e.system.rule(*id).oriented).count()
+            e.active_rules()
+                .filter(|id| e.system.rule(*id).oriented)
+                .count()
         };
         let ac = |e: &crate::engine::Engine| -> Vec<String> {
             let name = |s: &Symbol| signature.symbol(*s).map(|d| d.name.clone());
@@ -183,7 +196,11 @@ impl Session {
             name: self.name().to_owned(),
             path: self.path().map(|path| path.display().to_string()),
             changed: self.is_changed(),
-            sorts: if signature.has_sorts() { signature.sorts().len() } else { 0 },
+            sorts: if signature.has_sorts() {
+                signature.sorts().len()
+            } else {
+                0
+            },
             symbols: signature.symbols().len(),
             laws: self.theory.laws.len(),
             claims: self.theory.claims.len(),
@@ -221,7 +238,9 @@ impl Session {
 
     /// How many rules there ever were; their numbers begin with 1.
     pub fn rule_count(&self) -> u32 {
-        self.workers.best_ref().map_or(0, |r| r.engine.system.rules().len() as u32)
+        self.workers
+            .best_ref()
+            .map_or(0, |r| r.engine.system.rules().len() as u32)
     }
 }
 
@@ -234,7 +253,10 @@ fn named_counts(counts: Counts) -> Vec<(&'static str, u64)> {
         ("pairs chosen", counts.chosen),
         ("redundant when chosen", counts.redundant),
         ("joined modulo AC", counts.ac),
-        ("joined for every order of the variables", counts.ground_joined),
+        (
+            "joined for every order of the variables",
+            counts.ground_joined,
+        ),
         ("dropped with a retired rule", counts.orphans),
         ("rules retired", counts.retired),
         ("right sides simplified", counts.simplified),

@@ -39,7 +39,10 @@ impl Session {
         let runner = self.workers.best().expect("there is an engine after a run");
         let engine = &runner.engine;
         let rules = engine.system.active();
-        let oriented = engine.active_rules().filter(|id| engine.system.rule(*id).oriented).count();
+        let oriented = engine
+            .active_rules()
+            .filter(|id| engine.system.rule(*id).oriented)
+            .count();
         let mut completion = Completion {
             complete: false,
             ordered: oriented < rules,
@@ -56,7 +59,10 @@ impl Session {
             fault: None,
         };
         if let Ended::Complete(_) = ended {
-            accept(runner.complete_set(None).map(Evidence::Complete), &mut completion);
+            accept(
+                runner.complete_set(None).map(Evidence::Complete),
+                &mut completion,
+            );
         }
         completion.elapsed = begun.elapsed();
         Ok(completion)
@@ -74,7 +80,10 @@ impl Session {
         self.workers.catch_up(&self.theory)?;
         self.digest(control);
         let work = Work::new(control, "rewriting", None);
-        let runner = self.workers.best().expect("there is an engine after catching up");
+        let runner = self
+            .workers
+            .best()
+            .expect("there is an engine after catching up");
         let asked = runner.ask(&self.theory, term, term);
         let normal = runner.normal_form(asked.left, &mut work.limits(None));
         let complete = runner.engine.is_complete();
@@ -115,7 +124,10 @@ impl Session {
         self.workers.catch_up(&self.theory)?;
         self.digest(control);
         let work = Work::new(control, "rewriting", None);
-        let runner = self.workers.best().expect("there is an engine after catching up");
+        let runner = self
+            .workers
+            .best()
+            .expect("there is an engine after catching up");
         let asked = runner.ask(&self.theory, term, term);
         let normal = runner.normal_form(asked.left, &mut work.limits(None));
         let normal = normal.map_err(SessionFault::Stopped)?;
@@ -128,7 +140,9 @@ impl Session {
 
     /// The proof of an answer as text, if it is `equal`.
     pub fn proof_text(&self, answer: &Answer) -> Option<ProofText> {
-        let Some(Evidence::Proof(proof)) = &answer.evidence else { return None };
+        let Some(Evidence::Proof(proof)) = &answer.evidence else {
+            return None;
+        };
         let naming = super::runner::naming(&self.theory);
         Some(Sheet::new(&self.theory, &naming, &proof.terms).proof(proof))
     }

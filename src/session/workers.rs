@@ -262,7 +262,13 @@ pub(super) fn can_plan(theory: &Theory) -> Result<(), NoOrder> {
     if theory.laws.iter().all(|law| law.kind != LawKind::Rule) {
         return Ok(());
     }
-    Workers::plan(theory).and_then(|plan| if plan.is_empty() { Err(NoOrder::Directed) } else { Ok(()) })
+    Workers::plan(theory).and_then(|plan| {
+        if plan.is_empty() {
+            Err(NoOrder::Directed)
+        } else {
+            Ok(())
+        }
+    })
 }
 
 /// In a stated order, all directed rules must decrease.
