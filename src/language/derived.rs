@@ -10,8 +10,9 @@
 use super::declare::{Change, Statement, end};
 use super::diagnostic::{Diagnostic, Fault, Source};
 use super::lexer::{Kind, Lexer};
+use super::names::{RuleNames, TheoryNames};
 use super::order::is_semicolon;
-use super::printer::{Printer, RuleNames, TheoryNames};
+use super::printer::Printer;
 use super::symbols::number;
 use super::term::{Locals, TermReader, shown};
 use super::words::{quote_law, quote_symbol};
@@ -55,7 +56,8 @@ fn read(at: &mut Statement<'_, '_, '_>, rest: usize) -> Result<Derived, Fault> {
             first.span,
             format!("there is a derived rule {rule} already"),
         )
-        .label("a second time"));
+        .label("a second time")
+        .help("give it another number, or take it out"));
     }
     let mut locals = Locals::default();
     if lexer.peek()?.kind == Kind::Open {

@@ -34,7 +34,13 @@ pub fn read_theory(
             Some(fault) => faults.push(fault.at(source)),
             None => {
                 let done = statement(&mut theory, source, piece.range.clone(), &mut context);
-                faults.extend(done.err().into_iter().flatten());
+                // A name that is missing once is often missing many times: say so once.
+                let fresh = |fault: &Diagnostic| {
+                    !fault.message.ends_with("was never declared")
+                        || faults.iter().all(|f| f.message != fault.message)
+                };
+                let more: Vec<_> = done.err().into_iter().flatten().filter(fresh).collect();
+                faults.extend(more);
             }
         }
         theory.document.push(&text[piece.range]);
