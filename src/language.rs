@@ -30,7 +30,7 @@ pub use edit::DropFault;
 pub use names::{Names, RuleNames, SymbolName, TheoryNames};
 pub use order::{print_order, set_order};
 pub use printer::{Printed, Printer, wrap};
-pub use property::{Operand, PROPERTIES, PropertyRow};
+pub use property::{PROPERTIES, PropertyOperand, PropertyRow};
 pub use question::{Question, law_name, parse_question, parse_question_prefix};
 pub use read::{decode, read_theory};
 pub use split::is_open;

@@ -311,6 +311,11 @@ fn laws_get_numbers_that_are_never_used_again() {
     assert_eq!(theory.laws.last().unwrap().name, "law5");
     let again = read(&theory.document.text());
     assert_eq!(laws(&again)[..2], laws(&theory)[..2]);
+    // Numbers that someone chose count, unless they are absurd.
+    let theory =
+        read("variable x y\nlaw law7: x = y\nlaw law4294967295: x = y\nlaw x = y\nlaw x = x\n");
+    assert_eq!(theory.laws[2].name, "law8");
+    assert_eq!(theory.laws[3].name, "law9");
 }
 
 #[test]

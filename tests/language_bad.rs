@@ -87,6 +87,7 @@ fn every_fault_has_its_place_and_a_remedy() {
         ("law (x, y) = x", 7, 1, "comma", "function"),
         ("law f(x y) = x", 9, 1, "operator is missing", "infix"),
         ("law x y = x", 7, 1, "operator is missing", "infix"),
+        ("law x f y = x", 7, 1, "does not stand between", "f(x, y)"),
         ("law x (y) = x", 7, 1, "takes no arguments", "infix"),
         ("law (x)(y) = x", 8, 1, "operator is missing", "infix"),
         ("law * x = x", 5, 1, "stands between", "x * y"),

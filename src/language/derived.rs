@@ -36,12 +36,27 @@ pub(crate) fn take(at: &mut Statement<'_, '_, '_>, rest: usize) -> Result<Vec<Ch
         Err(fault) => {
             at.theory.bank.rollback(mark);
             let fault = fault.help("take the line out; completing again derives the rule anew");
-            at.theory
-                .refused
-                .push((at.context.line, fault.at(at.source)));
+            let refused = about_line(at, fault);
+            at.theory.refused.push((at.context.line, refused));
             Ok(Vec::new())
         }
     }
+}
+
+/// The message, made from the line alone: there may be many such lines, and counting lines from the
+/// start of the text for each would take a time that grows with the square of the text.
+fn about_line(at: &Statement<'_, '_, '_>, mut fault: Fault) -> Diagnostic {
+    let start = at.range.start;
+    let span = fault.span.clone();
+    fault.span = span.start.saturating_sub(start)..span.end.saturating_sub(start);
+    fault.also = None;
+    let source = Source {
+        name: at.source.name,
+        text: &at.source.text[at.range.clone()],
+    };
+    let mut made = fault.at(source).further_down(at.context.lines_before);
+    made.span = span;
+    made
 }
 
 fn read(at: &mut Statement<'_, '_, '_>, rest: usize) -> Result<Derived, Fault> {

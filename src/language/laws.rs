@@ -371,7 +371,7 @@ pub(crate) fn add(
         }
     };
     if let Some(number) = law_number(&name) {
-        at.theory.next_law = at.theory.next_law.max(number.saturating_add(1));
+        at.theory.next_law = at.theory.next_law.max(number + 1);
     }
     at.theory.push_law(Law {
         name: name.clone(),
@@ -399,5 +399,7 @@ fn unnamed_law(at: &Statement<'_, '_, '_>) -> String {
 
 /// The number in a name that could have been given to a law without one.
 fn law_number(name: &str) -> Option<u32> {
-    name.strip_prefix("law")?.parse().ok()
+    let number: u32 = name.strip_prefix("law")?.parse().ok()?;
+    // Counting on from a number that someone chose must not overflow.
+    (number < 1_000_000_000).then_some(number)
 }

@@ -15,7 +15,7 @@ use std::ops::Range;
 
 /// What stands behind a property word.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum Operand {
+pub enum PropertyOperand {
     /// Nothing.
     Nothing,
     /// A constant, `e` in the equations.
@@ -36,7 +36,7 @@ pub struct PropertyRow {
     /// How many arguments the operator has: `*` in the equations if two, `f` if one.
     pub arity: usize,
     /// What stands behind the word.
-    pub operand: Operand,
+    pub operand: PropertyOperand,
     /// The equations in Polish notation, each with the side that `left` or `right` before the word
     /// chooses; without one of these all are stated. An equation without a side is always stated.
     pub equations: &'static [(&'static str, &'static str, &'static str)],
@@ -47,42 +47,67 @@ pub const PROPERTIES: &[PropertyRow] = &[
     row(
         "associative",
         2,
-        Operand::Nothing,
+        PropertyOperand::Nothing,
         &[("", "**xyz", "*x*yz")],
     ),
-    row("commutative", 2, Operand::Nothing, &[("", "*xy", "*yx")]),
-    row("idempotent", 2, Operand::Nothing, &[("", "*xx", "x")]),
-    row("idempotent", 1, Operand::Nothing, &[("", "ffx", "fx")]),
-    row("involutive", 1, Operand::Nothing, &[("", "ffx", "x")]),
+    row(
+        "commutative",
+        2,
+        PropertyOperand::Nothing,
+        &[("", "*xy", "*yx")],
+    ),
+    row(
+        "idempotent",
+        2,
+        PropertyOperand::Nothing,
+        &[("", "*xx", "x")],
+    ),
+    row(
+        "idempotent",
+        1,
+        PropertyOperand::Nothing,
+        &[("", "ffx", "fx")],
+    ),
+    row(
+        "involutive",
+        1,
+        PropertyOperand::Nothing,
+        &[("", "ffx", "x")],
+    ),
     row(
         "unit",
         2,
-        Operand::Constant,
+        PropertyOperand::Constant,
         &[("left", "*ex", "x"), ("right", "*xe", "x")],
     ),
     row(
         "zero",
         2,
-        Operand::Constant,
+        PropertyOperand::Constant,
         &[("left", "*ex", "e"), ("right", "*xe", "e")],
     ),
     row(
         "inverse",
         2,
-        Operand::Unary,
+        PropertyOperand::Unary,
         &[("left", "*ixx", "e"), ("right", "*xix", "e")],
     ),
     row(
         "distributes",
         2,
-        Operand::Over,
+        PropertyOperand::Over,
         &[("left", "*x+yz", "+*xy*xz"), ("right", "*+xyz", "+*xz*yz")],
     ),
-    row("distributes", 1, Operand::Over, &[("", "f+xy", "+fxfy")]),
+    row(
+        "distributes",
+        1,
+        PropertyOperand::Over,
+        &[("", "f+xy", "+fxfy")],
+    ),
     row(
         "absorbs",
         2,
-        Operand::Binary,
+        PropertyOperand::Binary,
         &[("", "*x+xy", "x"), ("right", "*+xyx", "x")],
     ),
 ];
@@ -90,7 +115,7 @@ pub const PROPERTIES: &[PropertyRow] = &[
 const fn row(
     word: &'static str,
     arity: usize,
-    operand: Operand,
+    operand: PropertyOperand,
     equations: &'static [(&'static str, &'static str, &'static str)],
 ) -> PropertyRow {
     PropertyRow {
@@ -239,7 +264,7 @@ impl<'s, 't> Reader<'s, 't> {
             word = self.lexer.next()?;
         }
         let rows = self.rows(&word)?;
-        if side.is_empty() && rows[0].operand == Operand::Over {
+        if side.is_empty() && rows[0].operand == PropertyOperand::Over {
             // `distributes left over +` reads as well as `left distributes over +`.
             side = match &self.lexer.peek()?.kind {
                 Kind::Name(name) if name == "left" => "left",
@@ -342,11 +367,11 @@ impl<'s, 't> Reader<'s, 't> {
     fn operand(&mut self, row: &PropertyRow) -> Result<(Symbols, String), Fault> {
         let mut symbols = Symbols::default();
         let (arity, over) = match row.operand {
-            Operand::Nothing => return Ok((symbols, String::new())),
-            Operand::Constant => (0, false),
-            Operand::Unary => (1, false),
-            Operand::Binary => (2, false),
-            Operand::Over => (2, true),
+            PropertyOperand::Nothing => return Ok((symbols, String::new())),
+            PropertyOperand::Constant => (0, false),
+            PropertyOperand::Unary => (1, false),
+            PropertyOperand::Binary => (2, false),
+            PropertyOperand::Over => (2, true),
         };
         if over {
             let token = self.lexer.next()?;
@@ -377,8 +402,8 @@ impl<'s, 't> Reader<'s, 't> {
             });
         };
         match row.operand {
-            Operand::Constant => symbols.constant = Some(symbol),
-            Operand::Unary => {
+            PropertyOperand::Constant => symbols.constant = Some(symbol),
+            PropertyOperand::Unary => {
                 symbols.unary = Some(symbol);
                 symbols.constant = self.unit;
                 if self.unit.is_none() {

@@ -21,12 +21,13 @@ pub fn read_theory(
         ..Theory::default()
     };
     let mut faults = Vec::new();
-    let mut at = 0;
+    let (mut at, mut lines_before) = (0, 0);
     while let Some(piece) = next_piece(text, at, &theory.signature) {
         at = piece.range.end;
         let mut context = Context {
             loader,
             line: theory.document.next_id(),
+            lines_before,
             typed: false,
             uses: Uses::default(),
         };
@@ -43,7 +44,9 @@ pub fn read_theory(
                 faults.extend(more);
             }
         }
-        theory.document.push(&text[piece.range]);
+        let lines = &text[piece.range];
+        lines_before += lines.bytes().filter(|byte| *byte == b'\n').count();
+        theory.document.push(lines);
         if faults.len() >= MOST_MESSAGES && at < text.len() {
             let last = faults.pop().expect("there are many");
             faults.push(last.note("reading stopped here; there may be more errors"));

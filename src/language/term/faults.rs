@@ -20,6 +20,23 @@ impl TermReader<'_, '_, '_> {
                 .label("an infix operator is missing before this")
                 .help(format!("declare it as one too: infix {name} 40 left"));
         }
+        let declaration = meaning
+            .symbol
+            .and_then(|symbol| self.signature.symbol(symbol));
+        if let Some(function) = declaration.filter(|d| d.arguments.len() == 2) {
+            return Fault::new(
+                span,
+                format!(
+                    "{} is a function and does not stand between its arguments",
+                    shown(name)
+                ),
+            )
+            .label("a function")
+            .help(format!("write {}", call_example(&function.name, 2)))
+            .help(format!(
+                "or declare it as an operator: infix {name} 40 left"
+            ));
+        }
         Fault::new(
             span,
             format!("an operator is missing before {}", shown(name)),
