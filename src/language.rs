@@ -10,6 +10,7 @@ mod diagnostic;
 mod edit;
 mod laws;
 mod lexer;
+mod names;
 mod order;
 mod printer;
 mod property;
@@ -24,14 +25,16 @@ mod words;
 
 pub use declare::Change;
 pub use derived::{print_derived, set_derived};
-pub use diagnostic::{Diagnostic, Fault, Source, line_and_column, visible};
+pub use diagnostic::{Diagnostic, Fault, FaultParts, Message, Source, line_and_column, visible};
 pub use edit::DropFault;
+pub use names::{Names, RuleNames, SymbolName, TheoryNames};
 pub use order::{print_order, set_order};
-pub use printer::{Names, Printed, Printer, RuleNames, SymbolName, TheoryNames, wrap};
-pub use property::{PROPERTIES, PropertyRow};
+pub use printer::{Printed, Printer, wrap};
+pub use property::{PROPERTIES, PropertyOperand, PropertyRow};
 pub use question::{Question, law_name, parse_question, parse_question_prefix};
 pub use read::{decode, read_theory};
 pub use split::is_open;
+pub use symbols::print_symbol;
 pub use using::{Loaded, Loader, NoLoader};
 pub use words::{
     DECLARATIONS, RESERVED, first_word, is_declaration, is_reserved, nearest, quote_law,

@@ -25,6 +25,7 @@ mod evidence;
 mod json;
 mod signature;
 mod terms;
+mod values;
 mod work;
 mod write;
 

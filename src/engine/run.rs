@@ -185,6 +185,17 @@ impl Engine {
         Ok(None)
     }
 
+    /// Makes rules of the laws that are waiting, and simplifies, without forming overlaps.
+    pub fn digest(&mut self, limits: &mut Limits) {
+        while let Some(taken) = self.waiting.pop_law() {
+            let choice = self.waiting.choice(&self.system, taken);
+            let done = choice.map_or(Ok(()), |choice| self.process(&choice, limits));
+            if done.and_then(|()| self.simplify_stale(limits)).is_err() {
+                return self.waiting.put_back(taken);
+            }
+        }
+    }
+
     /// What has been done so far.
     pub fn counts(&self) -> Counts {
         self.counts

@@ -122,6 +122,16 @@ impl Waiting {
         }
     }
 
+    /// Takes a law, if one waits; laws have the best priority.
+    pub(super) fn pop_law(&mut self) -> Option<Taken> {
+        let taken = self.pop_best()?;
+        if taken.recipe.flags & LAW == 0 {
+            self.put_back(taken);
+            return None;
+        }
+        Some(taken)
+    }
+
     /// Takes the best pair of the oldest batch.
     pub(super) fn pop_oldest(&mut self) -> Option<Taken> {
         while self.batches.get(self.oldest)?.pairs.is_empty() {

@@ -42,6 +42,8 @@ pub(crate) struct Context<'c> {
     pub loader: &'c dyn Loader,
     /// The line that the statement will have, or the `use` line that brings it.
     pub line: LineId,
+    /// How many lines of the text come before the statement; 0 where nobody asks.
+    pub lines_before: usize,
     /// Was it typed, and may replace what can be there only once?
     pub typed: bool,
     /// Theories that are being read, the innermost last.
@@ -81,6 +83,7 @@ impl Theory {
             let mut context = Context {
                 loader,
                 line: self.document.next_id(),
+                lines_before: 0,
                 typed: true,
                 uses: Uses::default(),
             };

@@ -10,8 +10,9 @@
 use super::declare::{Change, Statement, end};
 use super::diagnostic::{Diagnostic, Fault, Source};
 use super::lexer::{Kind, Lexer};
+use super::names::{RuleNames, TheoryNames};
 use super::order::is_semicolon;
-use super::printer::{Printer, RuleNames, TheoryNames};
+use super::printer::Printer;
 use super::symbols::number;
 use super::term::{Locals, TermReader, shown};
 use super::words::{quote_law, quote_symbol};
@@ -35,12 +36,27 @@ pub(crate) fn take(at: &mut Statement<'_, '_, '_>, rest: usize) -> Result<Vec<Ch
         Err(fault) => {
             at.theory.bank.rollback(mark);
             let fault = fault.help("take the line out; completing again derives the rule anew");
-            at.theory
-                .refused
-                .push((at.context.line, fault.at(at.source)));
+            let refused = about_line(at, fault);
+            at.theory.refused.push((at.context.line, refused));
             Ok(Vec::new())
         }
     }
+}
+
+/// The message, made from the line alone: there may be many such lines, and counting lines from the
+/// start of the text for each would take a time that grows with the square of the text.
+fn about_line(at: &Statement<'_, '_, '_>, mut fault: Fault) -> Diagnostic {
+    let start = at.range.start;
+    let span = fault.span.clone();
+    fault.span = span.start.saturating_sub(start)..span.end.saturating_sub(start);
+    fault.also = None;
+    let source = Source {
+        name: at.source.name,
+        text: &at.source.text[at.range.clone()],
+    };
+    let mut made = fault.at(source).further_down(at.context.lines_before);
+    made.span = span;
+    made
 }
 
 fn read(at: &mut Statement<'_, '_, '_>, rest: usize) -> Result<Derived, Fault> {
@@ -55,7 +71,8 @@ fn read(at: &mut Statement<'_, '_, '_>, rest: usize) -> Result<Derived, Fault> {
             first.span,
             format!("there is a derived rule {rule} already"),
         )
-        .label("a second time"));
+        .label("a second time")
+        .help("give it another number, or take it out"));
     }
     let mut locals = Locals::default();
     if lexer.peek()?.kind == Kind::Open {

@@ -13,9 +13,14 @@ pub struct Source<'t> {
     pub text: &'t str,
 }
 
-/// What is wrong, without the text that it is about: see [`Fault::at`].
+/// What is wrong, without the text that it is about: see [`Fault::at`]. As small as a pointer, so
+/// that results stay small.
 #[derive(Clone, Debug, PartialEq, Eq)]
-pub struct Fault {
+pub struct Fault(Box<FaultParts>);
+
+/// What a [`Fault`] says.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct FaultParts {
     /// Where, in bytes.
     pub span: Range<usize>,
     /// What is wrong.
@@ -31,13 +36,13 @@ pub struct Fault {
 impl Fault {
     /// A fault at a place.
     pub fn new(span: Range<usize>, message: impl Into<String>) -> Self {
-        Fault {
+        Fault(Box::new(FaultParts {
             span,
             message: message.into(),
             label: "here".to_owned(),
             help: Vec::new(),
             also: None,
-        }
+        }))
     }
 
     /// With words for the place.
@@ -67,13 +72,31 @@ impl Fault {
     }
 }
 
+impl std::ops::Deref for Fault {
+    type Target = FaultParts;
+
+    fn deref(&self) -> &FaultParts {
+        &self.0
+    }
+}
+
+impl std::ops::DerefMut for Fault {
+    fn deref_mut(&mut self) -> &mut FaultParts {
+        &mut self.0
+    }
+}
+
 /// How many characters of the line are kept on each side of the place.
 const KEPT: usize = 300;
 
 /// A message about text, with the part of the text that it is about. It stays small however long
-/// the text and its lines are.
+/// the text and its lines are. As small as a pointer, so that results stay small.
 #[derive(Clone, Debug, PartialEq, Eq)]
-pub struct Diagnostic {
+pub struct Diagnostic(Box<Message>);
+
+/// What a [`Diagnostic`] says.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Message {
     /// The name of the text.
     pub source: String,
     /// The line, from 1.
@@ -107,6 +130,7 @@ impl Diagnostic {
     /// The message about this text.
     pub fn new(source: Source<'_>, fault: Fault) -> Self {
         let text = source.text;
+        let fault = *fault.0;
         let start = floor(text, fault.span.start);
         let end = floor(text, fault.span.end).max(start);
         let (line, column) = line_and_column(text, start);
@@ -114,7 +138,7 @@ impl Diagnostic {
             let (line, column) = line_and_column(text, floor(text, span.start));
             format!("{why} (line {line}, column {column})")
         });
-        Diagnostic {
+        Diagnostic(Box::new(Message {
             source: source.name.to_owned(),
             line,
             column,
@@ -124,7 +148,7 @@ impl Diagnostic {
             help: fault.help,
             notes: notes.collect(),
             excerpt: Excerpt::new(text, start..end),
-        }
+        }))
     }
 
     /// A message about a whole file, without a place in it.
@@ -179,6 +203,8 @@ impl Diagnostic {
             .with_color(color)
             .with_compact(width < 40);
         let message = fold(&self.message, width, "Error: ".len(), 0);
+        // Remedies are drawn behind `Help 1: `, and so are their further lines.
+        let inner = room.saturating_sub("Help 1: ".len()).max(8);
         let mut report = Report::build(ReportKind::Error, ("@", place.clone()))
             .with_config(config)
             .with_message(message);
@@ -191,15 +217,15 @@ impl Diagnostic {
         }
         report.add_label(label);
         if drawn > room && self.label != "here" {
-            report.add_note(fold(&self.label, room, "Note: ".len(), 0));
+            report.add_note(fold(&self.label, inner, 0, 0));
         }
         for note in &self.notes {
-            report.add_note(fold(note, room, "Note: ".len(), 0));
+            report.add_note(fold(note, inner, 0, 0));
         }
         for help in &self.help {
-            report.add_help(fold(help, room, "Help: ".len(), 0));
+            report.add_help(fold(help, inner, 0, 0));
         }
-        let page = Page::from(line).with_display_line_offset(self.line - 1);
+        let page = Page::from(line);
         let mut drawn = Vec::new();
         // Writing to memory does not fail, and the only source that is asked for is there.
         let _ = report.finish().write(("@", page), &mut drawn);
@@ -225,16 +251,48 @@ impl Diagnostic {
         text
     }
 
-    /// Ariadne knows only the excerpt: its place is replaced by the place in the whole text.
+    /// Ariadne knows only the excerpt, as line 1 of a text: its place and its number are replaced by
+    /// those in the whole text.
     fn put_place(&self, drawn: String) -> String {
-        let place = format!("{}:{}:{}", visible(&self.source), self.line, self.column);
-        let Some(at) = drawn.find("@:") else {
-            return drawn;
-        };
-        let length = drawn[at..]
-            .find(|c: char| !matches!(c, '@' | ':' | '0'..='9'))
-            .unwrap_or(drawn.len() - at);
-        format!("{}{place}{}", &drawn[..at], &drawn[at + length..])
+        let number = self.line.to_string();
+        let pad = number.len() - 1;
+        let mut text = String::with_capacity(drawn.len() + 200);
+        let (mut in_frame, mut numbered) = (false, false);
+        for line in drawn.split_inclusive('\n') {
+            if !in_frame && let Some(at) = line.find("@:1:") {
+                in_frame = true;
+                let digits = |c: char| c.is_ascii_digit();
+                let rest = line[at + 4..].trim_start_matches(digits);
+                let place = format!("{}:{number}:{}", visible(&self.source), self.column);
+                text.extend(std::iter::repeat_n(' ', pad));
+                text += &format!("{}{place}{rest}", &line[..at]);
+            } else if !in_frame {
+                text += line;
+            } else if let (false, Some(at)) = (numbered, line.find("1 │")) {
+                numbered = true;
+                text += &format!("{}{number}{}", &line[..at], &line[at + 1..]);
+            } else if let Some(at) = line.find("───╯") {
+                text += &format!("{}{}{}", &line[..at], "─".repeat(pad), &line[at..]);
+            } else {
+                text.extend(std::iter::repeat_n(' ', pad));
+                text += line;
+            }
+        }
+        text
+    }
+}
+
+impl std::ops::Deref for Diagnostic {
+    type Target = Message;
+
+    fn deref(&self) -> &Message {
+        &self.0
+    }
+}
+
+impl std::ops::DerefMut for Diagnostic {
+    fn deref_mut(&mut self) -> &mut Message {
+        &mut self.0
     }
 }
 

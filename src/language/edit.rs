@@ -37,6 +37,7 @@ impl Theory {
             return Err(DropFault::Borrowed(from.clone()));
         }
         let law = self.laws.remove(place);
+        self.names.remove(name);
         if law.property.is_some() {
             self.rewrite_properties(law.line);
         } else if law.kind == LawKind::Definition {
@@ -55,6 +56,7 @@ impl Theory {
         let named = |claim: &Claim| claim.name.as_deref() == Some(name);
         let place = self.claims.iter().position(named);
         let claim = self.claims.remove(place.ok_or(DropFault::Unknown)?);
+        self.names.remove(name);
         self.document.remove(claim.line);
         Ok(())
     }

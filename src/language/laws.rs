@@ -34,7 +34,7 @@ pub(crate) fn claim(at: &mut Statement<'_, '_, '_>, rest: usize) -> Result<Vec<C
     if let Some((name, span)) = &name.named {
         check_name(at, name, span)?;
     }
-    at.theory.claims.push(Claim {
+    at.theory.push_claim(Claim {
         name: name.named.map(|(name, _)| name),
         left: sides.left,
         right: sides.right,
@@ -100,13 +100,12 @@ pub(crate) fn define(at: &mut Statement<'_, '_, '_>, rest: usize) -> Result<Vec<
         arguments: sorts.collect(),
         result: theory.bank.sort(body.term),
     };
-    if at.theory.law(&name).is_some() || at.theory.claim(&name).is_some() {
+    if at.theory.is_named(&name) {
         check_name(at, &name, &span)?;
     }
-    let symbol = at
-        .theory
-        .add_symbol(declaration)
-        .map_err(|_| Fault::new(span.clone(), "there are too many symbols"))?;
+    let symbol = at.theory.add_symbol(declaration).map_err(|_| {
+        Fault::new(span.clone(), "there are too many symbols").help("take some of them out")
+    })?;
     let variables: Vec<TermId> = parameters
         .iter()
         .map(|index| {
@@ -172,7 +171,7 @@ fn no_recursion(fault: Fault, name: &str, text: &str) -> Fault {
         return fault;
     }
     Fault::new(
-        fault.span,
+        fault.span.clone(),
         format!("{} occurs in its own definition", shown(name)),
     )
     .label("not known yet")
@@ -298,10 +297,12 @@ pub(crate) fn check_name(
     span: &Range<usize>,
 ) -> Result<(), Fault> {
     let theory = &*at.theory;
-    let what = if theory.law(name).is_some() {
-        "law"
-    } else if theory.claim(name).is_some() {
-        "claim"
+    let what = if theory.is_named(name) {
+        if theory.law(name).is_some() {
+            "law"
+        } else {
+            "claim"
+        }
     } else {
         let meaning = theory.signature.meaning(name).unwrap_or_default();
         if meaning.variable.is_some() {
@@ -370,9 +371,9 @@ pub(crate) fn add(
         }
     };
     if let Some(number) = law_number(&name) {
-        at.theory.next_law = at.theory.next_law.max(number.saturating_add(1));
+        at.theory.next_law = at.theory.next_law.max(number + 1);
     }
-    at.theory.laws.push(Law {
+    at.theory.push_law(Law {
         name: name.clone(),
         left,
         right,
@@ -398,5 +399,7 @@ fn unnamed_law(at: &Statement<'_, '_, '_>) -> String {
 
 /// The number in a name that could have been given to a law without one.
 fn law_number(name: &str) -> Option<u32> {
-    name.strip_prefix("law")?.parse().ok()
+    let number: u32 = name.strip_prefix("law")?.parse().ok()?;
+    // Counting on from a number that someone chose must not overflow.
+    (number < 1_000_000_000).then_some(number)
 }

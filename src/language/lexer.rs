@@ -61,6 +61,8 @@ pub(crate) struct Lexer<'s, 't> {
     text: &'t str,
     at: usize,
     end: usize,
+    /// Where the last token ended: the place of what is missing at the end of the text.
+    last: usize,
     signature: &'s Signature,
 }
 
@@ -71,6 +73,7 @@ impl<'s, 't> Lexer<'s, 't> {
             text,
             at: range.start,
             end: range.end,
+            last: range.start,
             signature,
         }
     }
@@ -95,7 +98,10 @@ impl<'s, 't> Lexer<'s, 't> {
         self.skip_blank();
         let start = self.at;
         let Some(first) = self.rest().chars().next() else {
-            return Ok(self.token(Kind::End, start));
+            return Ok(Token {
+                kind: Kind::End,
+                span: self.last..self.last,
+            });
         };
         let kind = match first {
             '(' => self.punctuation(Kind::Open),
@@ -106,6 +112,7 @@ impl<'s, 't> Lexer<'s, 't> {
             c if is_sign_char(c) => self.sign(),
             c => return Err(self.stray(c)),
         };
+        self.last = self.at;
         Ok(self.token(kind, start))
     }
 
@@ -140,12 +147,13 @@ impl<'s, 't> Lexer<'s, 't> {
             _ => return Ok(None),
         };
         self.at = start + length;
+        self.last = self.at;
         let span = start..self.at;
         if name.len() > LONGEST_NAME {
-            return Err(Fault::new(
-                span,
-                format!("names are at most {LONGEST_NAME} bytes long"),
-            ));
+            return Err(
+                Fault::new(span, format!("names are at most {LONGEST_NAME} bytes long"))
+                    .help("choose a shorter name"),
+            );
         }
         Ok(Some((name, span)))
     }
@@ -168,6 +176,7 @@ impl<'s, 't> Lexer<'s, 't> {
             }
             _ => return Ok(None),
         };
+        self.last = self.at;
         Ok(Some((name, start..self.at)))
     }
 
@@ -177,6 +186,7 @@ impl<'s, 't> Lexer<'s, 't> {
         let start = self.at;
         let path = taken(take_till::<_, &str, ()>(char::is_whitespace).parse(self.rest()));
         self.at += path.len();
+        self.last = self.at;
         (path, start..self.at)
     }
 
@@ -194,6 +204,7 @@ impl<'s, 't> Lexer<'s, 't> {
     /// Moves to a token that was read before.
     pub fn back_to(&mut self, at: usize) {
         self.at = at;
+        self.last = at;
     }
 
     fn token(&self, kind: Kind<'t>, start: usize) -> Token<'t> {
@@ -259,7 +270,8 @@ impl<'s, 't> Lexer<'s, 't> {
             return Err(Fault::new(
                 start..self.at,
                 "a name needs at least one character, and no control characters",
-            ));
+            )
+            .help("write the name between the quotation marks"));
         }
         Ok(compose(inside))
     }

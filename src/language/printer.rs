@@ -4,114 +4,13 @@
 //! is linear in the text that is written, and the text can be limited, since a term that shares its
 //! parts may be unimaginably long when written out.
 
+use super::names::Names;
 use super::words::{is_sign_char, quote_symbol};
-use crate::term::{Bank, Head, Symbol, TermId, Variable};
-use crate::theory::{Fixity, Side, Signature};
+use crate::term::{Bank, Head, Symbol, TermId};
+use crate::theory::{Fixity, Side};
 use rustc_hash::FxHashMap;
-use std::borrow::Cow;
 use std::ops::Range;
 use unicode_width::UnicodeWidthChar;
-
-/// How a symbol is called and written.
-#[derive(Clone, Debug, PartialEq, Eq)]
-pub struct SymbolName<'n> {
-    /// Its name, without quotes.
-    pub name: Cow<'n, str>,
-    /// How it is written.
-    pub fixity: Fixity,
-}
-
-/// Names for symbols and variables.
-pub trait Names {
-    /// The name of a symbol.
-    fn symbol(&self, symbol: Symbol) -> SymbolName<'_>;
-    /// The name of a variable, without quotes.
-    fn variable(&self, variable: Variable) -> Cow<'_, str>;
-}
-
-/// The names of a signature, for the equations of its theory. A symbol that the signature does not
-/// have is called by its number.
-#[derive(Clone, Copy)]
-pub struct TheoryNames<'s>(pub &'s Signature);
-
-impl Names for TheoryNames<'_> {
-    fn symbol(&self, symbol: Symbol) -> SymbolName<'_> {
-        match self.0.symbol(symbol) {
-            Some(declaration) => SymbolName {
-                name: Cow::Borrowed(&declaration.name),
-                fixity: declaration.fixity,
-            },
-            None => SymbolName {
-                name: Cow::Owned(format!("symbol {}", symbol.0)),
-                fixity: Fixity::Plain,
-            },
-        }
-    }
-
-    fn variable(&self, variable: Variable) -> Cow<'_, str> {
-        match self.0.variables().get(variable.index as usize) {
-            Some(declaration) => Cow::Borrowed(&declaration.name),
-            None => Cow::Owned(format!("variable {}", variable.index)),
-        }
-    }
-}
-
-/// Names for the variables of a rule, which are numbered without regard to the signature: by sort,
-/// the declared variables first, then `x1`, `x2`, … as far as they are free.
-pub struct RuleNames<'n> {
-    base: &'n dyn Names,
-    names: FxHashMap<Variable, String>,
-}
-
-impl<'n> RuleNames<'n> {
-    /// Names for the variables of these terms, in the order of first occurrence. Symbols are called
-    /// as `base` says.
-    pub fn new(
-        base: &'n dyn Names,
-        signature: &Signature,
-        bank: &Bank,
-        terms: &[TermId],
-    ) -> RuleNames<'n> {
-        let mut names: FxHashMap<Variable, String> = FxHashMap::default();
-        let mut next: FxHashMap<u16, usize> = FxHashMap::default();
-        let mut fresh = 1;
-        for variable in terms.iter().flat_map(|term| bank.variables(*term)) {
-            if names.contains_key(&variable) {
-                continue;
-            }
-            let from = next.entry(variable.sort.0).or_insert(0);
-            let declared = signature.variables()[*from..]
-                .iter()
-                .position(|v| v.sort == variable.sort && !v.implicit);
-            let name = match declared {
-                Some(place) => {
-                    let name = signature.variables()[*from + place].name.clone();
-                    *from += place + 1;
-                    name
-                }
-                None => {
-                    *from = signature.variables().len();
-                    signature.fresh_name(&mut fresh, |_| false)
-                }
-            };
-            names.insert(variable, name);
-        }
-        RuleNames { base, names }
-    }
-}
-
-impl Names for RuleNames<'_> {
-    fn symbol(&self, symbol: Symbol) -> SymbolName<'_> {
-        self.base.symbol(symbol)
-    }
-
-    fn variable(&self, variable: Variable) -> Cow<'_, str> {
-        match self.names.get(&variable) {
-            Some(name) => Cow::Borrowed(name),
-            None => self.base.variable(variable),
-        }
-    }
-}
 
 /// A term as text.
 #[derive(Clone, Debug, Default, PartialEq, Eq)]
@@ -214,6 +113,7 @@ impl<'n> Printer<'n> {
             known: FxHashMap::default(),
             tasks: Vec::new(),
             depth: 0,
+            count: 0,
             last: Last::Nothing,
             pending: false,
             start: None,
@@ -225,11 +125,10 @@ impl<'n> Printer<'n> {
             follow: None,
             way: place.map(|_| 0),
         });
-        let mut count: u64 = 0;
         while let Some(task) = writer.tasks.pop() {
             if writer.printed.text.len() >= self.limit {
                 let size = u64::from(bank.size(term));
-                writer.printed.missing = size.saturating_sub(count).max(1);
+                writer.printed.missing = size.saturating_sub(writer.count).max(1);
                 let more = if bank.size(term) == u32::MAX {
                     "more than 4 billion".to_owned()
                 } else {
@@ -238,7 +137,6 @@ impl<'n> Printer<'n> {
                 writer.printed.text += &format!(" … ({more} symbols left out)");
                 break;
             }
-            count += u64::from(matches!(task, Task::Term { .. }));
             writer.step(task);
         }
         writer.printed
@@ -260,6 +158,7 @@ struct Writer<'a> {
     known: FxHashMap<Symbol, Written>,
     tasks: Vec<Task>,
     depth: u32,
+    count: u64,
     last: Last,
     pending: bool,
     start: Option<usize>,
@@ -413,6 +312,7 @@ impl Writer<'_> {
             self.printed.text.push(' ');
         }
         self.begin_highlight();
+        self.count += 1;
         self.printed.text += text;
         self.last = kind;
     }

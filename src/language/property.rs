@@ -1,18 +1,21 @@
 //! The usual laws by their usual names: `law + is associative commutative`.
 
+mod build;
+
 use super::declare::{Change, Statement};
 use super::diagnostic::Fault;
 use super::laws::{add, check_name};
 use super::lexer::{Kind, Lexer, Token};
-use super::term::{shown, type_of};
+use super::term::shown;
 use super::words::{nearest, quote_symbol};
-use crate::term::{Sort, Symbol, TermId, Variable};
+use crate::term::Symbol;
 use crate::theory::{LawKind, Property, Signature};
+use build::{build, choose_variables, sorts_of};
 use std::ops::Range;
 
 /// What stands behind a property word.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum Operand {
+pub enum PropertyOperand {
     /// Nothing.
     Nothing,
     /// A constant, `e` in the equations.
@@ -33,7 +36,7 @@ pub struct PropertyRow {
     /// How many arguments the operator has: `*` in the equations if two, `f` if one.
     pub arity: usize,
     /// What stands behind the word.
-    pub operand: Operand,
+    pub operand: PropertyOperand,
     /// The equations in Polish notation, each with the side that `left` or `right` before the word
     /// chooses; without one of these all are stated. An equation without a side is always stated.
     pub equations: &'static [(&'static str, &'static str, &'static str)],
@@ -44,42 +47,67 @@ pub const PROPERTIES: &[PropertyRow] = &[
     row(
         "associative",
         2,
-        Operand::Nothing,
+        PropertyOperand::Nothing,
         &[("", "**xyz", "*x*yz")],
     ),
-    row("commutative", 2, Operand::Nothing, &[("", "*xy", "*yx")]),
-    row("idempotent", 2, Operand::Nothing, &[("", "*xx", "x")]),
-    row("idempotent", 1, Operand::Nothing, &[("", "ffx", "fx")]),
-    row("involutive", 1, Operand::Nothing, &[("", "ffx", "x")]),
+    row(
+        "commutative",
+        2,
+        PropertyOperand::Nothing,
+        &[("", "*xy", "*yx")],
+    ),
+    row(
+        "idempotent",
+        2,
+        PropertyOperand::Nothing,
+        &[("", "*xx", "x")],
+    ),
+    row(
+        "idempotent",
+        1,
+        PropertyOperand::Nothing,
+        &[("", "ffx", "fx")],
+    ),
+    row(
+        "involutive",
+        1,
+        PropertyOperand::Nothing,
+        &[("", "ffx", "x")],
+    ),
     row(
         "unit",
         2,
-        Operand::Constant,
+        PropertyOperand::Constant,
         &[("left", "*ex", "x"), ("right", "*xe", "x")],
     ),
     row(
         "zero",
         2,
-        Operand::Constant,
+        PropertyOperand::Constant,
         &[("left", "*ex", "e"), ("right", "*xe", "e")],
     ),
     row(
         "inverse",
         2,
-        Operand::Unary,
+        PropertyOperand::Unary,
         &[("left", "*ixx", "e"), ("right", "*xix", "e")],
     ),
     row(
         "distributes",
         2,
-        Operand::Over,
+        PropertyOperand::Over,
         &[("left", "*x+yz", "+*xy*xz"), ("right", "*+xyz", "+*xz*yz")],
     ),
-    row("distributes", 1, Operand::Over, &[("", "f+xy", "+fxfy")]),
+    row(
+        "distributes",
+        1,
+        PropertyOperand::Over,
+        &[("", "f+xy", "+fxfy")],
+    ),
     row(
         "absorbs",
         2,
-        Operand::Binary,
+        PropertyOperand::Binary,
         &[("", "*x+xy", "x"), ("right", "*+xyx", "x")],
     ),
 ];
@@ -87,7 +115,7 @@ pub const PROPERTIES: &[PropertyRow] = &[
 const fn row(
     word: &'static str,
     arity: usize,
-    operand: Operand,
+    operand: PropertyOperand,
     equations: &'static [(&'static str, &'static str, &'static str)],
 ) -> PropertyRow {
     PropertyRow {
@@ -236,7 +264,7 @@ impl<'s, 't> Reader<'s, 't> {
             word = self.lexer.next()?;
         }
         let rows = self.rows(&word)?;
-        if side.is_empty() && rows[0].operand == Operand::Over {
+        if side.is_empty() && rows[0].operand == PropertyOperand::Over {
             // `distributes left over +` reads as well as `left distributes over +`.
             side = match &self.lexer.peek()?.kind {
                 Kind::Name(name) if name == "left" => "left",
@@ -291,13 +319,12 @@ impl<'s, 't> Reader<'s, 't> {
         if !rows.is_empty() {
             return Ok(rows);
         }
-        let fault = Fault::new(word.span.clone(), format!("{} is no property", shown(text)))
-            .label("not a property")
-            .help(all_words());
-        Err(match nearest(text, PROPERTIES.iter().map(|row| row.word)) {
-            Some(near) => fault.help(format!("did you mean {near}?")),
-            None => fault,
-        })
+        let mut fault = Fault::new(word.span.clone(), format!("{} is no property", shown(text)))
+            .label("not a property");
+        if let Some(near) = nearest(text, PROPERTIES.iter().map(|row| row.word)) {
+            fault = fault.help(format!("did you mean {near}?"));
+        }
+        Err(fault.help(all_words()))
     }
 
     /// The row that fits the number of arguments of the operator.
@@ -340,11 +367,11 @@ impl<'s, 't> Reader<'s, 't> {
     fn operand(&mut self, row: &PropertyRow) -> Result<(Symbols, String), Fault> {
         let mut symbols = Symbols::default();
         let (arity, over) = match row.operand {
-            Operand::Nothing => return Ok((symbols, String::new())),
-            Operand::Constant => (0, false),
-            Operand::Unary => (1, false),
-            Operand::Binary => (2, false),
-            Operand::Over => (2, true),
+            PropertyOperand::Nothing => return Ok((symbols, String::new())),
+            PropertyOperand::Constant => (0, false),
+            PropertyOperand::Unary => (1, false),
+            PropertyOperand::Binary => (2, false),
+            PropertyOperand::Over => (2, true),
         };
         if over {
             let token = self.lexer.next()?;
@@ -375,8 +402,8 @@ impl<'s, 't> Reader<'s, 't> {
             });
         };
         match row.operand {
-            Operand::Constant => symbols.constant = Some(symbol),
-            Operand::Unary => {
+            PropertyOperand::Constant => symbols.constant = Some(symbol),
+            PropertyOperand::Unary => {
                 symbols.unary = Some(symbol);
                 symbols.constant = self.unit;
                 if self.unit.is_none() {
@@ -423,119 +450,4 @@ fn symbol_with(signature: &Signature, name: &str, arity: usize) -> Option<Symbol
         .into_iter()
         .flatten()
         .find(fits)
-}
-
-/// The symbol that a letter of the table stands for; none for a variable.
-fn letter(law: &Stated, letter: u8) -> Option<Symbol> {
-    match letter {
-        b'*' | b'f' => law.symbols.operator,
-        b'+' => law.symbols.other,
-        b'e' => law.symbols.constant,
-        b'i' => law.symbols.unary,
-        _ => None,
-    }
-}
-
-/// The sorts of `x`, `y`, `z` that make the equation well sorted.
-fn sorts_of(signature: &Signature, law: &Stated) -> Result<[Option<Sort>; 3], Fault> {
-    let mut sorts = [None; 3];
-    let mut result = None;
-    let mut fits = true;
-    for side in [law.left, law.right] {
-        // Read forwards, with the sorts that are still expected on a stack.
-        let mut expected: Vec<Option<Sort>> = vec![result];
-        for byte in side.bytes() {
-            let wanted = expected.pop().expect("the table is well formed");
-            let sort = match letter(law, byte) {
-                Some(symbol) => {
-                    let declaration = &signature.symbols()[symbol.index()];
-                    expected.extend(declaration.arguments.iter().rev().map(|sort| Some(*sort)));
-                    Some(declaration.result)
-                }
-                None => {
-                    let known = &mut sorts[(byte - b'x') as usize];
-                    *known = known.or(wanted);
-                    *known
-                }
-            };
-            fits &= wanted.is_none() || sort == wanted;
-            result = result.or(sort);
-        }
-    }
-    if fits {
-        return Ok(sorts);
-    }
-    let operator = law.symbols.operator.expect("the operator was found");
-    Err(Fault::new(
-        law.span.clone(),
-        format!("the sorts do not allow {}", law.words),
-    )
-    .label("the equation would mix sorts")
-    .help(format!(
-        "the type of {} is {}",
-        signature.symbols()[operator.index()].name,
-        type_of(signature, operator)
-    )))
-}
-
-/// Variables for `x`, `y`, `z`: the declared ones of the sort in their order, then implicit ones.
-fn choose_variables(
-    at: &mut Statement<'_, '_, '_>,
-    sorts: &[Option<Sort>; 3],
-    span: &Range<usize>,
-) -> Result<[Option<Variable>; 3], Fault> {
-    let mut chosen = [None; 3];
-    let mut used: Vec<u32> = Vec::new();
-    for (slot, sort) in chosen.iter_mut().zip(sorts) {
-        let Some(sort) = *sort else { continue };
-        let signature = &mut at.theory.signature;
-        // Declared variables are numbered before the implicit ones only by chance.
-        let find = |implicit: bool| {
-            let all = signature.variables().iter().zip(0u32..);
-            all.filter(|(v, index)| {
-                v.sort == sort && v.implicit == implicit && !used.contains(index)
-            })
-            .map(|(_, index)| index)
-            .next()
-        };
-        let index = match find(false).or_else(|| find(true)) {
-            Some(index) => index,
-            None => {
-                let name = signature.fresh_name(&mut 1, |_| false);
-                signature
-                    .add_variable(&name, sort, true)
-                    .map_err(|_| Fault::new(span.clone(), "there are too many variables"))?
-            }
-        };
-        used.push(index);
-        *slot = Some(Variable { index, sort });
-    }
-    Ok(chosen)
-}
-
-/// The term of one side: read backwards, so that arguments are there before their symbol.
-fn build(
-    at: &mut Statement<'_, '_, '_>,
-    law: &Stated,
-    side: &str,
-    variables: &[Option<Variable>; 3],
-) -> TermId {
-    let bank = &mut at.theory.bank;
-    let mut stack: Vec<TermId> = Vec::new();
-    for byte in side.bytes().rev() {
-        let term = match letter(law, byte) {
-            Some(symbol) => {
-                let count = bank.info(symbol).arguments.len();
-                let mut arguments = stack.split_off(stack.len() - count);
-                arguments.reverse();
-                bank.apply(symbol, &arguments)
-            }
-            None => {
-                let variable = variables[(byte - b'x') as usize];
-                bank.variable(variable.expect("every variable got its sort"))
-            }
-        };
-        stack.push(term);
-    }
-    stack.pop().expect("the table is well formed")
 }

@@ -21,12 +21,13 @@ pub fn read_theory(
         ..Theory::default()
     };
     let mut faults = Vec::new();
-    let mut at = 0;
+    let (mut at, mut lines_before) = (0, 0);
     while let Some(piece) = next_piece(text, at, &theory.signature) {
         at = piece.range.end;
         let mut context = Context {
             loader,
             line: theory.document.next_id(),
+            lines_before,
             typed: false,
             uses: Uses::default(),
         };
@@ -34,10 +35,18 @@ pub fn read_theory(
             Some(fault) => faults.push(fault.at(source)),
             None => {
                 let done = statement(&mut theory, source, piece.range.clone(), &mut context);
-                faults.extend(done.err().into_iter().flatten());
+                // A name that is missing once is often missing many times: say so once.
+                let fresh = |fault: &Diagnostic| {
+                    !fault.message.ends_with("was never declared")
+                        || faults.iter().all(|f| f.message != fault.message)
+                };
+                let more: Vec<_> = done.err().into_iter().flatten().filter(fresh).collect();
+                faults.extend(more);
             }
         }
-        theory.document.push(&text[piece.range]);
+        let lines = &text[piece.range];
+        lines_before += lines.bytes().filter(|byte| *byte == b'\n').count();
+        theory.document.push(lines);
         if faults.len() >= MOST_MESSAGES && at < text.len() {
             let last = faults.pop().expect("there are many");
             faults.push(last.note("reading stopped here; there may be more errors"));

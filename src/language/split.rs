@@ -109,7 +109,8 @@ fn is_infix(signature: &Signature, name: &str) -> bool {
     matches!(fixity, Some(Fixity::Infix { .. }))
 }
 
-/// Can a statement that begins like this hold a term? A line of properties cannot.
+/// Can a statement that begins like this go on in the next line? A line of properties cannot, nor can
+/// the record of a derived rule, whatever words are infix operators.
 fn has_terms(text: &str, line: Range<usize>, signature: &Signature) -> bool {
     let Some(word) = first_word(&text[line.clone()]).filter(|word| is_reserved(word)) else {
         return true;
@@ -121,8 +122,8 @@ fn has_terms(text: &str, line: Range<usize>, signature: &Signature) -> bool {
             let (_, _, third) = (token(), token(), token());
             third != Ok(Kind::Reserved("is"))
         }
-        "rule" | "define" | "claim" | "derived" | "given" | "trace" | "apply" | "find"
-        | "prove" | "separate" | "closed" | "evaluate" | "replace" => true,
+        "rule" | "define" | "claim" | "given" | "trace" | "apply" | "find" | "prove"
+        | "separate" | "closed" | "evaluate" | "replace" => true,
         _ => false,
     }
 }

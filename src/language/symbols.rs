@@ -85,7 +85,7 @@ pub(crate) fn variables(at: &mut Statement<'_, '_, '_>, rest: usize) -> Result<V
         if twice || (same.is_none() && at.theory.signature.meaning(name).is_some()) {
             return Err(taken(&at.theory.signature, name, span.clone()));
         }
-        if at.theory.laws.iter().any(|law| law.name == *name) || at.theory.claim(name).is_some() {
+        if at.theory.is_named(name) {
             return Err(Fault::new(
                 span.clone(),
                 format!("{} is the name of a law or claim", shown(name)),
@@ -469,7 +469,7 @@ pub(crate) fn number(text: &str, most: usize) -> Option<usize> {
 }
 
 /// The line that declares a symbol.
-pub(crate) fn print_symbol(signature: &Signature, symbol: crate::term::Symbol) -> String {
+pub fn print_symbol(signature: &Signature, symbol: crate::term::Symbol) -> String {
     let declaration = &signature.symbols()[symbol.index()];
     let name = super::quote_symbol(&declaration.name);
     let count = declaration.arguments.len();

@@ -7,22 +7,30 @@ use super::evidence::Evidence;
 use super::json::from_json;
 use super::work::{Outcome, Work, WorkLimit};
 
-/// Judges evidence. Does not judge whether its laws and its claim are those that somebody asked
-/// about: compare [`Evidence::laws`] and [`Evidence::claim`] with the theory and the question.
+/// What copying a term costs, in memory above all.
+const UNITS_PER_TERM: u64 = 15;
+
+/// What reading a JSON value costs, in memory above all.
+const UNITS_PER_VALUE: u64 = 12;
+
+/// Judges evidence. Does not judge whether its laws, sorts and claim are those that somebody asked
+/// about: compare [`Evidence::laws`], [`Evidence::types`] and [`Evidence::claim`] with the theory
+/// and the question.
 pub fn check(evidence: &Evidence, limit: WorkLimit) -> Outcome {
     let mut work = Work::new(limit);
-    let result = match evidence {
+    // The checkers copy the terms, since they make instances.
+    let copy = work.spend(evidence.terms().len() as u64 * UNITS_PER_TERM);
+    let result = copy.and_then(|()| match evidence {
         Evidence::Proof(proof) => check_proof(proof, &mut work),
         Evidence::Algebra(algebra) => check_algebra(algebra, &mut work),
         Evidence::Complete(set) => check_complete(set, &mut work),
-    };
+    });
     result.into()
 }
 
 /// Judges evidence in the form of JSON. A file is paid for by its length and the number of values
 /// in it before it is read, because the reader holds them all in memory.
 pub fn check_json(json: &[u8], limit: WorkLimit) -> Outcome {
-    const UNITS_PER_VALUE: u64 = 40;
     let opens = |byte: &&u8| matches!(byte, b'[' | b'{' | b',' | b':');
     let values = json.iter().filter(opens).count() as u64;
     let cost = (json.len() as u64).saturating_add(values.saturating_mul(UNITS_PER_VALUE));

@@ -127,7 +127,7 @@ fn claim_constants(
 }
 
 /// Every oriented rule in its direction, every other one in both.
-fn directions(
+pub(super) fn directions(
     set: &CompleteSet,
     terms: &Terms,
     signature: &super::signature::Signature,

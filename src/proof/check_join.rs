@@ -9,7 +9,7 @@
 use rustc_hash::FxHashMap;
 
 use super::check_order::Assumption;
-use super::check_rewrite::{NormalForms, Rewriting};
+use super::check_rewrite::{NormalForms, Rewriting, one_replacement};
 use super::terms::{Name, Substitution, TermIndex};
 use super::work::{Stop, Work};
 
@@ -201,7 +201,7 @@ impl Joining {
         }
         let left = forms.normal_form(system, left, work)?;
         let right = forms.normal_form(system, right, work)?;
-        if left == right {
+        if left == right || one_replacement(system, left, right, work)? {
             Ok(Joined::Yes)
         } else {
             Ok(Joined::No(left, right))

@@ -237,6 +237,45 @@ impl NormalForms {
     }
 }
 
+/// Whether one replacement by an instance of an ordered equation makes `left` into `right`. Each
+/// ground instance of the replacement is a step in one direction or the other, or changes nothing,
+/// so the two join, although it may depend on the instance how.
+pub(super) fn one_replacement(
+    system: &Rewriting,
+    left: TermIndex,
+    right: TermIndex,
+    work: &mut Work,
+) -> Result<bool, Stop> {
+    let Rewriting {
+        terms,
+        signature,
+        rules,
+        ..
+    } = system;
+    let (mut one, mut other) = (left, right);
+    loop {
+        for number in system.candidates(root(terms, one)) {
+            work.spend(1)?;
+            let rule = &rules[number];
+            let pairs = vec![(rule.left, one), (rule.right, other)];
+            if rule.ordered && match_all(terms, signature, pairs, work)?.is_some() {
+                return Ok(true);
+            }
+        }
+        // Further down there is a place for both only if all else is the same.
+        let (Node::Apply(f, some), Node::Apply(g, others)) = (terms.node(one), terms.node(other))
+        else {
+            return Ok(false);
+        };
+        work.spend(1 + some.len() as u64)?;
+        let mut differing = some.iter().zip(others).filter(|(one, other)| one != other);
+        match (differing.next(), differing.next()) {
+            (Some((&inner, &other_inner)), None) if f == g => (one, other) = (inner, other_inner),
+            _ => return Ok(false),
+        }
+    }
+}
+
 /// The substitution that makes `pattern` into `subject`.
 pub(super) fn match_term(
     terms: &Terms,
@@ -245,8 +284,18 @@ pub(super) fn match_term(
     subject: TermIndex,
     work: &mut Work,
 ) -> Result<Option<Substitution>, Stop> {
+    match_all(terms, signature, vec![(pattern, subject)], work)
+}
+
+/// The substitution that makes the first of each pair into the second.
+fn match_all(
+    terms: &Terms,
+    signature: &Signature,
+    pairs: Vec<(TermIndex, TermIndex)>,
+    work: &mut Work,
+) -> Result<Option<Substitution>, Stop> {
     let mut with = Substitution::default();
-    let mut waiting = vec![(pattern, subject)];
+    let mut waiting = pairs;
     while let Some((pattern, subject)) = waiting.pop() {
         work.spend(1)?;
         if terms.is_ground(pattern) {

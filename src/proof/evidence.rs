@@ -3,6 +3,8 @@
 //! The field names are those of the JSON form. Names and terms belong to the `terms` of the same
 //! object.
 
+use rustc_hash::FxHashSet;
+
 use super::terms::{Name, TermIndex, Terms};
 
 /// An answer's evidence.
@@ -33,6 +35,16 @@ impl Evidence {
             Evidence::Proof(proof) => &proof.laws,
             Evidence::Algebra(algebra) => &algebra.laws,
             Evidence::Complete(set) => &set.laws,
+        }
+    }
+
+    /// The sorts that the evidence states. Evidence without sorts says nothing about a theory with
+    /// sorts, since its equations then hold between all terms.
+    pub fn types(&self) -> Option<&Types> {
+        match self {
+            Evidence::Proof(proof) => proof.types.as_ref(),
+            Evidence::Algebra(algebra) => algebra.types.as_ref(),
+            Evidence::Complete(set) => set.types.as_ref(),
         }
     }
 
@@ -142,6 +154,47 @@ pub struct Proof {
     pub lemmas: Vec<Lemma>,
     /// What is proved.
     pub claim: Claim,
+}
+
+impl Proof {
+    /// Drops the lemmas on which the claim does not rest, directly or by other lemmas.
+    pub fn drop_unused_lemmas(&mut self) {
+        let mut used = FxHashSet::default();
+        note_used(&self.claim.steps, &mut used);
+        drop_unused(&mut self.lemmas, used);
+    }
+}
+
+impl CompleteSet {
+    /// Drops the lemmas on which no rule rests, directly or by other lemmas.
+    pub fn drop_unused_lemmas(&mut self) {
+        let used = self.rules.iter().map(|rule| rule.name).collect();
+        drop_unused(&mut self.lemmas, used);
+    }
+}
+
+/// Adds the names of the equations by which `steps`, and the chains given inside them, go.
+fn note_used(steps: &[Step], used: &mut FxHashSet<Name>) {
+    let mut waiting = vec![steps];
+    while let Some(steps) = waiting.pop() {
+        for step in steps {
+            used.insert(step.by);
+            waiting.extend(step.given.iter().map(Vec::as_slice));
+        }
+    }
+}
+
+/// A lemma uses earlier ones only, so one pass from the last to the first is enough.
+fn drop_unused(lemmas: &mut Vec<Lemma>, mut used: FxHashSet<Name>) {
+    let mut kept: Vec<Lemma> = Vec::new();
+    while let Some(lemma) = lemmas.pop() {
+        if used.contains(&lemma.equation.name) {
+            note_used(&lemma.steps, &mut used);
+            kept.push(lemma);
+        }
+    }
+    kept.reverse();
+    *lemmas = kept;
 }
 
 /// The values of an operator, the last argument changing fastest; a constant has one value.

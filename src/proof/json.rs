@@ -4,16 +4,17 @@
 //! JSON itself nests at most 128 deep here (the reader's own limit), so functions that follow
 //! its nesting may call themselves; terms are flat in the file, whatever their depth.
 
+use std::borrow::Cow;
 use std::fmt;
 
 use rustc_hash::FxHashMap;
-use serde_json::{Map, Value};
 
 use super::evidence::{
     AlgebraClaim, AlgebraEvidence, Claim, CompleteClaim, CompleteSet, Condition, Equation,
     Evidence, Lemma, OrderKind, Proof, Rule, StatedOrder, Step, Table, Types, Way,
 };
 use super::terms::{Name, TermIndex, Terms};
+use super::values::Json;
 use super::work::Outcome;
 
 /// Reads evidence. The error is a rejection with the place and what is wrong there.
@@ -22,7 +23,7 @@ use super::work::Outcome;
 ///
 /// If the text is not JSON, or not of the form of any evidence.
 pub fn from_json(json: &[u8]) -> Result<Evidence, Outcome> {
-    let value: Value = serde_json::from_slice(json).map_err(|error| Outcome::Rejected {
+    let value: Json<'_> = serde_json::from_slice(json).map_err(|error| Outcome::Rejected {
         place: format!("line {} column {}", error.line(), error.column()),
         reason: format!("not JSON: {error}"),
     })?;
@@ -34,12 +35,12 @@ pub fn from_json(json: &[u8]) -> Result<Evidence, Outcome> {
         value: &value,
         place: &top,
     };
-    let kind = root.object(None)?.get("kind").and_then(Value::as_str);
+    let kind = root.field("kind", |at| at.text())?;
     let mut reader = Reader::default();
     match kind {
-        Some("proof") => reader.proof(root).map(Evidence::Proof),
-        Some("algebra") => reader.algebra(root).map(Evidence::Algebra),
-        Some("complete") => reader.complete(root).map(Evidence::Complete),
+        "proof" => reader.proof(root).map(Evidence::Proof),
+        "algebra" => reader.algebra(root).map(Evidence::Algebra),
+        "complete" => reader.complete(root).map(Evidence::Complete),
         _ => {
             let place = Place::under(&top, Part::Field("kind"));
             Err(place.fault("is none of \"proof\", \"algebra\" and \"complete\""))
@@ -100,7 +101,7 @@ impl fmt::Display for Place<'_> {
 /// A value with its place.
 #[derive(Clone, Copy)]
 struct At<'v, 'p> {
-    value: &'v Value,
+    value: &'v Json<'v>,
     place: &'p Place<'p>,
 }
 
@@ -110,23 +111,36 @@ impl<'v> At<'v, '_> {
     }
 
     /// The fields; with `allowed`, no others than those.
-    fn object(&self, allowed: Option<&[&str]>) -> Read<&'v Map<String, Value>> {
-        let Value::Object(fields) = self.value else {
+    fn object(&self, allowed: Option<&[&str]>) -> Read<&'v [(Cow<'v, str>, Json<'v>)]> {
+        let Json::Object(fields) = self.value else {
             return self.fault("is not an object");
         };
-        if let Some(allowed) = allowed
-            && let Some(other) = fields.keys().find(|key| !allowed.contains(&key.as_str()))
-        {
-            let place = Place::under(self.place, Part::Field(other));
-            return Err(place.fault("is not a field of this object"));
+        let Some(allowed) = allowed else {
+            return Ok(fields);
+        };
+        for (number, (key, _)) in fields.iter().enumerate() {
+            let place = Place::under(self.place, Part::Field(key));
+            if !allowed.contains(&key.as_ref()) {
+                return Err(place.fault("is not a field of this object"));
+            }
+            // No more fields than allowed have passed without a repetition.
+            if fields[..number].iter().any(|(earlier, _)| earlier == key) {
+                return Err(place.fault("is written twice"));
+            }
         }
         Ok(fields)
+    }
+
+    /// The value of a field.
+    fn get(&self, name: &str) -> Read<Option<&'v Json<'v>>> {
+        let mut fields = self.object(None)?.iter();
+        Ok(fields.find(|(key, _)| key == name).map(|(_, value)| value))
     }
 
     /// Reads a field that has to be there.
     fn field<T>(&self, name: &str, read: impl FnOnce(At<'v, '_>) -> Read<T>) -> Read<T> {
         let place = Place::under(self.place, Part::Field(name));
-        match self.object(None)?.get(name) {
+        match self.get(name)? {
             Some(value) => read(At {
                 value,
                 place: &place,
@@ -137,7 +151,7 @@ impl<'v> At<'v, '_> {
 
     /// Reads a field that may be absent.
     fn optional<T>(&self, name: &str, read: impl FnOnce(At<'v, '_>) -> Read<T>) -> Read<Option<T>> {
-        if self.object(None)?.contains_key(name) {
+        if self.get(name)?.is_some() {
             self.field(name, read).map(Some)
         } else {
             Ok(None)
@@ -146,7 +160,7 @@ impl<'v> At<'v, '_> {
 
     /// Reads each element of an array.
     fn list<T>(&self, mut read: impl FnMut(At<'v, '_>) -> Read<T>) -> Read<Vec<T>> {
-        let Value::Array(elements) = self.value else {
+        let Json::Array(elements) = self.value else {
             return self.fault("is not an array");
         };
         let mut found = Vec::with_capacity(elements.len());
@@ -178,15 +192,15 @@ impl<'v> At<'v, '_> {
 
     fn text(&self) -> Read<&'v str> {
         match self.value {
-            Value::String(text) => Ok(text),
+            Json::Text(text) => Ok(text),
             _ => self.fault("is not a string"),
         }
     }
 
     fn number(&self) -> Read<u64> {
-        match self.value.as_u64() {
-            Some(number) => Ok(number),
-            None => self.fault("is not a number from 0 on"),
+        match self.value {
+            Json::Number(number) => Ok(*number),
+            _ => self.fault("is not a number from 0 on"),
         }
     }
 
@@ -236,8 +250,8 @@ impl Reader {
 
     fn entry(&mut self, at: At<'_, '_>) -> Read<TermIndex> {
         match at.value {
-            Value::String(name) => Ok(self.terms.variable(name)),
-            Value::Array(parts) if !parts.is_empty() => {
+            Json::Text(name) => Ok(self.terms.variable(name)),
+            Json::Array(parts) if !parts.is_empty() => {
                 let mut operator = None;
                 let mut arguments = Vec::with_capacity(parts.len() - 1);
                 at.list(|part| {
@@ -504,7 +518,7 @@ impl Reader {
             left: at.field("left", |at| self.term(at))?,
             right: at.field("right", |at| self.term(at))?,
             oriented: at.field("oriented", |at| match at.value {
-                Value::Bool(oriented) => Ok(*oriented),
+                Json::Bool(oriented) => Ok(*oriented),
                 _ => at.fault("is neither true nor false"),
             })?,
         })
@@ -515,7 +529,7 @@ impl Reader {
 fn table(at: At<'_, '_>) -> Read<Table> {
     let mut shape = Vec::new();
     let mut first = at.value;
-    while let Value::Array(elements) = first {
+    while let Json::Array(elements) = first {
         let Some(next) = elements.first() else {
             return at.fault("has an empty array");
         };
@@ -532,10 +546,10 @@ fn table(at: At<'_, '_>) -> Read<Table> {
 
 fn fill(at: At<'_, '_>, shape: &[u32], values: &mut Vec<u32>) -> Read<()> {
     match (at.value, shape.split_first()) {
-        (Value::Array(elements), Some((&side, inner))) if elements.len() == side as usize => {
+        (Json::Array(elements), Some((&side, inner))) if elements.len() == side as usize => {
             at.list(|at| fill(at, inner, values))?;
         }
-        (Value::Array(_), _) | (_, Some(_)) => {
+        (Json::Array(_), _) | (_, Some(_)) => {
             return at.fault("has not the shape of the rest of its table");
         }
         (_, None) => values.push(at.small()?),

@@ -6,3 +6,4 @@ mod hostile;
 mod made;
 mod mutations;
 mod orders;
+mod soundness;

@@ -76,6 +76,35 @@ impl System {
         None
     }
 
+    /// How many rule steps lead from one term to another that it was rewritten to, each distinct
+    /// subterm's steps counted once; nothing if the table does not lead there.
+    pub fn count_steps(&self, from: TermId, to: TermId) -> Option<usize> {
+        let mut seen = FxHashSet::default();
+        let mut count = 0;
+        let mut stack = vec![(from, to)];
+        while let Some((from, to)) = stack.pop() {
+            if from == to || !seen.insert((from, to)) {
+                continue;
+            }
+            let links = self
+                .links(from, to)
+                .unwrap_or_else(|| vec![(to, Reason::Arguments)]);
+            let mut here = from;
+            for (next, reason) in links {
+                if reason != Reason::Arguments {
+                    count += 1;
+                } else if self.bank.head(here) == self.bank.head(next) {
+                    let arguments = self.bank.arguments(here).iter().copied();
+                    stack.extend(arguments.zip(self.bank.arguments(next).iter().copied()));
+                } else {
+                    return None;
+                }
+                here = next;
+            }
+        }
+        Some(count)
+    }
+
     /// All steps, from left to right, from one term to another that it was rewritten to.
     ///
     /// Nothing if the table does not lead there, or if the steps and their places together would

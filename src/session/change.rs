@@ -1,16 +1,20 @@
 //! Changing the theory, and taking changes back.
 
+use super::workers::check_directed;
 use super::{Budgets, NoOrder, Session};
-use crate::language::{Change, Diagnostic, DropFault, Question};
-use crate::order::OrderSetting;
+use crate::language::{
+    Change, Diagnostic, DropFault, Question, parse_question, parse_question_prefix,
+};
+use crate::term::TermId;
 use crate::theory::Theory;
 
 /// The state before a change.
 pub(super) struct Snapshot {
-    pub(super) theory: Theory,
-    pub(super) budgets: Budgets,
+    theory: Theory,
+    budgets: Budgets,
+    it: Option<TermId>,
     /// What the change was, as it was typed.
-    pub(super) line: String,
+    line: String,
 }
 
 /// A change that was taken back or brought back, as it was typed.
@@ -27,22 +31,44 @@ pub enum ChangeFault {
     Text(Vec<Diagnostic>),
     /// The order does not suit.
     Order(NoOrder),
-    /// The law or claim cannot be dropped; with the names that are close.
+    /// The law or claim cannot be dropped.
     Drop(DropFault),
 }
 
 impl Session {
-    /// Takes in a declaration as it was typed; the theory is unchanged on error. A directed rule
-    /// or an order under which a directed rule does not decrease is refused.
+    /// Takes in a declaration as it was typed; the theory is unchanged on error. A directed rule,
+    /// or an order, under which some directed rule does not decrease is refused.
     pub fn declare(&mut self, text: &str) -> Result<Vec<Change>, ChangeFault> {
-        let _ = text;
-        todo!()
+        let before = self.snapshot(text.trim());
+        let changes = self
+            .theory
+            .declare(text, "typed", &self.library)
+            .map_err(ChangeFault::Text)?;
+        let orders =
+            |change: &Change| matches!(change, Change::Order | Change::Law(_) | Change::Used(_));
+        if changes.iter().any(orders)
+            && let Err(fault) = self.check_order()
+        {
+            self.theory = before.theory;
+            return Err(ChangeFault::Order(fault));
+        }
+        if !changes.is_empty() {
+            self.changed(before);
+        }
+        Ok(changes)
+    }
+
+    /// Is there, or is stated, an order under which all directed rules decrease?
+    pub(super) fn check_order(&self) -> Result<(), NoOrder> {
+        match &self.theory.order {
+            Some(setting) => check_directed(&self.theory, setting),
+            None => super::workers::can_plan(&self.theory),
+        }
     }
 
     /// Reads a question as it was typed (a leading `?` is read past); `it` is known.
     pub fn parse_question(&mut self, text: &str) -> Result<Question, Diagnostic> {
-        let _ = text;
-        todo!()
+        parse_question(&mut self.theory, "typed", text, self.it)
     }
 
     /// Reads a question at the start of `text[from..]` and says where it ends: for commands such as
@@ -52,39 +78,81 @@ impl Session {
         text: &str,
         from: usize,
     ) -> Result<(Question, usize), Diagnostic> {
-        let _ = (text, from);
-        todo!()
+        parse_question_prefix(&mut self.theory, "typed", text, from..text.len(), self.it)
     }
 
-    /// Sets the order, or with none leaves it to the program. `line` is what was typed.
-    pub fn set_order(
-        &mut self,
-        setting: Option<OrderSetting>,
-        line: &str,
-    ) -> Result<(), ChangeFault> {
-        let _ = (setting, line);
-        todo!()
-    }
-
-    /// Takes a law or a claim out.
+    /// Takes a law or a claim out; `line` is what was typed.
     pub fn drop_named(&mut self, name: &str, line: &str) -> Result<(), ChangeFault> {
-        let _ = (name, line);
-        todo!()
+        let before = self.snapshot(line);
+        match self.theory.drop_law(name) {
+            Ok(_) => {}
+            Err(DropFault::Unknown) => {
+                self.theory.drop_claim(name).map_err(ChangeFault::Drop)?;
+            }
+            Err(fault) => return Err(ChangeFault::Drop(fault)),
+        }
+        self.changed(before);
+        Ok(())
     }
 
-    /// Changes the budgets.
+    /// Changes the budgets; `line` is what was typed.
     pub fn set_budgets(&mut self, budgets: Budgets, line: &str) {
-        let _ = (budgets, line);
-        todo!()
+        let before = self.snapshot(line);
+        self.budgets = budgets;
+        self.undo.push(before);
+        self.redo.clear();
     }
 
     /// Takes the last change back.
     pub fn undo(&mut self) -> Option<Undone> {
-        todo!()
+        let snapshot = self.undo.pop()?;
+        let line = snapshot.line.clone();
+        let after = self.restore(snapshot);
+        self.redo.push(after);
+        Some(Undone { line })
     }
 
-    /// Brings the change that was taken back last.
+    /// Brings back the change that was taken back last.
     pub fn redo(&mut self) -> Option<Undone> {
-        todo!()
+        let snapshot = self.redo.pop()?;
+        let line = snapshot.line.clone();
+        let before = self.restore(snapshot);
+        self.undo.push(before);
+        Some(Undone { line })
+    }
+
+    fn restore(&mut self, snapshot: Snapshot) -> Snapshot {
+        let now = Snapshot {
+            theory: std::mem::replace(&mut self.theory, snapshot.theory),
+            budgets: std::mem::replace(&mut self.budgets, snapshot.budgets),
+            it: std::mem::replace(&mut self.it, snapshot.it),
+            line: snapshot.line,
+        };
+        self.lineage += 1;
+        self.outdate();
+        now
+    }
+
+    fn snapshot(&self, line: &str) -> Snapshot {
+        Snapshot {
+            theory: self.theory.clone(),
+            budgets: self.budgets,
+            it: self.it,
+            line: line.to_owned(),
+        }
+    }
+
+    /// After a change of the theory, which can be undone.
+    fn changed(&mut self, before: Snapshot) {
+        self.undo.push(before);
+        self.redo.clear();
+        self.outdate();
+    }
+
+    /// Answers say whether the laws are still those that they were given under.
+    fn outdate(&mut self) {
+        for answer in &mut self.answers {
+            answer.outdated = true;
+        }
     }
 }

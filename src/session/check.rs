@@ -1,8 +1,9 @@
 //! Verifying the claims.
 
 use super::control::Control;
-use super::{Answer, Session, SessionFault};
+use super::{Answer, Session, SessionFault, Verdict};
 use crate::theory::Expected;
+use std::sync::atomic::Ordering;
 use std::time::Duration;
 
 /// What became of one claim.
@@ -23,7 +24,11 @@ pub struct ClaimResult {
 impl ClaimResult {
     /// Is it as claimed (yes), otherwise (no), or not known (nothing)?
     pub fn is_as_claimed(&self) -> Option<bool> {
-        todo!()
+        match self.answer.verdict {
+            Verdict::Equal => Some(self.expected == Expected::Equal),
+            Verdict::NotEqual => Some(self.expected == Expected::NotEqual),
+            Verdict::Undecided => None,
+        }
     }
 }
 
@@ -36,7 +41,26 @@ impl Session {
         control: &mut Control,
         each: &mut dyn FnMut(&ClaimResult),
     ) -> Result<Vec<ClaimResult>, SessionFault> {
-        let _ = (within, control, each);
-        todo!()
+        let mut results = Vec::new();
+        for (place, claim) in self.theory.claims.clone().into_iter().enumerate() {
+            if control.stop.load(Ordering::Relaxed) {
+                break;
+            }
+            let answer = self.ask(claim.left, claim.right, within, control)?.clone();
+            let sign = match claim.expected {
+                Expected::Equal => "=",
+                Expected::NotEqual => "!=",
+            };
+            let result = ClaimResult {
+                number: place + 1,
+                text: self.equation_text(claim.left, sign, claim.right),
+                name: claim.name,
+                expected: claim.expected,
+                answer,
+            };
+            each(&result);
+            results.push(result);
+        }
+        Ok(results)
     }
 }

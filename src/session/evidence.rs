@@ -114,35 +114,66 @@ impl<'a> Writer<'a> {
         let steps = chain
             .as_ref()
             .map(|chain| self.steps(chain, &Reading::Theory));
-        let proof = steps.and_then(|steps| {
-            let ground = std::mem::take(&mut self.lemmas);
-            self.prove_rules().ok()?;
-            self.lemmas.extend(ground);
-            let (left, right) = (self.ground_term(left), self.ground_term(right));
-            let claim = proof::Claim {
-                left,
-                right,
-                when: vec![],
-                steps,
-                witness: vec![],
-            };
-            let laws = self
-                .laws
-                .clone()
-                .into_iter()
-                .map(|law| self.law(law))
-                .collect();
-            Some(proof::Proof {
-                types: self.types(),
-                laws,
-                definitions: Vec::new(),
-                lemmas: std::mem::take(&mut self.lemmas),
-                claim,
-                terms: std::mem::take(&mut self.terms),
-            })
-        });
+        let ground = std::mem::take(&mut self.lemmas);
+        let proved = steps.zip(self.prove_rules().ok());
+        self.lemmas.extend(ground);
         self.engine.system.bank.rollback(mark);
-        proof
+        proved.map(|(steps, ())| self.finish(left, right, steps))
+    }
+
+    /// The chain from a ground term to what it was rewritten to; rules are cited, not proved.
+    pub(super) fn trace(mut self, from: TermId, to: TermId, most: usize) -> Option<proof::Proof> {
+        let mark = self.engine.system.bank.mark();
+        let chain = of_table(self.engine, from, to, most);
+        let steps = chain.map(|chain| self.steps(&chain, &Reading::Theory));
+        self.engine.system.bank.rollback(mark);
+        steps.map(|steps| self.finish(from, to, steps))
+    }
+
+    /// The proof of a rule, with the rules that it rests on as lemmas.
+    pub(super) fn rule_proof(mut self, rule: RuleId) -> Result<proof::Proof, ReplayError> {
+        let mark = self.engine.system.bank.mark();
+        self.rules.insert(rule);
+        let proved = self.prove_rules();
+        self.engine.system.bank.rollback(mark);
+        proved?;
+        let Lemma { equation, steps } = self.lemmas.pop().expect("the rule itself");
+        let claim = proof::Claim {
+            left: equation.left,
+            right: equation.right,
+            when: vec![],
+            steps,
+            witness: vec![],
+        };
+        Ok(self.finished(claim))
+    }
+
+    fn finish(mut self, left: TermId, right: TermId, steps: Vec<Step>) -> proof::Proof {
+        let (left, right) = (self.ground_term(left), self.ground_term(right));
+        self.finished(proof::Claim {
+            left,
+            right,
+            when: vec![],
+            steps,
+            witness: vec![],
+        })
+    }
+
+    fn finished(mut self, claim: proof::Claim) -> proof::Proof {
+        let laws = self
+            .laws
+            .clone()
+            .into_iter()
+            .map(|law| self.law(law))
+            .collect();
+        proof::Proof {
+            types: self.types(),
+            laws,
+            definitions: Vec::new(),
+            lemmas: self.lemmas,
+            claim,
+            terms: self.terms,
+        }
     }
 
     /// The active rules as a complete set, with the question that they decide and the normal forms

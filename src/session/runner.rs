@@ -4,10 +4,11 @@ use super::evidence::{ClaimVariables, Naming, Writer};
 use crate::engine::Engine;
 use crate::order::{Order, OrderProblem, OrderSetting};
 use crate::proof;
-use crate::rewrite::Limits;
-use crate::term::{Copier, Sort, Symbol, TermId, Variable};
+use crate::rewrite::{Limits, RuleId};
+use crate::term::{Copier, Sort, TermId, Variable};
 use crate::theory::Theory;
 use rustc_hash::FxHashMap;
+use std::rc::Rc;
 
 /// A question in an engine: ground terms, in which constants stand for the variables.
 #[derive(Clone, Debug)]
@@ -27,6 +28,8 @@ pub(super) struct Runner {
     /// The theory's terms in the engine's bank.
     copier: Copier,
     symbols: usize,
+    /// The last question, as sides in the theory's bank, since the last time of catching up.
+    asked: Option<((TermId, TermId), Rc<Asked>)>,
     /// The laws that the engine has, as sides in the theory's bank.
     laws: Vec<(String, TermId, TermId)>,
 }
@@ -46,6 +49,7 @@ impl Runner {
             naming: naming(theory),
             copier: Copier::default(),
             symbols: symbols.len(),
+            asked: None,
             laws: Vec::new(),
         };
         runner.add_laws(theory);
@@ -54,22 +58,30 @@ impl Runner {
 
     /// Takes in what was added to the theory since. False if more has changed than that.
     pub(super) fn catch_up(&mut self, theory: &Theory) -> bool {
-        let known = theory
+        if !self.is_part_of(theory) {
+            return false;
+        }
+        self.naming = naming(theory);
+        self.asked = None;
+        self.add_laws(theory);
+        true
+    }
+
+    /// Has the engine nothing that the theory has not?
+    fn is_part_of(&self, theory: &Theory) -> bool {
+        let same = theory
             .laws
             .iter()
             .zip(&self.laws)
             .all(|(law, (name, left, right))| {
                 law.name == *name && (law.left, law.right) == (*left, *right)
             });
-        if theory.bank.symbols().len() != self.symbols
-            || theory.laws.len() < self.laws.len()
-            || !known
-        {
-            return false;
-        }
-        self.naming = naming(theory);
-        self.add_laws(theory);
-        true
+        theory.bank.symbols().len() == self.symbols && theory.laws.len() >= self.laws.len() && same
+    }
+
+    /// Has the engine all laws of the theory, and no others?
+    pub(super) fn is_current(&self, theory: &Theory) -> bool {
+        self.is_part_of(theory) && theory.laws.len() == self.laws.len()
     }
 
     fn add_laws(&mut self, theory: &Theory) {
@@ -90,7 +102,17 @@ impl Runner {
 
     /// A question in the engine. The constants for its variables are in the order of the alphabet,
     /// the earlier the smaller.
-    pub(super) fn ask(&mut self, theory: &Theory, left: TermId, right: TermId) -> Asked {
+    pub(super) fn ask(&mut self, theory: &Theory, left: TermId, right: TermId) -> Rc<Asked> {
+        let sides = (left, right);
+        if let Some((_, asked)) = self.asked.as_ref().filter(|(known, _)| *known == sides) {
+            return asked.clone();
+        }
+        let asked = Rc::new(self.ask_anew(theory, left, right));
+        self.asked = Some((sides, asked.clone()));
+        asked
+    }
+
+    fn ask_anew(&mut self, theory: &Theory, left: TermId, right: TermId) -> Asked {
         let mut variables = theory.bank.variables(left);
         variables.extend(theory.bank.variables(right));
         let name = |v: &Variable| theory.signature.variables()[v.index as usize].name.as_str();
@@ -148,6 +170,25 @@ impl Runner {
         let proof = writer.proof(asked.left, asked.right);
         self.engine.system.set_asking(false);
         proof
+    }
+
+    /// The chain from a question's left side to its normal form, as a proof without lemmas' proofs.
+    pub(super) fn trace(
+        &mut self,
+        asked: &Asked,
+        normal: TermId,
+        most: usize,
+    ) -> Option<proof::Proof> {
+        let writer = Writer::new(&mut self.engine, &self.naming, &asked.variables);
+        writer.trace(asked.left, normal, most)
+    }
+
+    /// The proof of a rule.
+    pub(super) fn rule_proof(&mut self, rule: RuleId) -> Option<proof::Proof> {
+        let none = ClaimVariables::default();
+        Writer::new(&mut self.engine, &self.naming, &none)
+            .rule_proof(rule)
+            .ok()
     }
 
     /// The active rules as a complete set, with the two normal forms of a question.
@@ -234,26 +275,19 @@ fn copy_back(
     known[&term]
 }
 
-fn naming(theory: &Theory) -> Naming {
+pub(super) fn naming(theory: &Theory) -> Naming {
     let signature = &theory.signature;
-    let twice = |name: &str, place: usize| {
-        signature
-            .symbols()
-            .iter()
-            .enumerate()
-            .any(|(p, s)| p != place && s.name == name)
-    };
-    let symbols = signature
-        .symbols()
-        .iter()
-        .enumerate()
-        .map(|(place, symbol)| {
-            if twice(&symbol.name, place) {
-                format!("{}/{}", symbol.name, symbol.arguments.len())
-            } else {
-                symbol.name.clone()
-            }
-        });
+    let mut times: FxHashMap<&str, u32> = FxHashMap::default();
+    for symbol in signature.symbols() {
+        *times.entry(&symbol.name).or_default() += 1;
+    }
+    let symbols = signature.symbols().iter().map(|symbol| {
+        if times[symbol.name.as_str()] > 1 {
+            format!("{}/{}", symbol.name, symbol.arguments.len())
+        } else {
+            symbol.name.clone()
+        }
+    });
     let types = signature.symbols().iter().map(|symbol| {
         symbol
             .arguments
@@ -274,10 +308,4 @@ fn naming(theory: &Theory) -> Naming {
         typed: signature.has_sorts(),
         types: types.collect(),
     }
-}
-
-/// The number of a symbol of the theory in evidence, if the name is one.
-pub(super) fn symbol_of(naming: &Naming, name: &str) -> Option<Symbol> {
-    let place = naming.symbols.iter().position(|known| known == name)?;
-    Some(Symbol(place as u32))
 }

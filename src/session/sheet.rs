@@ -1,5 +1,12 @@
-//! Evidence as text.
+//! Evidence as text: its plain terms become terms of a bank of their own, for the printer.
 
+use super::evidence::Naming;
+use crate::language::{Names, Printer, SymbolName};
+use crate::proof::{self, Name, Node, TermIndex, Terms, Way};
+use crate::term::{Bank, Sort, Symbol, TermId, Variable};
+use crate::theory::{Signature, Theory};
+use rustc_hash::FxHashMap;
+use std::borrow::Cow;
 use std::ops::Range;
 
 /// One line of a chain of equalities: what the step before led to, and by what.
@@ -35,4 +42,157 @@ pub struct ProofText {
     pub lemmas: Vec<LemmaText>,
     /// The chain of the claim.
     pub lines: Vec<ProofLine>,
+}
+
+/// A term in a line of a proof is cut where it is longer than this.
+const LONGEST_LINE: usize = 4_000;
+
+/// The plain terms of one piece of evidence, ready for the printer.
+pub(super) struct Sheet<'t> {
+    signature: &'t Signature,
+    symbols: FxHashMap<String, Symbol>,
+    terms: &'t Terms,
+    bank: Bank,
+    variables: Vec<String>,
+    known: FxHashMap<TermIndex, TermId>,
+}
+
+struct SheetNames<'s> {
+    signature: &'s Signature,
+    variables: &'s [String],
+}
+
+impl Names for SheetNames<'_> {
+    fn symbol(&self, symbol: Symbol) -> SymbolName<'_> {
+        let known = self
+            .signature
+            .symbol(symbol)
+            .expect("evidence has the theory's symbols");
+        SymbolName {
+            name: Cow::Borrowed(&known.name),
+            fixity: known.fixity,
+        }
+    }
+
+    fn variable(&self, variable: Variable) -> Cow<'_, str> {
+        Cow::Borrowed(&self.variables[variable.index as usize])
+    }
+}
+
+impl<'t> Sheet<'t> {
+    pub(super) fn new(theory: &'t Theory, naming: &Naming, terms: &'t Terms) -> Self {
+        let mut bank = Bank::new(1);
+        for info in theory.bank.symbols() {
+            bank.declare(info.clone());
+        }
+        let symbols = naming.symbols.iter().enumerate();
+        Sheet {
+            signature: &theory.signature,
+            symbols: symbols
+                .map(|(n, name)| (name.clone(), Symbol(n as u32)))
+                .collect(),
+            terms,
+            bank,
+            variables: Vec::new(),
+            known: FxHashMap::default(),
+        }
+    }
+
+    pub(super) fn proof(&mut self, proof: &proof::Proof) -> ProofText {
+        let lemmas = proof.lemmas.iter().map(|lemma| LemmaText {
+            name: self.terms.text(lemma.equation.name).to_owned(),
+            equation: self.equation(lemma.equation.left, lemma.equation.right),
+            lines: self.chain(lemma.equation.left, &lemma.steps),
+        });
+        ProofText {
+            lemmas: lemmas.collect(),
+            lines: self.chain(proof.claim.left, &proof.claim.steps),
+        }
+    }
+
+    pub(super) fn chain(&mut self, left: TermIndex, steps: &[proof::Step]) -> Vec<ProofLine> {
+        let first = ProofLine {
+            text: self.text(left),
+            changed: None,
+            by: String::new(),
+            backward: false,
+            at: Vec::new(),
+        };
+        let rest: Vec<ProofLine> = steps.iter().map(|step| self.line(step)).collect();
+        std::iter::once(first).chain(rest).collect()
+    }
+
+    fn line(&mut self, step: &proof::Step) -> ProofLine {
+        let term = self.term(step.to);
+        let names = SheetNames {
+            signature: self.signature,
+            variables: &self.variables,
+        };
+        let printer = Printer::new(&names).limit(LONGEST_LINE);
+        let printed = printer.print(&self.bank, term, Some(&step.at));
+        ProofLine {
+            text: printed.text,
+            changed: printed.highlight,
+            by: self.terms.text(step.by).to_owned(),
+            backward: step.way == Way::Backward,
+            at: step.at.iter().map(|place| place + 1).collect(),
+        }
+    }
+
+    pub(super) fn equation(&mut self, left: TermIndex, right: TermIndex) -> String {
+        format!("{} = {}", self.text(left), self.text(right))
+    }
+
+    pub(super) fn text(&mut self, term: TermIndex) -> String {
+        let term = self.term(term);
+        let names = SheetNames {
+            signature: self.signature,
+            variables: &self.variables,
+        };
+        Printer::new(&names)
+            .limit(LONGEST_LINE)
+            .term(&self.bank, term)
+    }
+
+    fn term(&mut self, term: TermIndex) -> TermId {
+        let mut stack = vec![term];
+        let mut arguments = Vec::new();
+        while let Some(&top) = stack.last() {
+            if self.known.contains_key(&top) {
+                stack.pop();
+                continue;
+            }
+            let made = match self.terms.node(top) {
+                Node::Variable(name) => self.variable(name),
+                Node::Apply(name, below) => {
+                    let before = stack.len();
+                    stack.extend(below.iter().filter(|a| !self.known.contains_key(a)));
+                    if stack.len() > before {
+                        continue;
+                    }
+                    arguments.clear();
+                    arguments.extend(below.iter().map(|a| self.known[a]));
+                    let symbol = self.symbols[self.terms.text(name)];
+                    self.bank.apply(symbol, &arguments)
+                }
+            };
+            self.known.insert(top, made);
+            stack.pop();
+        }
+        self.known[&term]
+    }
+
+    /// Sorts do not matter for printing.
+    fn variable(&mut self, name: Name) -> TermId {
+        let name = self.terms.text(name);
+        let index = self.variables.iter().position(|known| known == name);
+        let index = index.unwrap_or_else(|| {
+            self.variables.push(name.to_owned());
+            self.variables.len() - 1
+        });
+        self.bank.variable(Variable {
+            index: index as u32,
+            sort: Sort(0),
+        })
+    }
 }

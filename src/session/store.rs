@@ -1,7 +1,12 @@
 //! Opening and saving.
 
+use super::library::{Found, built_in_source, is_path};
+use super::runner::Runner;
+use super::workers::Workers;
 use super::{Library, Session};
-use crate::language::Diagnostic;
+use crate::language::{Diagnostic, decode, read_theory, set_derived, set_order};
+use crate::theory::Derived;
+use std::io::Write;
 use std::path::{Path, PathBuf};
 
 /// What opening a theory has brought.
@@ -44,14 +49,139 @@ pub enum SaveFault {
 impl Session {
     /// Opens a theory by name, or by path if `name` has a separator or an ending.
     pub fn open(name: &str, library: Library) -> Result<Opened, OpenFault> {
-        let _ = (name, library);
-        todo!()
+        let (source, text, path) = match library.find(name, None) {
+            None if Path::new(name).is_dir() => return Err(OpenFault::Folder(name.into())),
+            None => {
+                let close = library.close(name);
+                return Err(OpenFault::Missing {
+                    name: name.to_owned(),
+                    close,
+                });
+            }
+            Some(Found::BuiltIn(name, text)) => (built_in_source(name), text.to_owned(), None),
+            Some(Found::File(path)) => {
+                if path.is_dir() {
+                    return Err(OpenFault::Folder(path));
+                }
+                let source = path.display().to_string();
+                let bytes =
+                    std::fs::read(&path).map_err(|error| OpenFault::System(path.clone(), error))?;
+                let text = decode(&source, bytes).map_err(|fault| OpenFault::Text(vec![fault]))?;
+                (source, text, Some(path))
+            }
+        };
+        let theory = read_theory(&source, &text, &library).map_err(OpenFault::Text)?;
+        let mut session = Session::with(theory, path, library);
+        let (derived, refused) = session.take_derived();
+        Ok(Opened {
+            session,
+            derived,
+            refused,
+        })
+    }
+
+    /// Verifies the derived rules of the file by deriving each again, and begins with them.
+    fn take_derived(&mut self) -> (usize, Vec<Diagnostic>) {
+        let mut refused: Vec<Diagnostic> = self
+            .theory
+            .refused
+            .iter()
+            .map(|(_, fault)| fault.clone())
+            .collect();
+        let (Some(setting), false) = (&self.theory.order, self.theory.derived.is_empty()) else {
+            return (0, refused);
+        };
+        let Ok(mut runner) = Runner::new(&self.theory, setting.clone(), STATED) else {
+            return (0, refused);
+        };
+        let mut taken = 0;
+        for (rule, result) in runner.take_derived(&self.theory) {
+            match result {
+                Ok(()) => taken += 1,
+                Err(why) => {
+                    let help = "take the line out; completing again derives the rule anew";
+                    refused.push(self.theory.diagnostic(rule.line, &why, help));
+                }
+            }
+        }
+        self.workers = Workers::begin_with(runner);
+        (taken, refused)
     }
 
     /// Saves to a file, or to where the theory came from: laws, claims, order and derived rules.
     /// Atomic: the file is whole, old or new, whatever happens. Returns the path.
     pub fn save(&mut self, path: Option<&Path>) -> Result<PathBuf, SaveFault> {
-        let _ = path;
-        todo!()
+        let path = match path.or(self.path.as_deref()) {
+            Some(path) => path.to_owned(),
+            None => return Err(SaveFault::NoPath),
+        };
+        self.store_derived();
+        let text = self.theory.document.text();
+        write_atomically(&path, &text).map_err(|error| SaveFault::System(path.clone(), error))?;
+        self.saved_text = text;
+        self.theory.source = path.display().to_string();
+        self.path = Some(path.clone());
+        Ok(path)
     }
+
+    /// The path that a name typed after `save` means: a name without ending gets the usual one.
+    pub fn save_path(name: &str) -> PathBuf {
+        if is_path(name) {
+            PathBuf::from(name)
+        } else {
+            PathBuf::from(format!("{name}.{}", super::library::ENDING))
+        }
+    }
+
+    /// Writes the derived rules, with the order that they decrease in, into the document.
+    fn store_derived(&mut self) {
+        let Some(runner) = self.workers.best_ref() else {
+            return;
+        };
+        if !runner.is_current(&self.theory) || !self.workers.is_of(self.lineage) {
+            return;
+        }
+        let setting = runner.setting.clone();
+        let derived: Vec<Derived> = runner.derived(&mut self.theory.bank, &self.theory.laws);
+        if self.theory.order.is_none() {
+            set_order(&mut self.theory, Some(setting));
+        }
+        set_derived(&mut self.theory, derived);
+    }
+}
+
+const STATED: &str = "is the one that was stated";
+
+/// Writes a file by way of a temporary file in the same folder, flushed and renamed. A device or
+/// pipe is written to as it is.
+fn write_atomically(path: &Path, text: &str) -> std::io::Result<()> {
+    // A link is followed, so that it stays one.
+    let path = &path.canonicalize().unwrap_or_else(|_| path.to_owned());
+    let known = std::fs::metadata(path);
+    if known.as_ref().is_ok_and(|file| !file.is_file()) {
+        let mut file = std::fs::OpenOptions::new().write(true).open(path)?;
+        file.write_all(text.as_bytes())?;
+        return file.flush();
+    }
+    let folder = path
+        .parent()
+        .filter(|folder| !folder.as_os_str().is_empty());
+    let folder = folder.unwrap_or(Path::new("."));
+    let mut file = tempfile::Builder::new()
+        .prefix(".equable-")
+        .tempfile_in(folder)?;
+    file.write_all(text.as_bytes())?;
+    if let Ok(known) = known {
+        if known.permissions().readonly() {
+            return Err(std::io::Error::from(std::io::ErrorKind::PermissionDenied));
+        }
+        file.as_file().set_permissions(known.permissions())?;
+    }
+    file.as_file().sync_all()?;
+    file.persist(path).map_err(|error| error.error)?;
+    // The name is safe once the folder is; where that cannot be asked for, it is left to the system.
+    if let Ok(folder) = std::fs::File::open(folder) {
+        let _ = folder.sync_all();
+    }
+    Ok(())
 }

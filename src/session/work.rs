@@ -1,29 +1,115 @@
 //! Completing, normal forms, traces and proofs.
 
-use super::control::Control;
-use super::{Answer, Completion, NormalForm, ProofLine, ProofText, Session, SessionFault};
+use super::control::{Control, Work};
+use super::sheet::Sheet;
+use super::workers::Ended;
+use super::{
+    Answer, Completion, NormalForm, ProgramFault, ProofLine, ProofText, Session, SessionFault,
+};
+use crate::language::print_order;
+use crate::proof::{self, Evidence};
+use crate::rewrite::Stopped;
 use crate::term::TermId;
-use std::time::Duration;
+use std::time::{Duration, Instant};
+
+/// A trace of more numbers than this is not written down.
+const LONGEST_TRACE: usize = 200_000;
 
 impl Session {
     /// Saturates within a time, or without end until stopped from outside.
+    ///
+    /// A rule set is called complete only after the checker has accepted it.
     pub fn complete(
         &mut self,
         within: Option<Duration>,
         control: &mut Control,
     ) -> Result<Completion, SessionFault> {
-        let _ = (within, control);
-        todo!()
+        let begun = Instant::now();
+        self.workers.catch_up(&self.theory, self.lineage)?;
+        let formed = self.workers.formed();
+        let mut work = Work::new(control, "completing", within).formed_before(formed);
+        let ended = self.workers.run(&self.theory, None, &mut work)?;
+        let (stopped, remark) = match ended {
+            Ended::Complete(_) | Ended::Met(_) => (None, None),
+            Ended::Exhausted => (None, Some(TOO_LARGE.to_owned())),
+            Ended::Stopped(stopped) => (Some(stopped), None),
+        };
+        let tried = self.workers.tried();
+        let runner = self.workers.best().expect("there is an engine after a run");
+        let engine = &runner.engine;
+        let rules = engine.system.active();
+        let oriented = engine
+            .active_rules()
+            .filter(|id| engine.system.rule(*id).oriented)
+            .count();
+        let mut completion = Completion {
+            complete: false,
+            ordered: oriented < rules,
+            rules,
+            oriented,
+            pairs: engine.counts().formed,
+            waiting: engine.waiting(),
+            elapsed: Duration::ZERO,
+            order: print_order(&self.theory.signature, &runner.setting),
+            why: runner.why.to_owned(),
+            orders: tried,
+            stopped,
+            remark,
+            fault: None,
+        };
+        if let Ended::Complete(_) = ended {
+            let set = runner.complete_set(None).map(Evidence::Complete);
+            self.accept(set, &mut completion);
+        }
+        completion.elapsed = begun.elapsed();
+        Ok(completion)
     }
 
     /// The normal form of a term by the rules as they stand; it becomes `it`.
+    ///
+    /// When it is stopped, the text is that of the term itself.
     pub fn normal(
         &mut self,
         term: TermId,
         control: &mut Control,
     ) -> Result<NormalForm, SessionFault> {
-        let _ = (term, control);
-        todo!()
+        let begun = Instant::now();
+        self.workers.catch_up(&self.theory, self.lineage)?;
+        self.digest(control);
+        let work = Work::new(control, "rewriting", None);
+        let runner = self
+            .workers
+            .best()
+            .expect("there is an engine after catching up");
+        let asked = runner.ask(&self.theory, term, term);
+        let normal = runner.normal_form(asked.left, &mut work.limits(None));
+        let complete = runner.engine.is_complete();
+        let (found, steps, stopped) = match normal {
+            Ok(normal) => {
+                let steps = runner.engine.system.count_steps(asked.left, normal);
+                let back = runner.term_back(&mut self.theory, normal, &asked.variables);
+                (back, steps, None)
+            }
+            Err(stopped) => (term, None, Some(stopped)),
+        };
+        self.it = Some(found);
+        Ok(NormalForm {
+            text: self.term_text(found),
+            term: self.term_text(term),
+            steps,
+            elapsed: begun.elapsed(),
+            complete,
+            stopped,
+        })
+    }
+
+    /// Laws that were just stated become rules before they are used to rewrite, which takes no
+    /// search: each is oriented and the others are simplified by it.
+    pub(super) fn digest(&mut self, control: &mut Control) {
+        let work = Work::new(control, "taking in the laws", Some(DIGEST));
+        if let Some(runner) = self.workers.best() {
+            runner.engine.digest(&mut work.limits(None));
+        }
     }
 
     /// The chain from a term to its normal form, the term itself first.
@@ -32,13 +118,49 @@ impl Session {
         term: TermId,
         control: &mut Control,
     ) -> Result<Vec<ProofLine>, SessionFault> {
-        let _ = (term, control);
-        todo!()
+        self.workers.catch_up(&self.theory, self.lineage)?;
+        self.digest(control);
+        let work = Work::new(control, "rewriting", None);
+        let runner = self
+            .workers
+            .best()
+            .expect("there is an engine after catching up");
+        let asked = runner.ask(&self.theory, term, term);
+        let normal = runner.normal_form(asked.left, &mut work.limits(None));
+        let normal = normal.map_err(SessionFault::Stopped)?;
+        let chain = runner
+            .trace(&asked, normal, LONGEST_TRACE)
+            .ok_or(SessionFault::Stopped(Stopped::Memory))?;
+        let mut sheet = Sheet::new(&self.theory, &runner.naming, &chain.terms);
+        Ok(sheet.chain(chain.claim.left, &chain.claim.steps))
     }
 
     /// The proof of an answer as text, if it is `equal`.
     pub fn proof_text(&self, answer: &Answer) -> Option<ProofText> {
-        let _ = answer;
-        todo!()
+        let Some(Evidence::Proof(proof)) = &answer.evidence else {
+            return None;
+        };
+        let naming = super::runner::naming(&self.theory);
+        Some(Sheet::new(&self.theory, &naming, &proof.terms).proof(proof))
+    }
+
+    fn accept(&self, evidence: Option<Evidence>, completion: &mut Completion) {
+        let Some(evidence) = evidence else {
+            completion.remark = Some("the evidence could not be written down".to_owned());
+            return;
+        };
+        match self.verify(&evidence, None) {
+            proof::Outcome::Accepted => completion.complete = true,
+            proof::Outcome::TooCostly => {
+                completion.remark =
+                    Some("no pair is left, but the rule set is too costly to check".to_owned());
+            }
+            proof::Outcome::Rejected { place, reason } => {
+                completion.fault = Some((ProgramFault { place, reason }, evidence));
+            }
+        }
     }
 }
+
+const TOO_LARGE: &str = "some pairs were too large to keep, so completeness cannot be claimed";
+const DIGEST: Duration = Duration::from_millis(200);

@@ -93,6 +93,7 @@ pub struct Signature {
     meanings: FxHashMap<String, Meaning>,
     longest: usize,
     has_hash: bool,
+    has_implicit: bool,
 }
 
 impl Default for Signature {
@@ -104,6 +105,7 @@ impl Default for Signature {
             meanings: FxHashMap::default(),
             longest: 0,
             has_hash: false,
+            has_implicit: false,
         }
     }
 }
@@ -230,6 +232,7 @@ impl Signature {
         if index >= Variable::LIMIT {
             return Err(SignatureFull);
         }
+        self.has_implicit |= implicit;
         if !implicit {
             self.enter(name).variable = Some(index);
         }
@@ -260,6 +263,9 @@ impl Signature {
 
     /// Renames the implicit variable of this name, if there is one.
     fn make_way(&mut self, name: &str) {
+        if !self.has_implicit {
+            return;
+        }
         let same = |v: &VariableDeclaration| v.implicit && v.name == name;
         if let Some(place) = self.variables.iter().position(same) {
             let fresh = self.fresh_name(&mut 1, |other| other == name);

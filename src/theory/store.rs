@@ -4,6 +4,7 @@ use super::{Claim, Derived, Document, Law, LineId, Signature, SignatureFull, Sym
 use crate::language::Diagnostic;
 use crate::order::OrderSetting;
 use crate::term::{Bank, Symbol, SymbolInfo};
+use rustc_hash::FxHashSet;
 
 /// Everything that a theory file says.
 ///
@@ -40,6 +41,8 @@ pub struct Theory {
     pub name_line: Option<LineId>,
     /// The line that sets the order.
     pub order_line: Option<LineId>,
+    /// The names of laws and claims, for looking up.
+    pub(crate) names: FxHashSet<String>,
     /// The number that the next law without a name gets; it only grows.
     pub next_law: u32,
 }
@@ -61,6 +64,7 @@ impl Default for Theory {
             used: Vec::new(),
             name_line: None,
             order_line: None,
+            names: FxHashSet::default(),
             next_law: 1,
         }
     }
@@ -78,6 +82,23 @@ impl Theory {
         let same = self.bank.declare(info);
         debug_assert_eq!(symbol, same);
         Ok(symbol)
+    }
+
+    /// Is there a law or claim of this name?
+    pub fn is_named(&self, name: &str) -> bool {
+        self.names.contains(name)
+    }
+
+    /// Adds a law, whose name must be free.
+    pub(crate) fn push_law(&mut self, law: Law) {
+        self.names.insert(law.name.clone());
+        self.laws.push(law);
+    }
+
+    /// Adds a claim, whose name, if it has one, must be free.
+    pub(crate) fn push_claim(&mut self, claim: Claim) {
+        self.names.extend(claim.name.clone());
+        self.claims.push(claim);
     }
 
     /// The law of this name.

@@ -115,6 +115,60 @@ fn inverses_without_a_unit() {
 }
 
 #[test]
+fn exclusive_or_is_ground_complete() {
+    let set = laws_only(
+        &[
+            ("p(p(x,y),z)", "p(x,p(y,z))", true),
+            ("p(x,y)", "p(y,x)", false),
+            ("p(x,p(y,z))", "p(y,p(x,z))", false),
+            ("p(x,x)", "o()", true),
+            ("p(x,p(x,y))", "y", true),
+            ("p(o(),x)", "x", true),
+            ("p(x,o())", "x", true),
+        ],
+        &[("p", 1), ("o", 1)],
+    );
+    let set = claiming(set, ["p(z,p(x,p(y,z)))", "y"], ["p(x,y)", "y"]);
+    accepted(Evidence::Complete(set.clone()));
+    let mut less = set;
+    less.rules.remove(4);
+    assert!(!judge(Evidence::Complete(less)).is_accepted());
+}
+
+/// Boolean rings: with two commutative operators and distributivity the cases go up to five
+/// variables.
+#[test]
+fn boolean_rings_are_ground_complete() {
+    let laws = [
+        ("p(p(x,y),z)", "p(x,p(y,z))", true),
+        ("p(x,y)", "p(y,x)", false),
+        ("p(x,p(y,z))", "p(y,p(x,z))", false),
+        ("p(x,x)", "o()", true),
+        ("p(x,p(x,y))", "y", true),
+        ("p(o(),x)", "x", true),
+        ("p(x,o())", "x", true),
+        ("m(m(x,y),z)", "m(x,m(y,z))", true),
+        ("m(x,y)", "m(y,x)", false),
+        ("m(x,m(y,z))", "m(y,m(x,z))", false),
+        ("m(x,x)", "x", true),
+        ("m(x,m(x,y))", "m(x,y)", true),
+        ("m(o(),x)", "o()", true),
+        ("m(x,o())", "o()", true),
+        ("m(x,p(y,z))", "p(m(x,y),m(x,z))", true),
+        ("m(p(x,y),z)", "p(m(x,z),m(y,z))", true),
+    ];
+    let mut set = laws_only(&laws, &[("m", 1), ("p", 1), ("o", 1)]);
+    set.order.kind = OrderKind::LexicographicPath;
+    set.order.weights.clear();
+    let set = claiming(
+        set,
+        ["m(p(x,y),p(x,y))", "p(x,p(y,m(x,y)))"],
+        ["p(x,y)", "p(x,p(y,m(x,y)))"],
+    );
+    accepted(Evidence::Complete(set));
+}
+
+#[test]
 fn equal_elements_collapse() {
     let set = laws_only(&[("x", "y", false)], &[("a", 1)]);
     let same = claiming(set.clone(), ["x", "y"], ["x", "y"]);

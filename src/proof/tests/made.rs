@@ -108,6 +108,9 @@ pub fn step(terms: &Terms, equation: &Equation, way: Way, from: TermIndex, to: T
     }
 }
 
+/// Name, sides and steps of a lemma, as for [`lemma`].
+type LemmaText<'a> = (&'a str, [&'a str; 2], &'a [(&'a str, &'a str)]);
+
 /// A lemma; each step is an equation's name, with `-` before it if used backward, and the term.
 pub fn lemma(
     terms: &mut Terms,
@@ -137,11 +140,7 @@ pub fn lemma(
     Lemma { equation, steps }
 }
 
-fn all_lemmas(
-    terms: &mut Terms,
-    laws: &[Equation],
-    texts: &[(&str, [&str; 2], &[(&str, &str)])],
-) -> Vec<Lemma> {
+fn all_lemmas(terms: &mut Terms, laws: &[Equation], texts: &[LemmaText<'_>]) -> Vec<Lemma> {
     let mut known = laws.to_vec();
     let mut lemmas = Vec::new();
     for (name, sides, chain) in texts {
@@ -199,7 +198,7 @@ pub fn groups(kind: OrderKind) -> CompleteSet {
     }
 }
 
-const GROUP_LEMMAS: &[(&str, [&str; 2], &[(&str, &str)])] = &[
+const GROUP_LEMMAS: &[LemmaText<'static>] = &[
     (
         "cancel",
         ["m(i(x),m(x,y))", "y"],
@@ -312,7 +311,7 @@ pub fn semilattice(kind: OrderKind) -> CompleteSet {
     }
 }
 
-const SEMILATTICE_LEMMAS: &[(&str, [&str; 2], &[(&str, &str)])] = &[
+const SEMILATTICE_LEMMAS: &[LemmaText<'static>] = &[
     (
         "idem inside",
         ["m(x,m(x,y))", "m(x,y)"],
