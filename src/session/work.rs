@@ -25,6 +25,7 @@ impl Session {
         control: &mut Control,
     ) -> Result<Completion, SessionFault> {
         let begun = Instant::now();
+        self.completed = true;
         self.workers.catch_up(&self.theory, self.lineage)?;
         let formed = self.workers.formed();
         let mut work = Work::new(control, "completing", within).formed_before(formed);
