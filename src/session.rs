@@ -15,6 +15,7 @@ mod library;
 mod runner;
 mod sheet;
 mod store;
+mod subject;
 mod view;
 mod work;
 mod workers;
@@ -52,6 +53,8 @@ pub struct Session {
     undo: Vec<change::Snapshot>,
     redo: Vec<change::Snapshot>,
     library: Library,
+    /// Changes when terms of the theory's bank may have got other ids.
+    lineage: u32,
 }
 
 /// How long things may take that are not told a time.
@@ -117,6 +120,7 @@ impl Session {
             undo: Vec::new(),
             redo: Vec::new(),
             library,
+            lineage: 0,
         }
     }
 

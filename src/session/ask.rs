@@ -2,6 +2,7 @@
 
 use super::control::{Control, Work};
 use super::sheet::Sheet;
+use super::subject::is_about;
 use super::workers::Ended;
 use super::{Answer, By, Frontier, ProgramFault, Session, SessionFault, Verdict};
 use crate::proof::{self, Evidence, WorkLimit};
@@ -10,7 +11,7 @@ use crate::term::TermId;
 use std::time::{Duration, Instant};
 
 /// How much checking one answer's evidence may take; see [`WorkLimit`].
-pub(super) const CHECK_LIMIT: WorkLimit = WorkLimit(200_000_000);
+const CHECK_LIMIT: WorkLimit = WorkLimit(200_000_000);
 
 /// What a rung has shown, before its evidence is checked.
 enum Shown {
@@ -32,7 +33,7 @@ impl Session {
         control: &mut Control,
     ) -> Result<&Answer, SessionFault> {
         let begun = Instant::now();
-        self.workers.catch_up(&self.theory)?;
+        self.workers.catch_up(&self.theory, self.lineage)?;
         let formed = self.workers.formed();
         let mut work =
             Work::new(control, "looking for a proof", Some(budget)).formed_before(formed);
@@ -60,7 +61,7 @@ impl Session {
             outdated: false,
         };
         let check_begun = Instant::now();
-        let remark = self.judge(shown, &mut answer, interrupted);
+        let remark = self.judge(shown, (left, right), &mut answer);
         answer.checking = check_begun.elapsed();
         if answer.verdict == Verdict::NotEqual {
             answer.normal = self.normal_texts(answer.evidence.as_ref());
@@ -134,7 +135,12 @@ impl Session {
 
     /// Has the evidence checked; only then the answer has a verdict. Returns what stands in the
     /// way otherwise.
-    fn judge(&self, shown: Shown, answer: &mut Answer, interrupted: bool) -> Option<String> {
+    fn judge(
+        &self,
+        shown: Shown,
+        question: (TermId, TermId),
+        answer: &mut Answer,
+    ) -> Option<String> {
         let (verdict, by, evidence) = match shown {
             Shown::Equal(by, evidence) => (Verdict::Equal, by, evidence),
             Shown::NotEqual(evidence) => (Verdict::NotEqual, By::Complete, evidence),
@@ -147,8 +153,7 @@ impl Session {
         let Some(evidence) = evidence else {
             return Some("the evidence would be too large to write down and check".to_owned());
         };
-        let _ = interrupted;
-        match proof::check(&evidence, CHECK_LIMIT) {
+        match self.verify(&evidence, Some(question)) {
             proof::Outcome::Accepted => {
                 answer.verdict = verdict;
                 answer.by = Some(by);
@@ -162,6 +167,21 @@ impl Session {
                 answer.fault = Some((ProgramFault { place, reason }, evidence));
                 Some("the checker rejected the evidence: a fault of this program".to_owned())
             }
+        }
+    }
+
+    /// Is the evidence about the theory and the question, and accepted by the checker?
+    pub(super) fn verify(
+        &self,
+        evidence: &Evidence,
+        question: Option<(TermId, TermId)>,
+    ) -> proof::Outcome {
+        match is_about(&self.theory, evidence, question) {
+            Ok(()) => proof::check(evidence, CHECK_LIMIT),
+            Err(reason) => proof::Outcome::Rejected {
+                place: "laws and claim".to_owned(),
+                reason,
+            },
         }
     }
 

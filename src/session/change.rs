@@ -128,6 +128,7 @@ impl Session {
             it: std::mem::replace(&mut self.it, snapshot.it),
             line: snapshot.line,
         };
+        self.lineage += 1;
         self.outdate();
         now
     }

@@ -8,6 +8,7 @@ use crate::rewrite::{Limits, RuleId};
 use crate::term::{Copier, Sort, TermId, Variable};
 use crate::theory::Theory;
 use rustc_hash::FxHashMap;
+use std::rc::Rc;
 
 /// A question in an engine: ground terms, in which constants stand for the variables.
 #[derive(Clone, Debug)]
@@ -27,6 +28,8 @@ pub(super) struct Runner {
     /// The theory's terms in the engine's bank.
     copier: Copier,
     symbols: usize,
+    /// The last question, as sides in the theory's bank, since the last time of catching up.
+    asked: Option<((TermId, TermId), Rc<Asked>)>,
     /// The laws that the engine has, as sides in the theory's bank.
     laws: Vec<(String, TermId, TermId)>,
 }
@@ -46,6 +49,7 @@ impl Runner {
             naming: naming(theory),
             copier: Copier::default(),
             symbols: symbols.len(),
+            asked: None,
             laws: Vec::new(),
         };
         runner.add_laws(theory);
@@ -58,6 +62,7 @@ impl Runner {
             return false;
         }
         self.naming = naming(theory);
+        self.asked = None;
         self.add_laws(theory);
         true
     }
@@ -97,7 +102,17 @@ impl Runner {
 
     /// A question in the engine. The constants for its variables are in the order of the alphabet,
     /// the earlier the smaller.
-    pub(super) fn ask(&mut self, theory: &Theory, left: TermId, right: TermId) -> Asked {
+    pub(super) fn ask(&mut self, theory: &Theory, left: TermId, right: TermId) -> Rc<Asked> {
+        let sides = (left, right);
+        if let Some((_, asked)) = self.asked.as_ref().filter(|(known, _)| *known == sides) {
+            return asked.clone();
+        }
+        let asked = Rc::new(self.ask_anew(theory, left, right));
+        self.asked = Some((sides, asked.clone()));
+        asked
+    }
+
+    fn ask_anew(&mut self, theory: &Theory, left: TermId, right: TermId) -> Asked {
         let mut variables = theory.bank.variables(left);
         variables.extend(theory.bank.variables(right));
         let name = |v: &Variable| theory.signature.variables()[v.index as usize].name.as_str();

@@ -138,7 +138,7 @@ impl Session {
         let Some(runner) = self.workers.best_ref() else {
             return;
         };
-        if !runner.is_current(&self.theory) {
+        if !runner.is_current(&self.theory) || !self.workers.is_of(self.lineage) {
             return;
         }
         let setting = runner.setting.clone();

@@ -222,6 +222,7 @@ impl Session {
         self.workers
             .best_ref()
             .is_some_and(|r| r.is_current(&self.theory) && r.engine.is_complete())
+            && self.workers.is_of(self.lineage)
     }
 
     /// Where a rule comes from, as proof text: its own chain last, the rules that it rests on

@@ -1,6 +1,5 @@
 //! Completing, normal forms, traces and proofs.
 
-use super::ask::CHECK_LIMIT;
 use super::control::{Control, Work};
 use super::sheet::Sheet;
 use super::workers::Ended;
@@ -26,7 +25,7 @@ impl Session {
         control: &mut Control,
     ) -> Result<Completion, SessionFault> {
         let begun = Instant::now();
-        self.workers.catch_up(&self.theory)?;
+        self.workers.catch_up(&self.theory, self.lineage)?;
         let formed = self.workers.formed();
         let mut work = Work::new(control, "completing", within).formed_before(formed);
         let ended = self.workers.run(&self.theory, None, &mut work)?;
@@ -59,10 +58,8 @@ impl Session {
             fault: None,
         };
         if let Ended::Complete(_) = ended {
-            accept(
-                runner.complete_set(None).map(Evidence::Complete),
-                &mut completion,
-            );
+            let set = runner.complete_set(None).map(Evidence::Complete);
+            self.accept(set, &mut completion);
         }
         completion.elapsed = begun.elapsed();
         Ok(completion)
@@ -77,7 +74,7 @@ impl Session {
         control: &mut Control,
     ) -> Result<NormalForm, SessionFault> {
         let begun = Instant::now();
-        self.workers.catch_up(&self.theory)?;
+        self.workers.catch_up(&self.theory, self.lineage)?;
         self.digest(control);
         let work = Work::new(control, "rewriting", None);
         let runner = self
@@ -121,7 +118,7 @@ impl Session {
         term: TermId,
         control: &mut Control,
     ) -> Result<Vec<ProofLine>, SessionFault> {
-        self.workers.catch_up(&self.theory)?;
+        self.workers.catch_up(&self.theory, self.lineage)?;
         self.digest(control);
         let work = Work::new(control, "rewriting", None);
         let runner = self
@@ -146,24 +143,24 @@ impl Session {
         let naming = super::runner::naming(&self.theory);
         Some(Sheet::new(&self.theory, &naming, &proof.terms).proof(proof))
     }
+
+    fn accept(&self, evidence: Option<Evidence>, completion: &mut Completion) {
+        let Some(evidence) = evidence else {
+            completion.remark = Some("the evidence could not be written down".to_owned());
+            return;
+        };
+        match self.verify(&evidence, None) {
+            proof::Outcome::Accepted => completion.complete = true,
+            proof::Outcome::TooCostly => {
+                completion.remark =
+                    Some("no pair is left, but the rule set is too costly to check".to_owned());
+            }
+            proof::Outcome::Rejected { place, reason } => {
+                completion.fault = Some((ProgramFault { place, reason }, evidence));
+            }
+        }
+    }
 }
 
 const TOO_LARGE: &str = "some pairs were too large to keep, so completeness cannot be claimed";
 const DIGEST: Duration = Duration::from_millis(200);
-
-fn accept(evidence: Option<Evidence>, completion: &mut Completion) {
-    let Some(evidence) = evidence else {
-        completion.remark = Some("the evidence could not be written down".to_owned());
-        return;
-    };
-    match proof::check(&evidence, CHECK_LIMIT) {
-        proof::Outcome::Accepted => completion.complete = true,
-        proof::Outcome::TooCostly => {
-            completion.remark =
-                Some("no pair is left, but the rule set is too costly to check".to_owned());
-        }
-        proof::Outcome::Rejected { place, reason } => {
-            completion.fault = Some((ProgramFault { place, reason }, evidence));
-        }
-    }
-}

@@ -5,7 +5,7 @@
 //! questions are settled by an order that never completes, so all engines take part in a search.
 
 use super::control::Work;
-use super::runner::{Asked, Runner};
+use super::runner::Runner;
 use crate::engine::Outcome;
 use crate::order::{Candidate, OrderSetting, candidates};
 use crate::rewrite::Stopped;
@@ -53,11 +53,19 @@ pub(super) struct Workers {
     slice: Option<Duration>,
     /// Did one complete?
     settled: bool,
+    /// Which ids the terms of the theory had when the engines took them in.
+    lineage: u32,
 }
 
 impl Workers {
     /// Engines for the theory as it is: those there are, with what was added since, or new ones.
-    pub(super) fn catch_up(&mut self, theory: &Theory) -> Result<(), NoOrder> {
+    pub(super) fn catch_up(&mut self, theory: &Theory, lineage: u32) -> Result<(), NoOrder> {
+        if self.lineage != lineage {
+            *self = Workers {
+                lineage,
+                ..Workers::default()
+            };
+        }
         let laws = self
             .runners
             .first()
@@ -68,7 +76,10 @@ impl Workers {
                 .iter_mut()
                 .all(|runner| runner.catch_up(theory));
         if !kept {
-            *self = Workers::fresh(theory)?;
+            *self = Workers {
+                lineage,
+                ..Workers::fresh(theory)?
+            };
         } else if laws
             != self
                 .runners
@@ -146,6 +157,11 @@ impl Workers {
         self.runners.push(runner.map_err(NoOrder::Stated)?);
         self.tried += 1;
         Ok(true)
+    }
+
+    /// Have the terms of the theory the ids that they had for the engines?
+    pub(super) fn is_of(&self, lineage: u32) -> bool {
+        self.lineage == lineage
     }
 
     /// The engine that answers.
@@ -231,9 +247,9 @@ impl Workers {
         let mut limits = work.limits((!alone).then_some(slice));
         let all = self.formed();
         let runner = &mut self.runners[place];
-        let asked: Option<Asked> = question.map(|(s, t)| runner.ask(theory, s, t));
+        let asked = question.map(|(s, t)| runner.ask(theory, s, t));
         let others = all - runner.engine.counts().formed;
-        let sides = asked.map(|asked| (asked.left, asked.right));
+        let sides = asked.as_ref().map(|asked| (asked.left, asked.right));
         runner
             .engine
             .run(&mut limits, sides, |engine| work.tell(engine, others))
