@@ -1,3 +1,5 @@
 //! The `equable` program.
 
-fn main() {}
+fn main() -> std::process::ExitCode {
+    equable::shell::main()
+}

@@ -10,6 +10,7 @@ mod counts;
 mod id;
 mod matching;
 mod position;
+mod slots;
 mod substitution;
 mod unify;
 

@@ -122,13 +122,13 @@ impl Order {
         self.variable_weight
     }
 
-    /// A number for a constant that is larger for a greater constant, over all constants.
-    pub fn constant_key(&self, constant: Symbol) -> u128 {
+    /// Two numbers by which constants compare, the first one first; no two constants share both.
+    pub fn constant_key(&self, constant: Symbol) -> (u32, u64) {
         let weight = match self.kind {
             OrderKind::Kbo => self.weights[constant.index()],
             OrderKind::Lpo => 0,
         };
-        u128::from(weight) << 64 | u128::from(self.ranks[constant.index()])
+        (weight, self.ranks[constant.index()])
     }
 
     /// Is the first symbol above the second in the precedence?

@@ -199,7 +199,9 @@ fn rebuild(
             continue;
         }
         for part in &mut parts {
-            *part = known.get(part).copied().unwrap_or(*part);
+            if !bank.arguments(*part).is_empty() {
+                *part = known[part];
+            }
         }
         let made = if is_ac(symbol) {
             sort(bank, &mut parts);
@@ -232,10 +234,27 @@ fn flatten(bank: &Bank, symbol: Symbol, term: TermId, parts: &mut Vec<TermId>) {
 
 /// Sorts ground terms, least first.
 fn sort(bank: &Bank, order: &Order, parts: &mut [TermId]) {
-    let constant = |t: &TermId| bank.arguments(*t).is_empty() && bank.is_ground(*t);
-    if parts.iter().all(constant) {
-        let key = |t: &TermId| bank.as_symbol(*t).map_or(0, |s| order.constant_key(s));
-        parts.sort_by_cached_key(key);
+    let mut keyed: Vec<(u64, TermId)> = Vec::with_capacity(parts.len());
+    let mut weight = None;
+    for &part in parts.iter() {
+        let symbol = bank
+            .as_symbol(part)
+            .filter(|_| bank.arguments(part).is_empty());
+        let Some((heavy, rank)) = symbol.map(|symbol| order.constant_key(symbol)) else {
+            break;
+        };
+        if *weight.get_or_insert(heavy) != heavy {
+            break;
+        }
+        keyed.push((rank, part));
+    }
+    if keyed.len() == parts.len() {
+        // Constants of one weight compare by their ranks, which are different numbers.
+        keyed.sort_unstable_by_key(|(rank, _)| *rank);
+        parts
+            .iter_mut()
+            .zip(keyed)
+            .for_each(|(part, (_, sorted))| *part = sorted);
     } else {
         merge_sort(parts, |s, t| {
             order.compare(bank, s, t) == Comparison::Greater

@@ -1,8 +1,7 @@
 //! The bank: every term once.
 
+use super::slots::{Key, Place, Slots};
 use super::{Sort, Symbol, TermId, Variable, VariableCounts};
-use rustc_hash::FxHasher;
-use std::hash::Hasher;
 
 /// What a term begins with.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -29,7 +28,6 @@ struct Node {
     head: u32,
     first: u32,
     arity: u32,
-    hash: u32,
 }
 
 #[derive(Clone, Copy)]
@@ -72,12 +70,8 @@ pub struct Bank {
     nodes: Vec<Node>,
     facts: Vec<Facts>,
     arguments: Vec<TermId>,
-    /// Open addressing with linear probing; `u32::MAX` is free. Ids are removed in the reverse of
-    /// the order in which they came, so that removing never leaves a gap in a probe path.
-    slots: Vec<u32>,
+    slots: Slots,
 }
-
-const FREE: u32 = u32::MAX;
 
 impl Default for Bank {
     fn default() -> Self {
@@ -94,7 +88,7 @@ impl Bank {
             nodes: Vec::new(),
             facts: Vec::new(),
             arguments: Vec::new(),
-            slots: vec![FREE; 256],
+            slots: Slots::default(),
         }
     }
 
@@ -144,9 +138,10 @@ impl Bank {
 
     /// The term with this head and these arguments, if it is in the bank already.
     pub fn find(&self, symbol: Symbol, arguments: &[TermId]) -> Option<TermId> {
-        let hash = hash(symbol.0, arguments);
-        let found = self.slots[self.probe(hash, symbol.0, arguments)];
-        (found != FREE).then_some(TermId(found))
+        match self.search(Key::new(symbol.0, arguments), symbol.0, arguments) {
+            Place::Known(id) => Some(id),
+            Place::Free(..) => None,
+        }
     }
 
     /// What the term begins with.
@@ -275,13 +270,10 @@ impl Bank {
 
     /// Forgets every term that came after the mark.
     pub fn rollback(&mut self, mark: Mark) {
-        let mask = self.slots.len() - 1;
         for id in (mark.nodes..self.nodes.len() as u32).rev() {
-            let mut slot = self.nodes[id as usize].hash as usize & mask;
-            while self.slots[slot] != id {
-                slot = (slot + 1) & mask;
-            }
-            self.slots[slot] = FREE;
+            let id = TermId(id);
+            let key = Key::new(self.nodes[id.index()].head, self.arguments(id));
+            self.slots.remove(key, id);
         }
         self.nodes.truncate(mark.nodes as usize);
         self.facts.truncate(mark.nodes as usize);
@@ -289,44 +281,44 @@ impl Bank {
     }
 
     fn intern(&mut self, head: u32, arguments: &[TermId]) -> TermId {
-        let hash = hash(head, arguments);
-        let slot = self.probe(hash, head, arguments);
-        if self.slots[slot] != FREE {
-            return TermId(self.slots[slot]);
-        }
+        let key = Key::new(head, arguments);
+        let (line, place) = match self.search(key, head, arguments) {
+            Place::Known(id) => return id,
+            Place::Free(line, place) => (line, place),
+        };
         let id = self.nodes.len() as u32;
-        assert!(id < FREE, "a bank holds fewer than 2^32 - 1 terms");
+        assert!(
+            id < TermId::NONE.0,
+            "a bank holds fewer than 2^32 - 1 terms"
+        );
         self.facts.push(self.facts_of(head, arguments));
         self.nodes.push(Node {
             head,
             first: self.arguments.len() as u32,
             arity: arguments.len() as u32,
-            hash,
         });
         self.arguments.extend_from_slice(arguments);
-        self.slots[slot] = id;
-        if self.nodes.len() * 2 > self.slots.len() {
-            self.grow();
+        self.slots.insert(key, line, place, TermId(id));
+        if self.slots.is_full() {
+            let Bank {
+                nodes,
+                arguments,
+                slots,
+                ..
+            } = self;
+            slots.grow(nodes.iter().map(|node| {
+                let end = (node.first + node.arity) as usize;
+                Key::new(node.head, &arguments[node.first as usize..end])
+            }));
         }
         TermId(id)
     }
 
-    /// The slot of this term, or the free slot where it belongs.
     #[inline]
-    fn probe(&self, hash: u32, head: u32, arguments: &[TermId]) -> usize {
-        let mask = self.slots.len() - 1;
-        let mut slot = hash as usize & mask;
-        loop {
-            let id = self.slots[slot];
-            if id == FREE {
-                return slot;
-            }
-            let node = &self.nodes[id as usize];
-            if node.hash == hash && node.head == head && self.arguments(TermId(id)) == arguments {
-                return slot;
-            }
-            slot = (slot + 1) & mask;
-        }
+    fn search(&self, key: Key, head: u32, arguments: &[TermId]) -> Place {
+        self.slots.search(key, |id| {
+            self.nodes[id.index()].head == head && self.arguments(id) == arguments
+        })
     }
 
     fn facts_of(&self, head: u32, arguments: &[TermId]) -> Facts {
@@ -353,30 +345,6 @@ impl Bank {
         }
         facts
     }
-
-    fn grow(&mut self) {
-        let mask = self.slots.len() * 2 - 1;
-        self.slots.clear();
-        self.slots.resize(mask + 1, FREE);
-        for (id, node) in self.nodes.iter().enumerate() {
-            let mut slot = node.hash as usize & mask;
-            while self.slots[slot] != FREE {
-                slot = (slot + 1) & mask;
-            }
-            self.slots[slot] = id as u32;
-        }
-    }
-}
-
-#[inline]
-fn hash(head: u32, arguments: &[TermId]) -> u32 {
-    let mut hasher = FxHasher::default();
-    hasher.write_u32(head);
-    for argument in arguments {
-        hasher.write_u32(argument.0);
-    }
-    let full = hasher.finish();
-    (full ^ (full >> 32)) as u32
 }
 
 #[cfg(test)]

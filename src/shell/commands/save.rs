@@ -1,0 +1,61 @@
+//! `save`, `save FILE`
+
+use super::{Command, Group, Operand};
+use crate::shell::desk::Shell;
+use crate::shell::line::Line;
+use crate::shell::problem::Problem;
+use std::path::Path;
+
+/// The command.
+pub const COMMAND: Command = Command {
+    word: "save",
+    group: Group::Keeping,
+    forms: &[
+        ("save", "write the theory to its file"),
+        ("save FILE", "write it to this file, which is then its file"),
+    ],
+    page: "Writes the laws, the claims and the order as they were typed, with remarks and blank \
+           lines where they were, and the derived rules with the record of how they were derived. \
+           The file is written whole or not at all.",
+    example: "new gauges\nconstant harbour\nsave gauges.theory",
+    operand: Operand::Files,
+    run,
+};
+
+fn run(shell: &mut Shell, mut line: Line<'_>) -> Result<(), Problem> {
+    let rest = line.rest();
+    let name = line.word().map(|(name, _)| name);
+    // A path with blanks is understood without quotes too, since nothing else can follow.
+    let name = if line.end().is_ok() { name } else { Some(rest) };
+    let path = name.map(Path::new);
+    if let Some(path) = path
+        && !may_replace(shell, path)
+    {
+        shell.out("Nothing was written.\n");
+        return Ok(());
+    }
+    let path = shell.session.save(path).map_err(Problem::save)?;
+    shell.out(&format!("saved to {}\n", path.display()));
+    Ok(())
+}
+
+/// Another file is replaced only if whoever sits in front says so. A script says what it means.
+fn may_replace(shell: &mut Shell, path: &Path) -> bool {
+    let same = |a: &Path, b: &Path| match (a.canonicalize(), b.canonicalize()) {
+        (Ok(a), Ok(b)) => a == b,
+        _ => false,
+    };
+    let own = shell.session.path().is_some_and(|own| same(own, path));
+    if own || !path.is_file() {
+        return true;
+    }
+    let Some(editor) = &mut shell.editor else {
+        return true;
+    };
+    let question = format!(
+        "{} is there already. Replace it? yes or no: ",
+        path.display()
+    );
+    let answer = editor.ask(&question, &shell.signals, shell.screen.look());
+    matches!(answer.trim().to_lowercase().as_str(), "y" | "yes")
+}

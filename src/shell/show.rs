@@ -1,0 +1,11 @@
+//! Results as text.
+
+mod answer;
+mod claims;
+mod completion;
+mod proof;
+
+pub use answer::{Place, answer, normal, program_fault};
+pub use claims::{claims, claims_left, claims_summary};
+pub use completion::completion;
+pub use proof::{chain, proof, proof_short};

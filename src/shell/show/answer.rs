@@ -1,0 +1,207 @@
+//! Answers and normal forms.
+
+use super::proof::{LONGEST_CHAIN, chain, steps};
+use crate::session::{Answer, Frontier, NormalForm, ProgramFault, ProofText, Session, Verdict};
+use crate::shell::layout::{Breaker, columns, fold, fold_hanging, heading};
+use crate::shell::problem::{OWN_FAULT, stop_text};
+use crate::shell::quantity::{count, number, show_duration};
+use crate::shell::screen::{Ink, Look};
+use std::path::Path;
+
+/// Where an answer is shown.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Place {
+    /// In the shell, where it can be come back to by its number.
+    Shell,
+    /// For a batch command.
+    Batch,
+}
+
+/// The colour of a verdict.
+pub fn ink(verdict: Verdict) -> Ink {
+    match verdict {
+        Verdict::Equal => Ink::Good,
+        Verdict::NotEqual => Ink::Other,
+        Verdict::Undecided => Ink::Open,
+    }
+}
+
+/// An answer with as much of its evidence as is quickly read.
+pub fn answer(answer: &Answer, session: &Session, look: Look, place: Place) -> String {
+    let mut facts = Vec::new();
+    if place == Place::Shell {
+        facts.push(format!("answer {}", number(answer.number)));
+    }
+    match answer.verdict {
+        Verdict::Equal => facts.push("proof checked".to_owned()),
+        Verdict::NotEqual => facts.push("rules complete, checked".to_owned()),
+        Verdict::Undecided => {
+            let stopped = answer.frontier.as_ref().and_then(|f| f.stopped);
+            facts.extend(stopped.map(|stopped| stop_text(stopped).to_owned()));
+        }
+    }
+    facts.push(show_duration(answer.elapsed));
+    let mut text = heading(look, ink(answer.verdict), answer.verdict.text(), &facts);
+    match answer.verdict {
+        Verdict::Equal => {
+            if let Some(proof) = session.proof_text(answer) {
+                text += &short_proof(&proof, answer, session, look, place);
+            }
+        }
+        Verdict::NotEqual => {
+            if let Some(normal) = &answer.normal {
+                text += &normal_forms(normal, session, look);
+            }
+        }
+        Verdict::Undecided => {
+            if let Some(frontier) = &answer.frontier {
+                text += &self::frontier(frontier, look, place);
+            }
+        }
+    }
+    text
+}
+
+fn short_proof(
+    proof: &ProofText,
+    answer: &Answer,
+    session: &Session,
+    look: Look,
+    place: Place,
+) -> String {
+    let breaker = Breaker::new(&session.theory().signature);
+    let shown = LONGEST_CHAIN.min(proof.lines.len());
+    let mut text = chain(&proof.lines[..shown], look, breaker);
+    let left_out = proof.lines.len() - shown;
+    let all = match place {
+        Place::Shell => format!("proof {} shows all", answer.number),
+        Place::Batch => "the shell shows all".to_owned(),
+    };
+    if left_out > 0 {
+        let more = format!("… {} more; {all}", count(left_out, "step"));
+        text += &fold(&more, look.width, 4);
+    }
+    if !proof.lemmas.is_empty() {
+        let inner = proof.lemmas.iter().map(|lemma| steps(&lemma.lines)).sum();
+        let lemmas = format!(
+            "resting on {} of {}",
+            count(proof.lemmas.len(), "lemma"),
+            count(inner, "step")
+        );
+        let lemmas = if left_out > 0 {
+            lemmas
+        } else {
+            format!("{lemmas}; {all}")
+        };
+        text += &fold(&lemmas, look.width, 4);
+    }
+    text
+}
+
+/// The two normal forms that differ.
+pub fn normal_forms(normal: &[String; 2], session: &Session, look: Look) -> String {
+    let breaker = Breaker::new(&session.theory().signature);
+    let mut text = fold("the two sides have different normal forms", look.width, 4);
+    for (side, form) in ["left", "right"].iter().zip(normal) {
+        let label = format!("    {side:<8}");
+        let room = look.width.saturating_sub(columns(&label));
+        for (place, piece) in breaker.pieces(form, room, room).into_iter().enumerate() {
+            let label = if place == 0 {
+                label.clone()
+            } else {
+                " ".repeat(columns(&label))
+            };
+            text += &format!("{label}{}\n", &form[piece]);
+        }
+    }
+    text
+}
+
+fn frontier(frontier: &Frontier, look: Look, place: Place) -> String {
+    let mut done = format!(
+        "{} from {}",
+        count(frontier.rules, "rule"),
+        count(
+            usize::try_from(frontier.pairs).unwrap_or(usize::MAX),
+            "pair"
+        )
+    );
+    if frontier.orders > 1 {
+        done += &format!(", the best of {} orders", number(frontier.orders as u128));
+    }
+    done += &match frontier.waiting {
+        0 => "; no pair waits".to_owned(),
+        1 => "; 1 pair waits".to_owned(),
+        waiting => format!("; {} pairs wait", number(waiting as u128)),
+    };
+    let mut text = fold(&done, look.width, 4);
+    if let Some(remark) = &frontier.remark {
+        text += &fold(remark, look.width, 4);
+    }
+    if place == Place::Shell && !frontier.next.is_empty() {
+        let next = format!("next: {}", frontier.next.join(", or "));
+        text += &fold_hanging(&next, look.width, 4, 10);
+    }
+    text
+}
+
+/// A normal form, with how it came about beside it where there is room.
+pub fn normal(found: &NormalForm, session: &Session, look: Look) -> String {
+    let mut facts = Vec::new();
+    if let Some(steps) = found.steps {
+        facts.push(count(steps, "step"));
+    }
+    facts.push(match (found.stopped, found.complete) {
+        (Some(stopped), _) => stop_text(stopped).to_owned(),
+        (None, true) => "rules complete".to_owned(),
+        (None, false) => "rules not complete".to_owned(),
+    });
+    facts.push(show_duration(found.elapsed));
+    let facts = facts.join(" · ");
+    let breaker = Breaker::new(&session.theory().signature);
+    let pieces = breaker.pieces(&found.text, look.width, look.width.saturating_sub(2));
+    let mut text = String::with_capacity(found.text.len() + 80);
+    let mut last = 0;
+    for (place, piece) in pieces.into_iter().enumerate() {
+        if place > 0 {
+            text += "\n  ";
+        }
+        last = columns(&found.text[piece.clone()]) + if place > 0 { 2 } else { 0 };
+        text += &found.text[piece];
+    }
+    if last + 8 + columns(&facts) <= look.width {
+        text += &format!("        {}\n", look.ink(Ink::Quiet, &facts));
+    } else {
+        text.push('\n');
+        for line in fold(&facts, look.width, 4).lines() {
+            text += &format!("{}\n", look.ink(Ink::Quiet, line));
+        }
+    }
+    if found.stopped.is_some() {
+        text += &fold("this is how far rewriting came", look.width, 4);
+    }
+    text
+}
+
+/// Evidence of this program that its own checker rejected.
+pub fn program_fault(fault: &ProgramFault, kept: Option<&Path>, look: Look) -> String {
+    let mut text = fold(OWN_FAULT, look.width, 0);
+    let what = format!(
+        "The checker rejected the evidence: {}, at {}. So nothing was answered from it.",
+        fault.reason, fault.place
+    );
+    text += &fold(&what, look.width, 0);
+    text += &match kept {
+        Some(path) => fold(
+            &format!("The evidence is kept in {}", path.display()),
+            look.width,
+            0,
+        ),
+        None => fold(
+            "The evidence could not be kept in a temporary file.",
+            look.width,
+            0,
+        ),
+    };
+    text
+}

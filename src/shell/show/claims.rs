@@ -1,0 +1,110 @@
+//! What became of the claims of a theory.
+
+use super::Place;
+use super::answer::ink;
+use crate::session::{ClaimResult, Verdict};
+use crate::shell::layout::{columns, fold, fold_hanging, pad};
+use crate::shell::problem::stop_text;
+use crate::shell::quantity::{count, number, show_duration};
+use crate::shell::screen::{Ink, Look};
+
+/// One line for each claim: whether it is as claimed, the answer, the claim, how long it took.
+pub fn claims(results: &[ClaimResult], look: Look, place: Place) -> String {
+    let labels: Vec<String> = results.iter().map(label).collect();
+    let most = look.width.saturating_sub(TEXT + 24);
+    let fitting = labels
+        .iter()
+        .map(|label| columns(label))
+        .filter(|width| *width <= most);
+    let column = fitting.max().unwrap_or(0);
+    let lines = results.iter().zip(&labels);
+    lines
+        .map(|(result, label)| line(result, label, column, look, place))
+        .collect()
+}
+
+/// Where the text of a claim begins.
+const TEXT: usize = 13;
+
+fn line(result: &ClaimResult, label: &str, column: usize, look: Look, place: Place) -> String {
+    let answer = &result.answer;
+    let verdict = answer.verdict.text();
+    let facts = facts(result, place);
+    let gap = " ".repeat(TEXT - columns(verdict));
+    let verdict = format!("{}{gap}", look.ink(ink(answer.verdict), verdict));
+    let facts = if result.is_as_claimed() == Some(false) {
+        look.ink(Ink::Other, &facts)
+    } else {
+        look.ink(Ink::Quiet, &facts)
+    };
+    if TEXT + column.max(columns(label)) + 3 + columns(&self::facts(result, place)) <= look.width {
+        return format!("{verdict}{}   {facts}\n", pad(label, column));
+    }
+    let label = fold_hanging(label, look.width, TEXT, TEXT);
+    let label = label.trim_start();
+    let facts_text = fold(&self::facts(result, place), look.width, TEXT);
+    format!("{verdict}{label}{facts_text}")
+}
+
+fn label(result: &ClaimResult) -> String {
+    match &result.name {
+        Some(name) => format!("{name}: {}", result.text),
+        None => result.text.clone(),
+    }
+}
+
+fn facts(result: &ClaimResult, place: Place) -> String {
+    let mut facts = Vec::new();
+    match result.is_as_claimed() {
+        Some(true) => facts.push("as claimed".to_owned()),
+        Some(false) => facts.push("NOT as claimed".to_owned()),
+        None => {
+            let stopped = result.answer.frontier.as_ref().and_then(|f| f.stopped);
+            facts.extend(stopped.map(|stopped| stop_text(stopped).to_owned()));
+        }
+    }
+    if place == Place::Shell {
+        facts.push(format!("answer {}", number(result.answer.number)));
+    }
+    facts.push(show_duration(result.answer.elapsed));
+    facts.join(" · ")
+}
+
+/// How many are as claimed.
+pub fn claims_summary(results: &[ClaimResult], look: Look) -> String {
+    let of = |wanted: Option<bool>| {
+        let matching = results
+            .iter()
+            .filter(|result| result.is_as_claimed() == wanted);
+        matching.count()
+    };
+    let (good, bad) = (of(Some(true)), of(Some(false)));
+    let undecided = results
+        .iter()
+        .filter(|result| result.answer.verdict == Verdict::Undecided)
+        .count();
+    let mut parts = vec![format!(
+        "{}: {} as claimed",
+        count(results.len(), "claim"),
+        number(good as u128)
+    )];
+    if bad > 0 {
+        parts.push(format!("{} not as claimed", number(bad as u128)));
+    }
+    if undecided > 0 {
+        parts.push(format!("{} undecided", number(undecided as u128)));
+    }
+    fold(&parts.join(", "), look.width, 0)
+}
+
+/// That some were not looked at, if that is so.
+pub fn claims_left(done: usize, all: usize, look: Look) -> String {
+    if done >= all {
+        return String::new();
+    }
+    let text = format!(
+        "stopped by Ctrl-C; {} not looked at",
+        count(all - done, "claim")
+    );
+    fold(&text, look.width, 0)
+}

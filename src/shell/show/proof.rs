@@ -1,0 +1,195 @@
+//! Chains of equalities and proofs.
+
+use crate::session::{LemmaText, ProofLine, ProofText};
+use crate::shell::layout::{Breaker, columns, fold, fold_hanging};
+use crate::shell::quantity::count;
+use crate::shell::screen::{Ink, Look};
+use std::ops::Range;
+
+/// A chain of more lines than this is cut where an answer is shown.
+pub const LONGEST_CHAIN: usize = 13;
+
+/// How many steps a chain has.
+pub fn steps(lines: &[ProofLine]) -> usize {
+    lines.len().saturating_sub(1)
+}
+
+/// A chain: the terms below each other, with what each step cites in a column of its own if there
+/// is room.
+pub fn chain(lines: &[ProofLine], look: Look, breaker: Breaker<'_>) -> String {
+    let cites: Vec<String> = lines.iter().map(cite).collect();
+    let widest_cite = cites.iter().map(|cite| columns(cite)).max().unwrap_or(0);
+    let room = look.width.saturating_sub(LEAD + GAP + widest_cite);
+    let fitting = lines.iter().skip(1).map(|line| columns(&line.text));
+    let column = fitting.filter(|width| *width <= room).max().unwrap_or(0);
+    let mut text = String::new();
+    for (place, (line, cite)) in lines.iter().zip(&cites).enumerate() {
+        let lead = if place == 0 { "    " } else { "  = " };
+        let width = columns(&line.text);
+        let gap = if cite.is_empty() {
+            0
+        } else if width <= column && LEAD + column + GAP + columns(cite) <= look.width {
+            column - width + GAP
+        } else {
+            2
+        };
+        text += lead;
+        let last = put_term(&mut text, line, look, breaker);
+        if cite.is_empty() {
+            text.push('\n');
+        } else if last + gap + columns(cite) <= look.width {
+            text += &format!("{}{}\n", " ".repeat(gap), look.ink(Ink::Quiet, cite));
+        } else {
+            text.push('\n');
+            for line in fold(cite, look.width, 8).lines() {
+                text += &format!("{}\n", look.ink(Ink::Quiet, line));
+            }
+        }
+    }
+    text
+}
+
+/// How far terms are indented.
+const LEAD: usize = 4;
+/// Between the terms and the column of what they cite.
+const GAP: usize = 8;
+
+/// Writes the term in lines that fit; gives the column behind it.
+fn put_term(text: &mut String, line: &ProofLine, look: Look, breaker: Breaker<'_>) -> usize {
+    let room = look.width.saturating_sub(LEAD);
+    let mut last = LEAD;
+    let pieces = breaker.pieces(&line.text, room, room.saturating_sub(2));
+    for (place, piece) in pieces.into_iter().enumerate() {
+        let indent = if place == 0 { 0 } else { LEAD + 2 };
+        if place > 0 {
+            text.push('\n');
+            *text += &" ".repeat(indent);
+        }
+        last = indent.max(LEAD) + columns(&line.text[piece.clone()]);
+        *text += &marked(&line.text, piece, line.changed.clone(), look);
+    }
+    last
+}
+
+/// A piece of a text, with the part of it that a step has changed marked.
+fn marked(text: &str, piece: Range<usize>, changed: Option<Range<usize>>, look: Look) -> String {
+    let Some(changed) = changed.filter(|_| look.color) else {
+        return text[piece].to_owned();
+    };
+    let start = changed.start.clamp(piece.start, piece.end);
+    let end = changed.end.clamp(start, piece.end);
+    format!(
+        "{}{}{}",
+        &text[piece.start..start],
+        look.ink(Ink::Changed, &text[start..end]),
+        &text[end..piece.end]
+    )
+}
+
+/// `base, right to left, at 1`
+fn cite(line: &ProofLine) -> String {
+    let mut cite = line.by.clone();
+    if cite.is_empty() {
+        return cite;
+    }
+    if line.backward {
+        cite += ", right to left";
+    }
+    if !line.at.is_empty() {
+        let place: Vec<String> = line.at.iter().map(u32::to_string).collect();
+        cite += &format!(", at {}", place.join("."));
+    }
+    cite
+}
+
+/// A whole proof: every lemma with its chain, then the chain of what was asked.
+pub fn proof(proof: &ProofText, question: &str, look: Look, breaker: Breaker<'_>) -> String {
+    let mut text = String::new();
+    for lemma in &proof.lemmas {
+        text += &head(lemma, look);
+        text += &chain(&lemma.lines, look, breaker);
+        text.push('\n');
+    }
+    if !proof.lemmas.is_empty() {
+        text += &look.ink(
+            Ink::Strong,
+            fold_hanging(question, look.width, 0, 4).trim_end(),
+        );
+        text.push('\n');
+    }
+    text + &chain(&proof.lines, look, breaker)
+}
+
+/// The lemmas without their chains, and how long everything is.
+pub fn proof_short(proof: &ProofText, question: &str, look: Look) -> String {
+    let mut text = String::new();
+    for lemma in &proof.lemmas {
+        let line = format!(
+            "{}: {}   ({})",
+            lemma.name,
+            lemma.equation,
+            count(steps(&lemma.lines), "step")
+        );
+        text += &fold_hanging(&line, look.width, 0, 4);
+    }
+    let line = format!("{question}   ({})", count(steps(&proof.lines), "step"));
+    text + &fold_hanging(&line, look.width, 0, 4)
+}
+
+fn head(lemma: &LemmaText, look: Look) -> String {
+    let line = format!("{}: {}", lemma.name, lemma.equation);
+    let line = fold_hanging(&line, look.width, 0, 4);
+    format!("{}\n", look.ink(Ink::Strong, line.trim_end()))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::theory::Signature;
+
+    fn line(text: &str, by: &str, backward: bool, at: &[u32]) -> ProofLine {
+        ProofLine {
+            text: text.to_owned(),
+            changed: Some(0..1),
+            by: by.to_owned(),
+            backward,
+            at: at.to_vec(),
+        }
+    }
+
+    #[test]
+    fn laws_stand_in_a_column() {
+        let signature = Signature::default();
+        let lines = [
+            line("x ▷ x", "", false, &[]),
+            line("(factory ▷ x) ▷ x", "base", true, &[1]),
+            line("x", "once", false, &[]),
+        ];
+        let shown = |width| {
+            chain(
+                &lines,
+                Look {
+                    color: false,
+                    width,
+                },
+                Breaker::new(&signature),
+            )
+        };
+        assert_eq!(
+            shown(80),
+            "    x ▷ x
+  = (factory ▷ x) ▷ x        base, right to left, at 1
+  = x                        once
+"
+        );
+        for width in 1..60 {
+            shown(width);
+        }
+        let color = Look {
+            color: true,
+            width: 80,
+        };
+        let text = chain(&lines, color, Breaker::new(&signature));
+        assert!(text.contains("\x1b[4mx\x1b[0m"), "{text:?}");
+    }
+}
