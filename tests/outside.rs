@@ -10,5 +10,7 @@ mod complete_sets;
 mod finite_groups;
 #[path = "outside/free_algebras.rs"]
 mod free_algebras;
+#[path = "outside/questions.rs"]
+mod questions;
 #[path = "outside/saving.rs"]
 mod saving;

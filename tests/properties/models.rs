@@ -8,10 +8,16 @@ use equable::session::Verdict;
 use proptest::prelude::*;
 use std::time::Duration;
 
-/// A term as instructions for a stack: push a variable's value, or multiply the two topmost.
+/// A term as instructions for a stack.
 #[derive(Clone, Copy)]
 enum Code {
+    /// Push the value of a variable.
     Push(usize),
+    /// Push the value of the constant.
+    Constant,
+    /// Apply the function to the topmost value.
+    Function,
+    /// Multiply the two topmost values.
     Multiply,
 }
 
@@ -25,9 +31,15 @@ fn code(tree: &Tree, into: &mut Vec<Code>) {
         }
         App(_, arguments) => {
             arguments.iter().for_each(|argument| code(argument, into));
-            into.push(Code::Multiply);
+            into.push([Code::Constant, Code::Function, Code::Multiply][arguments.len()]);
         }
     }
+}
+
+/// The values of the product, then of the function, then the constant.
+struct Algebra {
+    size: usize,
+    table: Vec<usize>,
 }
 
 struct Equation([Vec<Code>; 2]);
@@ -41,21 +53,25 @@ impl Equation {
         }))
     }
 
-    /// Does it hold for all values in the algebra with this table?
-    fn holds(&self, table: &[usize], size: usize, stack: &mut Vec<usize>) -> bool {
+    /// Does it hold in the algebra for all values?
+    fn holds(&self, algebra: &Algebra, stack: &mut Vec<usize>) -> bool {
+        let Algebra { size, table } = algebra;
         (0..size.pow(3)).all(|values| {
             let value = |variable: usize| values / size.pow(variable as u32) % size;
             let [left, right] = [0, 1].map(|side: usize| {
                 stack.clear();
                 for step in &self.0[side] {
-                    match *step {
-                        Code::Push(variable) => stack.push(value(variable)),
+                    let found = match *step {
+                        Code::Push(variable) => value(variable),
+                        Code::Constant => table[size * size + size],
+                        Code::Function => table[size * size + stack.pop().expect("a value")],
                         Code::Multiply => {
                             let right = stack.pop().expect("two values");
                             let left = stack.pop().expect("two values");
-                            stack.push(table[left * size + right]);
+                            table[left * size + right]
                         }
-                    }
+                    };
+                    stack.push(found);
                 }
                 stack[0]
             });
@@ -64,18 +80,23 @@ impl Equation {
     }
 }
 
-/// All models of up to three elements, as sizes and tables.
-fn models(laws: &[Equation]) -> Vec<(usize, Vec<usize>)> {
+/// All models of up to so many elements; with the function and the constant, or without.
+fn models(laws: &[Equation], most: usize, all_symbols: bool) -> Vec<Algebra> {
     let mut found = Vec::new();
     let mut stack = Vec::new();
-    for size in 1..=3usize {
-        let cells = size * size;
-        let mut table = vec![0; cells];
+    for size in 1..=most {
+        let cells = size * size + if all_symbols { size + 1 } else { 0 };
+        let mut algebra = Algebra {
+            size,
+            table: vec![0; cells],
+        };
         loop {
-            if laws.iter().all(|law| law.holds(&table, size, &mut stack)) {
-                found.push((size, table.clone()));
+            if laws.iter().all(|law| law.holds(&algebra, &mut stack)) {
+                let table = algebra.table.clone();
+                found.push(Algebra { size, table });
             }
             // The next table, as a number with so many digits.
+            let table = &mut algebra.table;
             let Some(place) = table.iter().position(|value| value + 1 < size) else {
                 break;
             };
@@ -93,33 +114,41 @@ fn there_are_as_many_small_semigroups_as_published() {
     let [x, y, z] = text;
     let times = |s: &Tree, t: &Tree| App("*".to_owned(), vec![s.clone(), t.clone()]);
     let law = (times(&times(&x, &y), &z), times(&x, &times(&y, &z)));
-    let found = models(&[Equation::new(&law)]);
-    let sizes = [1, 2, 3].map(|size| found.iter().filter(|model| model.0 == size).count());
+    let found = models(&[Equation::new(&law)], 3, false);
+    let sizes = [1, 2, 3].map(|size| found.iter().filter(|model| model.size == size).count());
     assert_eq!(sizes, [1, 8, 113]);
 }
 
-#[test]
-fn no_verdict_contradicts_a_small_model_or_another_order() {
-    let terms = |size| trees(&VARIABLES.map(var), &[("*", 2)], size);
+/// Random theories and questions over these symbols, with the orders to ask under.
+fn never_contradicted(
+    cases: u32,
+    leaves: &[Tree],
+    inner: &[(&'static str, usize)],
+    orders: [&str; 3],
+) {
+    let all_symbols = inner.len() > 1;
+    let terms = |size| trees(leaves, inner, size);
     let laws = prop::collection::vec((terms(3), terms(3)), 1..4);
     let questions = prop::collection::vec((terms(3), terms(3)), 12);
     let (mut equal, mut different, mut told) = (0, 0, 0);
-    for_all(70, (laws, questions), |(laws, questions)| {
+    for_all(cases, (laws, questions), |(laws, questions)| {
         let mut text = "infix * 40 none\nvariable x y z\n".to_owned();
+        if all_symbols {
+            text += "function f 1\nconstant c\n";
+        }
         for (left, right) in &laws {
             text += &format!("law {left} = {right}\n");
         }
-        let models = models(&laws.iter().map(Equation::new).collect::<Vec<_>>());
-        let mut sessions = ["", "order lpo *\n", "order kbo *; variables 1\n"]
-            .map(|order| session(&format!("{text}{order}")));
+        let laws: Vec<Equation> = laws.iter().map(Equation::new).collect();
+        let models = models(&laws, if all_symbols { 2 } else { 3 }, all_symbols);
+        let mut sessions = orders.map(|order| session(&format!("{text}{order}\n")));
         for session in &mut sessions {
             complete_within(session, Duration::from_millis(20));
         }
         for (s, t) in questions {
             let question = Equation::new(&(s.clone(), t.clone()));
-            let refuting = models
-                .iter()
-                .find(|(size, table)| !question.holds(table, *size, &mut Vec::new()));
+            let refutes = |model: &&Algebra| !question.holds(model, &mut Vec::new());
+            let refuting = models.iter().find(refutes);
             let mut verdicts = Vec::new();
             for session in &mut sessions {
                 let within = Duration::from_millis(2);
@@ -130,7 +159,7 @@ fn no_verdict_contradicts_a_small_model_or_another_order() {
             let has = |verdict| verdicts.contains(&verdict);
             let contradiction = has(Verdict::Equal) && has(Verdict::NotEqual);
             assert!(!contradiction, "{text}{s} = {t}: {verdicts:?}");
-            if let Some((size, table)) = refuting {
+            if let Some(Algebra { size, table }) = refuting {
                 assert!(
                     !has(Verdict::Equal),
                     "{text}{s} = {t} fails in {size}: {table:?}"
@@ -146,4 +175,22 @@ fn no_verdict_contradicts_a_small_model_or_another_order() {
         equal > 50 && different > 50 && told > 50,
         "{equal} {different} {told}"
     );
+}
+
+#[test]
+fn no_verdict_contradicts_a_small_model_or_another_order() {
+    let orders = ["", "order lpo *", "order kbo *; variables 1"];
+    never_contradicted(50, &VARIABLES.map(var), &[("*", 2)], orders);
+}
+
+#[test]
+fn no_verdict_contradicts_a_small_model_with_a_function_and_a_constant() {
+    let constant = App("c".to_owned(), vec![]);
+    let leaves = [var("x"), var("y"), constant];
+    let orders = [
+        "order lpo c, f, *",
+        "order lpo *, f, c",
+        "order kbo f, *, c; weights f 0",
+    ];
+    never_contradicted(80, &leaves, &[("*", 2), ("f", 1)], orders);
 }

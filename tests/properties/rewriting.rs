@@ -180,11 +180,16 @@ fn sorted(tree: &Tree, ac: &[String]) -> Tree {
 fn steps_decrease(case: &Case, mut session: Session) {
     let order = Textbook::stated(&session);
     let ac = session.status().ac;
+    let mut checked = 0;
     let terms = trees(&case.leaves(), case.inner, 24);
     for_all(40, terms, |tree| {
         let asked = term(&mut session, &tree.to_string());
         let lines = alone(|control| session.trace(asked, control)).expect("a trace");
         assert_eq!(Tree::read(&mut session, &lines[0].text), tree);
+        // The path order of the textbook takes exponential time, so large terms are left out.
+        if lines.iter().any(|line| line.text.len() > 300) {
+            return;
+        }
         // The arguments of a sum are sorted at once, which decreases. It is shown as steps by
         // associativity and commutativity, of which single ones may not.
         let mut last = tree;
@@ -206,7 +211,9 @@ fn steps_decrease(case: &Case, mut session: Session) {
             last,
             "the trace ends in the normal form"
         );
+        checked += lines.len();
     });
+    assert!(checked > 20, "{}: only {checked} terms", case.name);
 }
 
 #[test]
