@@ -281,6 +281,11 @@ fn normal(shell: &mut Shell, file: &str, text: &str, options: Options) -> u8 {
         shell.remark("Rewriting was stopped; this is how far it came.");
         return status::UNDECIDED;
     }
+    if !found.complete && !options.json {
+        shell.remark(
+            "Note: the rules are not complete, so an equal term may have another normal form.",
+        );
+    }
     status::FINE
 }
 

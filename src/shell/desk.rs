@@ -67,8 +67,11 @@ impl Shell {
     /// Carries out one statement. A problem is told and counted; a fault of the program too, and
     /// the session goes on.
     pub fn statement(&mut self, text: &str) {
-        let done = catch_unwind(AssertUnwindSafe(|| self.try_statement(text)));
-        match done {
+        self.guarded(|shell| shell.try_statement(text));
+    }
+
+    fn guarded(&mut self, act: impl FnOnce(&mut Shell) -> Result<(), Problem>) {
+        match catch_unwind(AssertUnwindSafe(|| act(self))) {
             Ok(Ok(())) => {}
             Ok(Err(problem)) => self.tell(problem),
             Err(_) => self.recover(),
@@ -262,4 +265,26 @@ fn suggest(problem: Problem, word: &str) -> Problem {
             .insert(0, format!("if a command was meant: {meant}"));
     }
     Problem::Text(faults)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::session::Library;
+
+    #[test]
+    fn after_a_panic_the_laws_are_still_there() {
+        let session = Session::new(Some("gauges"), Library::default());
+        let mut shell = Shell::new(session, Screen::new(true), Signals::batch());
+        shell.statement("constant a b");
+        shell.statement("law same: a = b");
+        shell.guarded(|_| panic!("on purpose"));
+        assert_eq!(shell.faults, 1);
+        assert_eq!(shell.status, status::PROGRAM);
+        assert_eq!(shell.session.name(), "gauges");
+        assert_eq!(shell.session.theory().laws.len(), 1);
+        shell.statement("law again: b = a");
+        assert_eq!(shell.session.theory().laws.len(), 2);
+        assert_eq!(shell.faults, 1);
+    }
 }

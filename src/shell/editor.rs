@@ -94,7 +94,7 @@ impl LineEditor {
             .enable_signals(true)
             .build();
         let mut editor = Editor::with_config(config)?;
-        editor.set_helper(Some(Helper::new(session.library().clone())));
+        editor.set_helper(Some(Helper::new(session.library().clone(), color)));
         Ok(LineEditor {
             editor,
             history: places::history(),

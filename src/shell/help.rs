@@ -123,17 +123,6 @@ pub fn all_forms() -> impl Iterator<Item = &'static str> {
     commands.chain(declarations).map(|(form, _)| *form)
 }
 
-/// The examples of all pages, with the word of each.
-pub fn examples() -> Vec<(&'static str, &'static str)> {
-    let commands = commands::ALL
-        .iter()
-        .map(|command| (command.word, command.example));
-    let pages = DECLARATION_PAGES.iter().chain(TOPICS);
-    commands
-        .chain(pages.map(|page| (page.word, page.example)))
-        .collect()
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;

@@ -68,6 +68,7 @@ pub fn normal(file: &str, found: &NormalForm) -> Value {
         "normal": found.text,
         "steps": found.steps,
         "seconds": seconds(found.elapsed),
+        "complete": found.complete,
         "finished": found.stopped.is_none(),
     })
 }

@@ -108,7 +108,9 @@ impl Problem {
                 if !close.is_empty() {
                     help.push(format!("did you mean {}?", close.join(" or ")));
                 }
-                help.push("theories lists those that can be opened by name".to_owned());
+                help.push(
+                    "in the shell, theories lists those that can be opened by name".to_owned(),
+                );
                 let message = format!("there is no theory and no file {name}");
                 Problem::Said { message, help }
             }

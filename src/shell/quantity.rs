@@ -19,17 +19,6 @@ pub fn parse_duration(text: &str) -> Option<Duration> {
     (seconds > 0.0 && seconds <= 366.0 * 86_400.0).then(|| Duration::from_secs_f64(seconds))
 }
 
-/// The shortest way to type a time.
-pub fn type_duration(time: Duration) -> String {
-    let seconds = time.as_secs();
-    match time.subsec_millis() {
-        0 if seconds > 0 && seconds.is_multiple_of(3600) => format!("{}h", seconds / 3600),
-        0 if seconds > 60 && seconds.is_multiple_of(60) => format!("{}m", seconds / 60),
-        0 => format!("{seconds}s"),
-        _ => format!("{}ms", time.as_millis()),
-    }
-}
-
 /// A time for reading: `0.4 ms`, `12 ms`, `2 s`, `2.3 s`, `1 min 5 s`, `2 h 3 min`.
 pub fn show_duration(time: Duration) -> String {
     let milliseconds = time.as_secs_f64() * 1000.0;
@@ -84,11 +73,12 @@ mod tests {
     use super::*;
 
     #[test]
-    fn times_are_read_and_typed_back() {
-        for text in ["500ms", "2s", "60s", "2m", "90s", "1h", "2500ms"] {
-            let time = parse_duration(text).unwrap();
-            assert_eq!(type_duration(time), text);
-        }
+    fn times_are_read() {
+        let read = |text| parse_duration(text).map(|time| time.as_millis());
+        assert_eq!(read("500ms"), Some(500));
+        assert_eq!(read("2.5s"), Some(2500));
+        assert_eq!(read("2m"), Some(120_000));
+        assert_eq!(read("1h"), Some(3_600_000));
         for text in [
             "",
             "s",

@@ -82,11 +82,6 @@ impl Screen {
         self.interactive = true;
     }
 
-    /// Does somebody sit in front of it?
-    pub fn is_interactive(&self) -> bool {
-        self.interactive
-    }
-
     /// How results are to look.
     pub fn look(&self) -> Look {
         Look {

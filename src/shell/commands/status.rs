@@ -57,8 +57,13 @@ fn run(shell: &mut Shell, line: Line<'_>) -> Result<(), Problem> {
         let ac = format!("{} (associative and commutative)", status.ac.join(", "));
         rows.insert(4, row("known AC", ac));
     }
-    rows.extend(status.counts.iter().map(|(name, n)| row(name, number(*n))));
-    let text = table(&rows, shell.look());
+    let counts: Vec<_> = status
+        .counts
+        .iter()
+        .map(|(name, n)| row(name, number(*n)))
+        .collect();
+    let look = shell.look();
+    let text = table(&rows, look) + "\n" + &table(&counts, look);
     shell.out(&text);
     Ok(())
 }

@@ -24,11 +24,13 @@ pub struct Helper {
     brackets: MatchingBracketHighlighter,
     /// Is something asked that is no statement?
     quiet: bool,
+    /// Hints are dimmed; without colours they could not be told from what was typed.
+    hints: bool,
 }
 
 impl Helper {
     /// A helper that knows the commands only.
-    pub fn new(library: Library) -> Helper {
+    pub fn new(library: Library, hints: bool) -> Helper {
         Helper {
             library,
             names: Vec::new(),
@@ -38,6 +40,7 @@ impl Helper {
             files: FilenameCompleter::new(),
             brackets: MatchingBracketHighlighter::new(),
             quiet: false,
+            hints,
         }
     }
 
@@ -212,7 +215,7 @@ impl Hinter for Helper {
     type Hint = Following;
 
     fn hint(&self, line: &str, at: usize, _: &Context<'_>) -> Option<Following> {
-        if self.quiet || at < line.len() || line.len() < 3 || line.contains('\n') {
+        if !self.hints || self.quiet || at < line.len() || line.len() < 3 || line.contains('\n') {
             return None;
         }
         if self.names.iter().any(|name| name == line) {

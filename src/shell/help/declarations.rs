@@ -12,7 +12,7 @@ pub const DECLARATION_PAGES: &[Page] = &[
     },
     Page {
         word: "note",
-        forms: &[("note …", "a remark that is shown when the theory is opened")],
+        forms: &[("note …", "a remark, shown when the theory is opened")],
         page: "The first line of the first note is also what theories shows. For remarks that only a \
                reader of the file sees, write # before them.",
         example: "note Readings of the harbour gauge, put together from parts.",
@@ -93,7 +93,7 @@ pub const DECLARATION_PAGES: &[Page] = &[
     Page {
         word: "law",
         forms: &[
-            ("law assoc: (x * y) * z = x * (y * z)", "a law with a name"),
+            ("law unit: x * e = x", "a law with a name"),
             ("law x * e = x", "a law that gets a name, law1, law2, …"),
             (
                 "law + is associative commutative",
@@ -106,10 +106,7 @@ pub const DECLARATION_PAGES: &[Page] = &[
     },
     Page {
         word: "rule",
-        forms: &[(
-            "rule cut: f(g(x)) -> x",
-            "a law that is used in this direction only",
-        )],
+        forms: &[("rule cut: f(g(x)) -> x", "a law for this direction only")],
         page: "The order must make the right side smaller than the left one; if it does not, the \
                line is refused, with the rules that stand in the way. help order tells about orders.",
         example: "function f 1\nfunction g 1\nvariable x\nrule cut: f(g(x)) -> x\nf(f(g(x)))",
@@ -123,7 +120,7 @@ pub const DECLARATION_PAGES: &[Page] = &[
     Page {
         word: "claim",
         forms: &[
-            ("claim flip: i(x * y) = i(y) * i(x)", "what should follow"),
+            ("claim comm: x * y = y * x", "what should follow"),
             ("claim x * y != y * x", "what should not"),
         ],
         page: "A claim is not used to find anything out. check verifies all claims, here and on the \
