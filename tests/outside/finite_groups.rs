@@ -7,20 +7,17 @@ use crate::common::{complete, normal, session};
 use equable::session::Session;
 use std::collections::BTreeSet;
 
-/// All normal forms that the generators lead to from a start, breadth first.
-pub fn reached(
-    session: &mut Session,
-    start: &str,
-    more: &[&dyn Fn(&str) -> String],
-) -> BTreeSet<String> {
+/// All normal forms that lead from a start, breadth first. In the steps, `_` stands for a normal
+/// form that was reached.
+pub fn reached(session: &mut Session, start: &str, steps: &[String]) -> BTreeSet<String> {
     let first = normal(session, start);
     let mut found = BTreeSet::from([first.clone()]);
     let mut layer = vec![first];
     while !layer.is_empty() {
         let mut next = Vec::new();
         for word in &layer {
-            for step in more {
-                let word = normal(session, &step(word));
+            for step in steps {
+                let word = normal(session, &step.replace('_', &format!("({word})")));
                 if found.insert(word.clone()) {
                     next.push(word);
                 }
@@ -54,13 +51,10 @@ fn by_functions(generators: &str, inverses: bool, relations: &[(&str, &str)]) ->
     }
     let mut session = session(&theory);
     complete(&mut session);
-    let steps: Vec<Box<dyn Fn(&str) -> String>> = letters
-        .into_iter()
-        .map(|letter| -> Box<dyn Fn(&str) -> String> {
-            Box::new(move |word: &str| format!("{letter}({word})"))
-        })
+    let steps: Vec<String> = letters
+        .iter()
+        .map(|letter| format!("{letter}(_)"))
         .collect();
-    let steps: Vec<&dyn Fn(&str) -> String> = steps.iter().map(|step| &**step).collect();
     reached(&mut session, "e", &steps).len()
 }
 
@@ -87,13 +81,10 @@ fn by_products(generators: &str, inverses: bool, relations: &[(&str, &str)]) -> 
     }
     let mut session = session(&theory);
     complete(&mut session);
-    let steps: Vec<Box<dyn Fn(&str) -> String>> = generators
+    let steps: Vec<String> = generators
         .chars()
-        .map(|letter| -> Box<dyn Fn(&str) -> String> {
-            Box::new(move |word: &str| format!("({word}) * {letter}"))
-        })
+        .map(|letter| format!("_ * {letter}"))
         .collect();
-    let steps: Vec<&dyn Fn(&str) -> String> = steps.iter().map(|step| &**step).collect();
     reached(&mut session, "e", &steps).len()
 }
 
@@ -132,7 +123,10 @@ fn the_simple_group_of_168_elements() {
     assert_eq!(by_functions("ab", false, &relations), 168);
 }
 
-const FIBONACCI: [(&str, &[(&str, &str)], usize); 3] = [
+/// Generators, relations and order.
+type Presentation = (&'static str, &'static [(&'static str, &'static str)], usize);
+
+const FIBONACCI: [Presentation; 3] = [
     ("abc", &[("ab", "c"), ("bc", "a"), ("ca", "b")], 8),
     (
         "abcd",

@@ -13,20 +13,11 @@ fn count(theory: &str, generators: usize, steps: &[&str]) -> usize {
     }
     let mut session = session(&theory);
     complete(&mut session);
-    let templates = steps.iter().flat_map(|step| {
-        let each = names.iter().map(|name| step.replace('@', name));
-        if step.contains('@') {
-            each.collect()
-        } else {
-            vec![(*step).to_owned()]
-        }
-    });
-    let templates: Vec<Box<dyn Fn(&str) -> String>> = templates
-        .map(|template| -> Box<dyn Fn(&str) -> String> {
-            Box::new(move |word: &str| template.replace('_', &format!("({word})")))
-        })
-        .collect();
-    let steps: Vec<&dyn Fn(&str) -> String> = templates.iter().map(|step| &**step).collect();
+    let mut each = Vec::new();
+    for step in steps {
+        each.extend(names.iter().map(|name| step.replace('@', name)));
+    }
+    let steps = each;
     names
         .iter()
         .flat_map(|name| reached(&mut session, name, &steps))
@@ -86,12 +77,7 @@ fn closure_and_complement_as_products() {
          law k * c * k * c * k * c * k = k * c * k\n",
     );
     complete(&mut session);
-    let steps: [&dyn Fn(&str) -> String; 4] = [
-        &|word| format!("({word}) * k"),
-        &|word| format!("({word}) * c"),
-        &|word| format!("k * ({word})"),
-        &|word| format!("c * ({word})"),
-    ];
+    let steps = ["_ * k", "_ * c", "k * _", "c * _"].map(str::to_owned);
     assert_eq!(reached(&mut session, "e", &steps).len(), 14);
 }
 
