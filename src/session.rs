@@ -12,6 +12,7 @@ mod derivation;
 mod derived;
 mod evidence;
 mod library;
+mod naming;
 mod runner;
 mod sheet;
 mod store;

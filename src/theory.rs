@@ -10,7 +10,9 @@ mod signature;
 mod store;
 
 pub use document::{Document, Line, LineId};
-pub use laws::{Claim, Derived, Expected, Law, LawKind, Origin, Property, Record, RecordStep, Use};
+pub use laws::{
+    Claim, Derived, Expected, Law, LawKind, Origin, Property, Record, RecordStep, Refused, Use,
+};
 pub use signature::{
     Fixity, Meaning, Side, Signature, SignatureFull, SymbolDeclaration, VariableDeclaration,
 };

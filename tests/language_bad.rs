@@ -389,12 +389,12 @@ fn a_derived_line_that_was_changed_does_not_keep_the_rest_from_opening() {
     let theory = good(&text);
     assert_eq!(theory.derived.len(), 1);
     let lines: Vec<(usize, usize)> = theory
-        .refused
+        .refusals()
         .iter()
-        .map(|(_, d)| (d.line, d.column))
+        .map(|d| (d.line, d.column))
         .collect();
     assert_eq!(lines, [(10, 14), (11, 9), (12, 18), (13, 30)]);
-    assert!(theory.refused.iter().all(|(_, d)| !d.help.is_empty()));
+    assert!(theory.refusals().iter().all(|d| !d.help.is_empty()));
     assert_eq!(theory.document.text(), text);
     // What is found out later has its place as well.
     let d = theory.diagnostic(

@@ -245,7 +245,7 @@ proptest! {
         let saved = theory.document.text();
         let again = read_theory("random", &saved, &NoLoader);
         let mut again = again.map_err(|f| TestCaseError::fail(f[0].render(false, 200)))?;
-        prop_assert!(again.refused.is_empty(), "{}", again.refused[0].1.render(false, 200));
+        prop_assert!(again.refused.is_empty(), "{}", again.refusals()[0].render(false, 200));
         prop_assert_eq!(again.order.as_ref(), Some(&setting), "{}", print_order(&theory.signature, &setting));
         prop_assert_eq!(again.derived.len(), rules.len());
         for (old, new) in theory.derived.iter().zip(&again.derived) {

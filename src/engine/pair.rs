@@ -11,8 +11,8 @@ use crate::term::{TermId, renumber};
 
 /// Sides larger than this are not kept: such a rule would cost more than it can be worth.
 const LARGEST: u32 = 20_000;
-/// How many steps the simplification of one side may have.
-const MOST_STEPS: usize = 1 << 20;
+/// How many numbers the simplification of one side may take to write down.
+const MOST_NUMBERS: usize = 1 << 20;
 
 impl Engine {
     /// Makes a rule of a chosen pair unless it is redundant.
@@ -42,10 +42,18 @@ impl Engine {
             self.counts.dropped += 1;
             return Ok(());
         }
+        let steps = self
+            .steps(left, left_normal)
+            .zip(self.steps(right, right_normal));
+        let Some((left_steps, right_steps)) = steps else {
+            // A derivation that is too long to write down.
+            self.counts.dropped += 1;
+            return Ok(());
+        };
         let record = Record {
             origin: self.origin_of(choice),
-            left: self.steps(left, left_normal),
-            right: self.steps(right, right_normal),
+            left: left_steps,
+            right: right_steps,
             swapped: false,
         };
         self.add_rule(left_normal, right_normal, record);
@@ -112,16 +120,12 @@ impl Engine {
         }
     }
 
-    /// The steps from a term to its normal form, as the record has them.
-    pub(super) fn steps(&mut self, from: TermId, to: TermId) -> Vec<RecordStep> {
-        let steps = self
-            .system
-            .explain(from, to, MOST_STEPS)
-            .expect("the table leads from a term to its normal form");
-        steps
-            .into_iter()
-            .flat_map(|step| self.record_steps(step))
-            .collect()
+    /// The steps from a term to its normal form, as the record has them; nothing if they are too
+    /// many.
+    pub(super) fn steps(&mut self, from: TermId, to: TermId) -> Option<Vec<RecordStep>> {
+        let steps = self.system.explain(from, to, MOST_NUMBERS)?;
+        let expanded = steps.into_iter().flat_map(|step| self.record_steps(step));
+        Some(expanded.collect())
     }
 
     fn record_steps(&mut self, step: Step) -> Vec<RecordStep> {

@@ -89,10 +89,12 @@ impl Engine {
                 continue;
             }
             stack.extend(bank.arguments(term));
-            if bank.as_symbol(term).is_none() || bank.head(term) != bank.head(pattern) {
-                if bank.as_variable(pattern).is_none() || bank.as_symbol(term).is_none() {
-                    continue;
-                }
+            let could_match = match bank.as_symbol(pattern) {
+                Some(_) => bank.head(term) == bank.head(pattern),
+                None => bank.as_symbol(term).is_some(),
+            };
+            if !could_match {
+                continue;
             }
             substitution.reset(0);
             if match_term(bank, pattern, term, &mut substitution)
@@ -137,11 +139,13 @@ impl Engine {
             if self.system.current(id) == Some(id) {
                 let right = self.system.rule(id).right;
                 let normal = self.system.normal_form(right, limits)?;
-                if normal != right {
+                if normal != right
+                    && let Some(steps) = self.steps(right, normal)
+                {
                     let record = Record {
                         origin: Origin::Rule(id),
                         left: Vec::new(),
-                        right: self.steps(right, normal),
+                        right: steps,
                         swapped: false,
                     };
                     let by = self.system.replace(id, normal);

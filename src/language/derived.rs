@@ -17,7 +17,7 @@ use super::symbols::number;
 use super::term::{Locals, TermReader, shown};
 use super::words::{quote_law, quote_symbol};
 use crate::term::{Bank, Sort};
-use crate::theory::{Derived, LineId, Origin, Record, RecordStep, Signature, Theory, Use};
+use crate::theory::{Derived, LineId, Origin, Record, RecordStep, Refused, Signature, Theory, Use};
 
 const EXAMPLE: &str =
     "derived 7: i(i(x)) -> x : overlap 5 with 3 backward at 0 1; left 2 at 1, 4; swapped; retired";
@@ -36,27 +36,25 @@ pub(crate) fn take(at: &mut Statement<'_, '_, '_>, rest: usize) -> Result<Vec<Ch
         Err(fault) => {
             at.theory.bank.rollback(mark);
             let fault = fault.help("take the line out; completing again derives the rule anew");
-            let refused = about_line(at, fault);
-            at.theory.refused.push((at.context.line, refused));
+            let refused = refusal(at, &fault);
+            at.theory.refused.push(refused);
             Ok(Vec::new())
         }
     }
 }
 
-/// The message, made from the line alone: there may be many such lines, and counting lines from the
-/// start of the text for each would take a time that grows with the square of the text.
-fn about_line(at: &Statement<'_, '_, '_>, mut fault: Fault) -> Diagnostic {
+/// What is wrong, with its place in the line alone: there may be many such lines, and counting
+/// lines from the start of the text for each would take a time that grows with its square.
+fn refusal(at: &Statement<'_, '_, '_>, fault: &Fault) -> Refused {
     let start = at.range.start;
-    let span = fault.span.clone();
-    fault.span = span.start.saturating_sub(start)..span.end.saturating_sub(start);
-    fault.also = None;
-    let source = Source {
-        name: at.source.name,
-        text: &at.source.text[at.range.clone()],
-    };
-    let mut made = fault.at(source).further_down(at.context.lines_before);
-    made.span = span;
-    made
+    Refused {
+        line: at.context.line,
+        before: at.context.lines_before,
+        span: fault.span.start.saturating_sub(start)..fault.span.end.saturating_sub(start),
+        message: fault.message.clone(),
+        label: fault.label.clone(),
+        help: fault.help.clone(),
+    }
 }
 
 fn read(at: &mut Statement<'_, '_, '_>, rest: usize) -> Result<Derived, Fault> {
@@ -337,7 +335,7 @@ pub fn set_derived(theory: &mut Theory, mut rules: Vec<Derived>) {
         return;
     }
     let old: rustc_hash::FxHashSet<LineId> = (theory.derived.iter().map(|rule| rule.line))
-        .chain(theory.refused.iter().map(|(line, _)| *line))
+        .chain(theory.refused.iter().map(|refused| refused.line))
         .collect();
     let lines = theory.document.lines();
     let first = lines.iter().position(|line| old.contains(&line.id));
@@ -361,6 +359,30 @@ pub fn set_derived(theory: &mut Theory, mut rules: Vec<Derived>) {
 }
 
 impl Theory {
+    /// The messages about the lines of derived rules that could not be read.
+    pub fn refusals(&self) -> Vec<Diagnostic> {
+        let texts: rustc_hash::FxHashMap<LineId, &str> = self
+            .document
+            .lines()
+            .iter()
+            .map(|line| (line.id, line.text.as_str()))
+            .collect();
+        let message = |refused: &Refused| {
+            let source = Source {
+                name: &self.source,
+                text: texts.get(&refused.line).copied().unwrap_or_default(),
+            };
+            let fault = Fault::new(refused.span.clone(), refused.message.as_str());
+            let fault = fault.label(refused.label.as_str());
+            let helped = refused
+                .help
+                .iter()
+                .fold(fault, |f, help| f.help(help.as_str()));
+            helped.at(source).further_down(refused.before)
+        };
+        self.refused.iter().map(message).collect()
+    }
+
     /// A message about a line of the document, for what is found out after reading.
     pub fn diagnostic(&self, line: LineId, message: &str, help: &str) -> Diagnostic {
         let Some(found) = self.document.line(line) else {

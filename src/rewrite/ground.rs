@@ -150,9 +150,7 @@ impl System {
     }
 
     fn root_step_assuming(&mut self, term: TermId, assumed: &VariableOrder) -> Option<TermId> {
-        if self.bank.as_symbol(term).is_none() {
-            return None;
-        }
+        self.bank.as_symbol(term)?;
         self.matcher.start(term);
         while let Some(by) = self.matcher.next(&self.index, &self.bank) {
             let mark = self.bank.mark();

@@ -104,8 +104,8 @@ pub(super) struct Build {
 
 /// The value on top is the normal form of the frame's term.
 pub(super) const SETTLE: u32 = u32::MAX;
-/// The frame's term is being rewritten by a rule whose replacing side is being built, each subterm
-/// in normal form before the one above it, so that what would be rewritten anyway is not built.
+/// The frame's term is being rewritten by a rule whose replacing side is being built, with its
+/// arguments in normal form, so that a whole that would be rewritten anyway is not built.
 pub(super) const BUILD: u32 = u32::MAX - 2;
 /// The frame's term is a sum (or product, …) whose flattened arguments are brought to normal form.
 pub(super) const SPINE: u32 = u32::MAX - 1;
@@ -258,7 +258,10 @@ impl System {
         self.frames.push(Frame { term, state: BUILD });
     }
 
-    /// Builds on until a subterm has to be rewritten first, or the whole is there.
+    /// Builds on until an argument has to be rewritten first, or the whole is there.
+    ///
+    /// Each argument is built to the letter and then brought to normal form, so that the table
+    /// leads from it to what stands in the whole.
     fn continue_build(&mut self, term: TermId) {
         let place = self.builds.len() - 1;
         let waiting = self.frames.len();
@@ -268,26 +271,29 @@ impl System {
             let operation = program.operations()[next];
             let is_last = next + 1 == program.operations().len();
             self.builds[place].next += 1;
-            let built = match operation {
-                Operation::Variable(index) => self.saved[first + index as usize],
-                Operation::Ground(ground) => ground,
+            match operation {
+                Operation::Variable(index) => self.values.push(self.saved[first + index as usize]),
+                Operation::Ground(ground) => self.values.push(ground),
                 Operation::Apply(symbol, arity) => {
                     let start = self.values.len() - arity as usize;
                     let built = self.bank.apply(symbol, &self.values[start..]);
                     self.values.truncate(start);
-                    built
+                    self.values.push(built);
                 }
-            };
+                Operation::Argument(flat) => {
+                    let built = self.values.pop().expect("an argument was built");
+                    match flat {
+                        Some(symbol) => self.finish(symbol, built),
+                        None => self.visit(built),
+                    }
+                }
+            }
             if is_last {
+                let built = self.values.pop().expect("the whole was built");
                 self.builds.pop();
                 self.saved.truncate(first);
                 self.frames.pop();
                 return self.rewritten(term, built, by);
-            }
-            match operation {
-                Operation::Variable(_) => self.values.push(built),
-                Operation::Ground(_) => self.visit(built),
-                Operation::Apply(symbol, _) => self.finish(symbol, built),
             }
             if self.frames.len() > waiting {
                 return;

@@ -90,11 +90,18 @@ impl Rule {
     }
 }
 
+/// An operation on a stack of terms.
 #[derive(Clone, Copy, Debug)]
 pub(super) enum Operation {
+    /// Pushes the value of a variable.
     Variable(u32),
+    /// Pushes a ground term.
     Ground(TermId),
+    /// Applies a symbol to the terms on top.
     Apply(Symbol, u32),
+    /// What was pushed last is a whole argument of the side; it is not just a variable. With its
+    /// own arguments all variables it needs no look at those to be brought to normal form.
+    Argument(Option<Symbol>),
 }
 
 /// The replacing side as a list of operations in postorder, so that building an instance asks the
@@ -109,32 +116,29 @@ impl Program {
     const LARGEST: u32 = 256;
 
     fn of(bank: &Bank, from: TermId, to: TermId) -> Program {
-        let extra = !bank.mentions_all(from, to);
         let mut operations = Vec::new();
         if bank.size(to) <= Self::LARGEST {
-            // Preorder with the arguments from right to left, read backwards, is postorder.
-            let mut stack = vec![to];
-            while let Some(term) = stack.pop() {
-                if bank.is_ground(term) {
-                    operations.push(Operation::Ground(term));
-                    continue;
-                }
-                match bank.head(term) {
-                    Head::Variable(variable) => {
-                        operations.push(Operation::Variable(variable.index));
+            match bank.head(to) {
+                Head::Symbol(symbol) if !bank.is_ground(to) => {
+                    let arguments = bank.arguments(to);
+                    for &argument in arguments {
+                        append(bank, argument, &mut operations);
+                        if bank.as_variable(argument).is_none() {
+                            let variable = |t: &TermId| bank.as_variable(*t).is_some();
+                            let flat = bank.arguments(argument).iter().all(variable)
+                                && !bank.is_ground(argument);
+                            let head = bank.as_symbol(argument).filter(|_| flat);
+                            operations.push(Operation::Argument(head));
+                        }
                     }
-                    Head::Symbol(symbol) => {
-                        let arguments = bank.arguments(term);
-                        operations.push(Operation::Apply(symbol, arguments.len() as u32));
-                        stack.extend(arguments);
-                    }
+                    operations.push(Operation::Apply(symbol, arguments.len() as u32));
                 }
+                _ => append(bank, to, &mut operations),
             }
-            operations.reverse();
         }
         Program {
             operations: operations.into(),
-            extra,
+            extra: !bank.mentions_all(from, to),
         }
     }
 
@@ -160,6 +164,7 @@ impl Program {
             match *operation {
                 Operation::Variable(index) => built.push(substitution.get(index)),
                 Operation::Ground(term) => built.push(term),
+                Operation::Argument(_) => {}
                 Operation::Apply(symbol, arity) => {
                     let start = built.len() - arity as usize;
                     let made = bank.apply(symbol, &built[start..]);
@@ -170,4 +175,26 @@ impl Program {
         }
         built[0]
     }
+}
+
+/// The operations that build a term.
+fn append(bank: &Bank, term: TermId, operations: &mut Vec<Operation>) {
+    // Preorder with the arguments from right to left, read backwards, is postorder.
+    let start = operations.len();
+    let mut stack = vec![term];
+    while let Some(term) = stack.pop() {
+        if bank.is_ground(term) {
+            operations.push(Operation::Ground(term));
+            continue;
+        }
+        match bank.head(term) {
+            Head::Variable(variable) => operations.push(Operation::Variable(variable.index)),
+            Head::Symbol(symbol) => {
+                let arguments = bank.arguments(term);
+                operations.push(Operation::Apply(symbol, arguments.len() as u32));
+                stack.extend(arguments);
+            }
+        }
+    }
+    operations[start..].reverse();
 }

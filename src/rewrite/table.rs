@@ -134,7 +134,7 @@ impl Table {
     /// Remembers the normal form of a term.
     #[inline]
     pub fn set_normal(&mut self, term: TermId, normal: TermId, generation: u32) {
-        if normal != term {
+        if normal != term || self.asking {
             self.note(term);
         }
         let entry = self.entry(term);

@@ -88,7 +88,7 @@ impl Session {
         match runner.compare(&asked, &mut limits) {
             Ok(Compared::Same { known, proof }) => {
                 let by = if known { By::Table } else { By::NormalForms };
-                Shown::Equal(by, proof.map(Evidence::Proof))
+                Shown::Equal(by, proof.map(|proof| Evidence::Proof(*proof)))
             }
             Ok(Compared::Different(normal)) if runner.engine.is_complete() => {
                 let set = runner.complete_set(Some((&asked, normal)));
@@ -121,7 +121,7 @@ impl Session {
                 } else {
                     by
                 };
-                Shown::Equal(by, proof.map(Evidence::Proof))
+                Shown::Equal(by, proof.map(|proof| Evidence::Proof(*proof)))
             }
             Ok(Compared::Different(normal)) if by == By::Complete => {
                 let set = runner.complete_set(Some((&asked, normal)));

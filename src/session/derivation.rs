@@ -4,7 +4,7 @@
 //! step with the equation that it cites. Nothing is searched for.
 
 use crate::engine::{Engine, LawId, Origin, RecordStep, ReplayError};
-use crate::rewrite::{RuleId, StepBy, Use};
+use crate::rewrite::{Reason, RuleId, StepBy, Use};
 use crate::term::{Substitution, TermId, instantiate, match_term, replace_at, subterm_at};
 use rustc_hash::FxHashMap;
 
@@ -237,4 +237,52 @@ fn rewritten(engine: &mut Engine, term: TermId, by: Use) -> Option<TermId> {
     let mut substitution = Substitution::default();
     match_term(&engine.system.bank, from, term, &mut substitution)
         .then(|| instantiate(&mut engine.system.bank, to, &substitution))
+}
+
+/// How many numbers the chain of one argument may take before it becomes a lemma.
+const INLINE: usize = 4;
+
+/// The chain of one ground term by its own steps, in which what happened to an argument is one
+/// step by a lemma; and these lemmas.
+pub(super) fn of_ground_lemma(
+    engine: &mut Engine,
+    from: TermId,
+    to: TermId,
+    most: usize,
+) -> Option<(Chain, Vec<(TermId, TermId)>)> {
+    let links = match engine.system.links(from, to) {
+        Some(links) => links,
+        None => vec![(to, Reason::Arguments)],
+    };
+    let mut chain = Chain::new(from);
+    let mut needed = Vec::new();
+    for (next, reason) in links {
+        let here = chain.end();
+        match reason {
+            Reason::Rule(_) | Reason::Canonical => {
+                chain = chain.then(of_table(engine, here, next, most)?);
+            }
+            Reason::Arguments => {
+                if engine.system.bank.head(here) != engine.system.bank.head(next) {
+                    return None;
+                }
+                for place in 0..engine.system.bank.arguments(here).len() {
+                    let s = engine.system.bank.arguments(here)[place];
+                    let t = engine.system.bank.arguments(next)[place];
+                    if s == t {
+                        continue;
+                    }
+                    let at = vec![place as u32];
+                    match of_table(engine, s, t, INLINE) {
+                        Some(below) => chain.append_below(engine, &at, below),
+                        None => {
+                            needed.push((s, t));
+                            chain.push(engine, Cited::Ground(s, t), true, at, t);
+                        }
+                    }
+                }
+            }
+        }
+    }
+    Some((chain, needed))
 }

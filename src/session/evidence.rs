@@ -1,63 +1,19 @@
 //! Evidence from what the engine knows: chains of the engine's terms become proof objects.
 
-use super::derivation::{Chain, Cited, Link, of_rule, of_table};
+use super::derivation::{Chain, Cited, Link, of_ground_lemma, of_rule, of_table};
+use super::naming::Naming;
 use crate::engine::{Engine, ReplayError};
 use crate::order::OrderKind;
 use crate::proof;
 use crate::proof::{Equation, Lemma, Name, Step, TermIndex, Terms, Way};
-use crate::rewrite::{Reason, RuleId};
+use crate::rewrite::RuleId;
 use crate::term::{Head, Sort, Symbol, TermId, Variable, match_term};
 use crate::term::{Substitution, renumber};
 use rustc_hash::{FxHashMap, FxHashSet};
 use std::collections::BTreeSet;
 
-/// How symbols, variables, sorts and laws are called in evidence.
-#[derive(Clone, Debug, Default)]
-pub(super) struct Naming {
-    /// By symbol of the theory.
-    pub(super) symbols: Vec<String>,
-    /// The variables of the theory, by number, with their sorts.
-    pub(super) variables: Vec<(String, Sort)>,
-    /// By sort.
-    pub(super) sorts: Vec<String>,
-    /// By law of the engine.
-    pub(super) laws: Vec<String>,
-    /// The laws that define a symbol are listed with the laws all the same: they are the theory's.
-    pub(super) typed: bool,
-    /// For each symbol the sorts of its arguments and, last, its result.
-    pub(super) types: Vec<Vec<Sort>>,
-}
-
-impl Naming {
-    /// The name of a variable of a rule: those of the theory that have its sort, then new ones.
-    pub(super) fn rule_variable(&self, variable: Variable) -> String {
-        let declared = self
-            .variables
-            .iter()
-            .filter(|(_, sort)| *sort == variable.sort);
-        if let Some((name, _)) = declared.clone().nth(variable.index as usize) {
-            return name.clone();
-        }
-        let sort = if self.typed {
-            self.sorts[usize::from(variable.sort.0)].as_str()
-        } else {
-            ""
-        };
-        let taken = |name: &String| {
-            self.symbols.contains(name) || self.variables.iter().any(|(known, _)| known == name)
-        };
-        let mut name = format!("x{}{sort}", variable.index + 1);
-        while taken(&name) {
-            name.push('_');
-        }
-        name
-    }
-}
-
 /// How many numbers a chain of single steps may take before it is written with lemmas.
 const FLAT: usize = 20_000;
-/// How many numbers the chain of one argument may take before it becomes a lemma.
-const INLINE: usize = 4;
 
 /// The variables of a question: the constants that stand for them, and their names.
 pub(super) type ClaimVariables = FxHashMap<(u32, Sort), String>;
@@ -213,14 +169,14 @@ impl<'a> Writer<'a> {
     }
 
     fn meeting(&mut self, left: TermId, right: TermId, normal: TermId) -> Option<Chain> {
-        let there = self.to_normal(left, normal)?;
-        let back = self.to_normal(right, normal)?;
+        let there = self.chain_to_normal(left, normal)?;
+        let back = self.chain_to_normal(right, normal)?;
         Some(there.then(back.reversed()).without_detours())
     }
 
     /// The chain to the normal form, in single steps or, if that is too long, by lemmas about
     /// subterms.
-    fn to_normal(&mut self, from: TermId, to: TermId) -> Option<Chain> {
+    fn chain_to_normal(&mut self, from: TermId, to: TermId) -> Option<Chain> {
         if let Some(chain) = of_table(self.engine, from, to, FLAT) {
             return Some(chain);
         }
@@ -242,7 +198,7 @@ impl<'a> Writer<'a> {
                 stack.pop();
                 continue;
             }
-            let (chain, needed) = ground_chain(self.engine, s, t)?;
+            let (chain, needed) = of_ground_lemma(self.engine, s, t, FLAT)?;
             let open: Vec<_> = needed
                 .into_iter()
                 .filter(|pair| !known.contains(pair))
@@ -573,48 +529,4 @@ pub(super) fn rule_name(rule: RuleId) -> String {
 
 fn ground_name(from: TermId, to: TermId) -> String {
     format!("value {}-{}", from.0, to.0)
-}
-
-/// The chain of one ground term by its own steps, in which what happened to an argument is one
-/// step by a lemma; and these lemmas.
-fn ground_chain(
-    engine: &mut Engine,
-    from: TermId,
-    to: TermId,
-) -> Option<(Chain, Vec<(TermId, TermId)>)> {
-    let links = match engine.system.links(from, to) {
-        Some(links) => links,
-        None => vec![(to, Reason::Arguments)],
-    };
-    let mut chain = Chain::new(from);
-    let mut needed = Vec::new();
-    for (next, reason) in links {
-        let here = chain.end();
-        match reason {
-            Reason::Rule(_) | Reason::Canonical => {
-                chain = chain.then(of_table(engine, here, next, FLAT)?);
-            }
-            Reason::Arguments => {
-                if engine.system.bank.head(here) != engine.system.bank.head(next) {
-                    return None;
-                }
-                for place in 0..engine.system.bank.arguments(here).len() {
-                    let s = engine.system.bank.arguments(here)[place];
-                    let t = engine.system.bank.arguments(next)[place];
-                    if s == t {
-                        continue;
-                    }
-                    let at = vec![place as u32];
-                    match of_table(engine, s, t, INLINE) {
-                        Some(below) => chain.append_below(engine, &at, below),
-                        None => {
-                            needed.push((s, t));
-                            chain.push(engine, Cited::Ground(s, t), true, at, t);
-                        }
-                    }
-                }
-            }
-        }
-    }
-    Some((chain, needed))
 }

@@ -1,6 +1,7 @@
 //! A theory in an engine.
 
-use super::evidence::{ClaimVariables, Naming, Writer};
+use super::evidence::{ClaimVariables, Writer};
+use super::naming::{Naming, naming};
 use crate::engine::{Engine, Question};
 use crate::order::{Order, OrderProblem, OrderSetting};
 use crate::proof;
@@ -24,7 +25,7 @@ pub(super) enum Compared {
         /// Were both normal forms in the table?
         known: bool,
         /// That they are equal; nothing if the proof would be too long to write down.
-        proof: Option<proof::Proof>,
+        proof: Option<Box<proof::Proof>>,
     },
     /// The normal forms differ.
     Different([TermId; 2]),
@@ -198,7 +199,7 @@ impl Runner {
                 let writer = Writer::new(&mut self.engine, &self.naming, variables);
                 Compared::Same {
                     known,
-                    proof: writer.proof(left, right),
+                    proof: writer.proof(left, right).map(Box::new),
                 }
             }
             normal => Compared::Different(normal),
@@ -321,39 +322,4 @@ fn copy_back(
         stack.pop();
     }
     known[&term]
-}
-
-pub(super) fn naming(theory: &Theory) -> Naming {
-    let signature = &theory.signature;
-    let mut times: FxHashMap<&str, u32> = FxHashMap::default();
-    for symbol in signature.symbols() {
-        *times.entry(&symbol.name).or_default() += 1;
-    }
-    let symbols = signature.symbols().iter().map(|symbol| {
-        if times[symbol.name.as_str()] > 1 {
-            format!("{}/{}", symbol.name, symbol.arguments.len())
-        } else {
-            symbol.name.clone()
-        }
-    });
-    let types = signature.symbols().iter().map(|symbol| {
-        symbol
-            .arguments
-            .iter()
-            .copied()
-            .chain([symbol.result])
-            .collect::<Vec<Sort>>()
-    });
-    Naming {
-        symbols: symbols.collect(),
-        variables: signature
-            .variables()
-            .iter()
-            .map(|v| (v.name.clone(), v.sort))
-            .collect(),
-        sorts: signature.sorts().to_vec(),
-        laws: theory.laws.iter().map(|law| law.name.clone()).collect(),
-        typed: signature.has_sorts(),
-        types: types.collect(),
-    }
 }

@@ -1,6 +1,6 @@
 //! Evidence as text: its plain terms become terms of a bank of their own, for the printer.
 
-use super::evidence::Naming;
+use super::naming::Naming;
 use crate::language::{Names, Printer, SymbolName};
 use crate::proof::{self, Name, Node, TermIndex, Terms, Way};
 use crate::term::{Bank, Sort, Symbol, TermId, Variable};

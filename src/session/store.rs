@@ -82,12 +82,7 @@ impl Session {
 
     /// Verifies the derived rules of the file by deriving each again, and begins with them.
     fn take_derived(&mut self) -> (usize, Vec<Diagnostic>) {
-        let mut refused: Vec<Diagnostic> = self
-            .theory
-            .refused
-            .iter()
-            .map(|(_, fault)| fault.clone())
-            .collect();
+        let mut refused = self.theory.refusals();
         let (Some(setting), false) = (&self.theory.order, self.theory.derived.is_empty()) else {
             return (0, refused);
         };

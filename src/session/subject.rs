@@ -4,8 +4,8 @@
 //! asked is compared here, with the theory alone, so that no fault of the engine or of what lies
 //! between can lead to an answer about something else.
 
-use super::evidence::Naming;
-use super::runner::naming;
+use super::naming::Naming;
+use super::naming::naming;
 use crate::proof::{Equation, Evidence, Node, TermIndex, Terms, Types};
 use crate::term::{Head, TermId};
 use crate::theory::Theory;

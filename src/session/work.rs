@@ -141,7 +141,7 @@ impl Session {
         let Some(Evidence::Proof(proof)) = &answer.evidence else {
             return None;
         };
-        let naming = super::runner::naming(&self.theory);
+        let naming = super::naming::naming(&self.theory);
         Some(Sheet::new(&self.theory, &naming, &proof.terms).proof(proof))
     }
 

@@ -95,8 +95,8 @@ mod tests {
             prop_assert_eq!(x.mention(y), a.iter().zip(&b).all(|(a, b)| *a > 0 || *b == 0));
             let over = a.iter().zip(&b).any(|(a, b)| a + b > 127);
             prop_assert_eq!(x.plus(y).is_wide(), over);
-            for index in 0..16 {
-                prop_assert_eq!(x.of(index as u32), u32::from(a[index]));
+            for (index, &count) in a.iter().enumerate() {
+                prop_assert_eq!(x.of(index as u32), u32::from(count));
             }
         }
     }

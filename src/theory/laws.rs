@@ -137,3 +137,20 @@ pub struct Derived {
     /// The line that states it.
     pub line: LineId,
 }
+
+/// A line of a derived rule that could not be read, and why.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Refused {
+    /// The line.
+    pub line: LineId,
+    /// How many physical lines come before it.
+    pub before: usize,
+    /// The place in its text, in bytes.
+    pub span: std::ops::Range<usize>,
+    /// What is wrong.
+    pub message: String,
+    /// A few words for the place.
+    pub label: String,
+    /// What to do.
+    pub help: Vec<String>,
+}

@@ -1,7 +1,8 @@
 //! A theory.
 
-use super::{Claim, Derived, Document, Law, LineId, Signature, SignatureFull, SymbolDeclaration};
-use crate::language::Diagnostic;
+use super::{
+    Claim, Derived, Document, Law, LineId, Refused, Signature, SignatureFull, SymbolDeclaration,
+};
 use crate::order::OrderSetting;
 use crate::term::{Bank, Symbol, SymbolInfo};
 use rustc_hash::FxHashSet;
@@ -32,7 +33,7 @@ pub struct Theory {
     pub derived: Vec<Derived>,
     /// Lines of derived rules that could not be read, with why: the file may have been changed by
     /// hand. The next `save` takes them out.
-    pub refused: Vec<(LineId, Diagnostic)>,
+    pub refused: Vec<Refused>,
     /// The text.
     pub document: Document,
     /// The sources that `use` has brought in.

@@ -3,6 +3,9 @@
 //! Every figure is the best of several runs in one process, and every ratio compares two things
 //! that were timed in turn in the same process, so that a slow machine slows both.
 
+// Each benchmark compiles this for itself and uses a part of it.
+#![allow(dead_code)]
+
 use equable::order::{Order, OrderKind, OrderSetting};
 use equable::term::{Sort, Symbol, SymbolInfo};
 use std::time::{Duration, Instant};
