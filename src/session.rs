@@ -55,6 +55,8 @@ pub struct Session {
     library: Library,
     /// Changes when terms of the theory's bank may have got other ids.
     lineage: u32,
+    /// Was the theory ever completed, or worked on to that end?
+    completed: bool,
 }
 
 /// How long things may take that are not told a time.
@@ -121,6 +123,7 @@ impl Session {
             redo: Vec::new(),
             library,
             lineage: 0,
+            completed: false,
         }
     }
 

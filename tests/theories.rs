@@ -1,46 +1,42 @@
 //! The claims of every theory that the program carries.
 
 use equable::session::{Control, Library, Session, Verdict};
+use equable::theory::Expected;
 use std::sync::Arc;
 use std::time::Duration;
 
+/// Every claimed equation is proved. No claim is answered the wrong way, and the checker accepts
+/// all evidence. What should not follow needs, in a theory without a complete rule set, a finite
+/// algebra; then a short look has to be enough to see that nothing is claimed wrongly.
 #[test]
-fn no_claim_is_answered_the_wrong_way() {
-    let folder = std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join("theories");
-    let mut files: Vec<_> = std::fs::read_dir(folder)
-        .unwrap()
-        .map(|entry| entry.unwrap().path())
-        .collect();
-    files.sort();
-    for file in files {
-        let begun = std::time::Instant::now();
-        let opened = Session::open(file.to_str().unwrap(), Library::default());
-        let mut session = opened.unwrap_or_else(|_| panic!("{file:?} opens")).session;
-        let mut control = Control {
-            stop: Arc::default(),
-            watch: &mut |_| (),
-        };
-        let within = Duration::from_secs(2);
-        let results = session.check(within, &mut control, &mut |result| {
-            let answer = &result.answer;
-            assert_ne!(
-                result.is_as_claimed(),
-                Some(false),
-                "{file:?}: {}",
-                result.text
+fn claims_are_settled_as_they_are_stated() {
+    for listed in Library::default().list() {
+        let opened = Session::open(&listed.name, Library::default());
+        let mut session = opened
+            .unwrap_or_else(|_| panic!("{} opens", listed.name))
+            .session;
+        let claims = session.theory().claims.clone();
+        for claim in claims {
+            let mut control = Control {
+                stop: Arc::default(),
+                watch: &mut |_| (),
+            };
+            let within = match claim.expected {
+                Expected::Equal => Duration::from_secs(60),
+                Expected::NotEqual => Duration::from_millis(200),
+            };
+            let answer = session.ask(claim.left, claim.right, within, &mut control);
+            let answer = answer.unwrap_or_else(|fault| panic!("{}: {fault:?}", listed.name));
+            let about = format!("{}: {} {:?}", listed.name, answer.question, answer.frontier);
+            assert!(
+                answer.fault.is_none(),
+                "{about} {:?}",
+                answer.fault.as_ref().map(|f| &f.0)
             );
-            assert!(answer.fault.is_none(), "{file:?}: {}", result.text);
-            if answer.verdict == Verdict::Undecided {
-                println!("  undecided: {} {:?}", result.text, answer.frontier);
+            match claim.expected {
+                Expected::Equal => assert_eq!(answer.verdict, Verdict::Equal, "{about}"),
+                Expected::NotEqual => assert_ne!(answer.verdict, Verdict::Equal, "{about}"),
             }
-        });
-        let results = results.unwrap_or_else(|fault| panic!("{file:?}: {fault:?}"));
-        println!(
-            "{:?} {} claims {:?} {:?}",
-            file.file_name().unwrap(),
-            results.len(),
-            begun.elapsed(),
-            session.status().complete
-        );
+        }
     }
 }

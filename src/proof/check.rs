@@ -6,6 +6,8 @@ use super::check_complete::check_complete;
 use super::evidence::Evidence;
 use super::json::from_json;
 use super::work::{Outcome, Work, WorkLimit};
+use std::sync::Arc;
+use std::sync::atomic::AtomicBool;
 
 /// What copying a term costs, in memory above all.
 const UNITS_PER_TERM: u64 = 15;
@@ -17,13 +19,22 @@ const UNITS_PER_VALUE: u64 = 12;
 /// about: compare [`Evidence::laws`], [`Evidence::types`] and [`Evidence::claim`] with the theory
 /// and the question.
 pub fn check(evidence: &Evidence, limit: WorkLimit) -> Outcome {
-    let mut work = Work::new(limit);
+    judge(evidence, &mut Work::new(limit))
+}
+
+/// Judges evidence until the flag is set; then, as when the limit is reached, the evidence is
+/// neither accepted nor rejected.
+pub fn check_until(evidence: &Evidence, limit: WorkLimit, stop: Arc<AtomicBool>) -> Outcome {
+    judge(evidence, &mut Work::until(limit, stop))
+}
+
+fn judge(evidence: &Evidence, work: &mut Work) -> Outcome {
     // The checkers copy the terms, since they make instances.
     let copy = work.spend(evidence.terms().len() as u64 * UNITS_PER_TERM);
     let result = copy.and_then(|()| match evidence {
-        Evidence::Proof(proof) => check_proof(proof, &mut work),
-        Evidence::Algebra(algebra) => check_algebra(algebra, &mut work),
-        Evidence::Complete(set) => check_complete(set, &mut work),
+        Evidence::Proof(proof) => check_proof(proof, work),
+        Evidence::Algebra(algebra) => check_algebra(algebra, work),
+        Evidence::Complete(set) => check_complete(set, work),
     });
     result.into()
 }

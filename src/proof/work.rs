@@ -1,5 +1,8 @@
 //! What a check costs and how it can end.
 
+use std::sync::Arc;
+use std::sync::atomic::{AtomicBool, Ordering};
+
 /// How much a check may do, in units of about one visited node; a new term costs several.
 ///
 /// The default keeps a check within about a gigabyte and within seconds to tens of seconds.
@@ -65,21 +68,46 @@ impl From<Result<(), Stop>> for Outcome {
 #[derive(Debug)]
 pub(super) struct Work {
     left: u64,
+    /// Set from outside to stop.
+    stop: Option<Arc<AtomicBool>>,
 }
+
+/// The flag is looked at once in 2¹² units of work, a few hundred a second at least.
+const LOOK_EVERY: u32 = 12;
 
 /// What a new term costs, so that the limit also bounds memory.
 pub(super) const NEW_TERM: u64 = 20;
 
 impl Work {
     pub(super) fn new(limit: WorkLimit) -> Self {
-        Work { left: limit.0 }
+        Work {
+            left: limit.0,
+            stop: None,
+        }
+    }
+
+    /// The same, until the flag is set.
+    pub(super) fn until(limit: WorkLimit, stop: Arc<AtomicBool>) -> Self {
+        Work {
+            stop: Some(stop),
+            ..Work::new(limit)
+        }
     }
 
     /// Takes `units` from what is left, or stops the check.
     pub(super) fn spend(&mut self, units: u64) -> Result<(), Stop> {
         match self.left.checked_sub(units) {
             Some(left) => {
+                let look = left >> LOOK_EVERY != self.left >> LOOK_EVERY;
                 self.left = left;
+                if look
+                    && self
+                        .stop
+                        .as_ref()
+                        .is_some_and(|s| s.load(Ordering::Relaxed))
+                {
+                    return Err(Stop::TooCostly);
+                }
                 Ok(())
             }
             None => {

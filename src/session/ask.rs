@@ -8,6 +8,8 @@ use super::{Answer, By, Frontier, ProgramFault, Session, SessionFault, Verdict};
 use crate::proof::{self, Evidence, WorkLimit};
 use crate::rewrite::Stopped;
 use crate::term::TermId;
+use std::sync::Arc;
+use std::sync::atomic::{AtomicBool, Ordering};
 use std::time::{Duration, Instant};
 
 /// How much checking one answer's evidence may take; see [`WorkLimit`].
@@ -44,7 +46,6 @@ impl Session {
                 .run(&self.theory, Some((left, right)), &mut work)?;
             shown = self.by_search(left, right, ended);
         }
-        let interrupted = work.is_stopped();
         let number = self.next_answer();
         let question = self.equation_text(left, "=", right);
         let mut answer = Answer {
@@ -61,8 +62,9 @@ impl Session {
             outdated: false,
         };
         let check_begun = Instant::now();
-        let remark = self.judge(shown, (left, right), &mut answer);
+        let remark = self.judge(shown, (left, right), &mut answer, &control.stop);
         answer.checking = check_begun.elapsed();
+        let interrupted = control.stop.load(Ordering::Relaxed);
         if answer.verdict == Verdict::NotEqual {
             answer.normal = self.normal_texts(answer.evidence.as_ref());
         }
@@ -140,6 +142,7 @@ impl Session {
         shown: Shown,
         question: (TermId, TermId),
         answer: &mut Answer,
+        stop: &Arc<AtomicBool>,
     ) -> Option<String> {
         let (verdict, by, evidence) = match shown {
             Shown::Equal(by, evidence) => (Verdict::Equal, by, evidence),
@@ -153,12 +156,15 @@ impl Session {
         let Some(evidence) = evidence else {
             return Some("the evidence would be too large to write down and check".to_owned());
         };
-        match self.verify(&evidence, Some(question)) {
+        match self.verify(&evidence, Some(question), stop) {
             proof::Outcome::Accepted => {
                 answer.verdict = verdict;
                 answer.by = Some(by);
                 answer.evidence = Some(evidence);
                 None
+            }
+            proof::Outcome::TooCostly if stop.load(Ordering::Relaxed) => {
+                Some("evidence was found; checking it was interrupted".to_owned())
             }
             proof::Outcome::TooCostly => {
                 Some("evidence was found, but it is too costly to check".to_owned())
@@ -175,9 +181,10 @@ impl Session {
         &self,
         evidence: &Evidence,
         question: Option<(TermId, TermId)>,
+        stop: &Arc<AtomicBool>,
     ) -> proof::Outcome {
         match is_about(&self.theory, evidence, question) {
-            Ok(()) => proof::check(evidence, CHECK_LIMIT),
+            Ok(()) => proof::check_until(evidence, CHECK_LIMIT, stop.clone()),
             Err(reason) => proof::Outcome::Rejected {
                 place: "laws and claim".to_owned(),
                 reason,

@@ -133,8 +133,12 @@ impl Session {
         }
     }
 
-    /// Writes the derived rules, with the order that they decrease in, into the document.
+    /// Writes the derived rules, with the order that they decrease in, into the document, if
+    /// somebody has asked for them: by completing, or by saving them before.
     fn store_derived(&mut self) {
+        if !self.completed && self.theory.derived.is_empty() {
+            return;
+        }
         let Some(runner) = self.workers.best_ref() else {
             return;
         };
@@ -145,6 +149,7 @@ impl Session {
         let derived: Vec<Derived> = runner.derived(&mut self.theory.bank, &self.theory.laws);
         if self.theory.order.is_none() {
             set_order(&mut self.theory, Some(setting));
+            self.workers.state_order();
         }
         set_derived(&mut self.theory, derived);
     }

@@ -10,6 +10,8 @@ use crate::language::print_order;
 use crate::proof::{self, Evidence};
 use crate::rewrite::Stopped;
 use crate::term::TermId;
+use std::sync::Arc;
+use std::sync::atomic::{AtomicBool, Ordering};
 use std::time::{Duration, Instant};
 
 /// A trace of more numbers than this is not written down.
@@ -25,6 +27,7 @@ impl Session {
         control: &mut Control,
     ) -> Result<Completion, SessionFault> {
         let begun = Instant::now();
+        self.completed = true;
         self.workers.catch_up(&self.theory, self.lineage)?;
         let formed = self.workers.formed();
         let mut work = Work::new(control, "completing", within).formed_before(formed);
@@ -59,7 +62,7 @@ impl Session {
         };
         if let Ended::Complete(_) = ended {
             let set = runner.complete_set(None).map(Evidence::Complete);
-            self.accept(set, &mut completion);
+            self.accept(set, &mut completion, &control.stop);
         }
         completion.elapsed = begun.elapsed();
         Ok(completion)
@@ -144,13 +147,23 @@ impl Session {
         Some(Sheet::new(&self.theory, &naming, &proof.terms).proof(proof))
     }
 
-    fn accept(&self, evidence: Option<Evidence>, completion: &mut Completion) {
+    fn accept(
+        &self,
+        evidence: Option<Evidence>,
+        completion: &mut Completion,
+        stop: &Arc<AtomicBool>,
+    ) {
         let Some(evidence) = evidence else {
             completion.remark = Some("the evidence could not be written down".to_owned());
             return;
         };
-        match self.verify(&evidence, None) {
+        match self.verify(&evidence, None, stop) {
             proof::Outcome::Accepted => completion.complete = true,
+            proof::Outcome::TooCostly if stop.load(Ordering::Relaxed) => {
+                completion.stopped = Some(Stopped::Interrupted);
+                completion.remark =
+                    Some("no pair is left; checking the rule set was interrupted".to_owned());
+            }
             proof::Outcome::TooCostly => {
                 completion.remark =
                     Some("no pair is left, but the rule set is too costly to check".to_owned());

@@ -55,12 +55,21 @@ pub(super) struct Workers {
     settled: bool,
     /// Which ids the terms of the theory had when the engines took them in.
     lineage: u32,
+    /// The order that the theory states.
+    stated: Option<OrderSetting>,
 }
 
 impl Workers {
     /// Engines for the theory as it is: those there are, with what was added since, or new ones.
     pub(super) fn catch_up(&mut self, theory: &Theory, lineage: u32) -> Result<(), NoOrder> {
         if self.lineage != lineage {
+            *self = Workers {
+                lineage,
+                ..Workers::default()
+            };
+        }
+        if !self.runners.is_empty() && self.stated != theory.order {
+            // Old steps could cycle under another order, so nothing is kept.
             *self = Workers {
                 lineage,
                 ..Workers::default()
@@ -107,6 +116,7 @@ impl Workers {
     fn fresh(theory: &Theory) -> Result<Self, NoOrder> {
         let mut workers = Workers {
             planned: Workers::plan(theory)?,
+            stated: theory.order.clone(),
             ..Workers::default()
         };
         workers.start_next(theory)?;
@@ -140,9 +150,16 @@ impl Workers {
         Ok(planned)
     }
 
+    /// From now on the order of the engine that answers is stated, and the only one.
+    pub(super) fn state_order(&mut self) {
+        self.settle(self.best);
+        self.stated = self.runners.first().map(|runner| runner.setting.clone());
+    }
+
     /// Begins with rules that were derived under a stated order.
     pub(super) fn begin_with(runner: Runner) -> Self {
         Workers {
+            stated: Some(runner.setting.clone()),
             runners: vec![runner],
             tried: 1,
             ..Workers::default()
