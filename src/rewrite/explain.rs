@@ -76,9 +76,21 @@ impl System {
         None
     }
 
+    /// What a rule makes of a term, to the letter: the table may have the subterms of that in
+    /// normal form already.
+    fn exact(&mut self, term: TermId, by: Use) -> TermId {
+        self.matcher.rebind(
+            &self.bank,
+            self.rules[by.rule.index()].sides(by.backward).0,
+            term,
+        );
+        self.replacement(by)
+            .expect("what was rewritten can be rewritten again")
+    }
+
     /// How many rule steps lead from one term to another that it was rewritten to, each distinct
     /// subterm's steps counted once; nothing if the table does not lead there.
-    pub fn count_steps(&self, from: TermId, to: TermId) -> Option<usize> {
+    pub fn count_steps(&mut self, from: TermId, to: TermId) -> Option<usize> {
         let mut seen = FxHashSet::default();
         let mut count = 0;
         let mut stack = vec![(from, to)];
@@ -91,7 +103,10 @@ impl System {
                 .unwrap_or_else(|| vec![(to, Reason::Arguments)]);
             let mut here = from;
             for (next, reason) in links {
-                if reason != Reason::Arguments {
+                if let Reason::Rule(by) = reason {
+                    count += 1;
+                    stack.push((self.exact(here, by), next));
+                } else if reason == Reason::Canonical {
                     count += 1;
                 } else if self.bank.head(here) == self.bank.head(next) {
                     let arguments = self.bank.arguments(here).iter().copied();
@@ -109,7 +124,7 @@ impl System {
     ///
     /// Nothing if the table does not lead there, or if the steps and their places together would
     /// take more than `most` numbers. Costs the steps times their depth.
-    pub fn explain(&self, from: TermId, to: TermId, most: usize) -> Option<Vec<Step>> {
+    pub fn explain(&mut self, from: TermId, to: TermId, most: usize) -> Option<Vec<Step>> {
         let mut steps = Vec::new();
         let mut places = Places::default();
         let mut taken = 0;
@@ -144,13 +159,18 @@ impl System {
                         Reason::Rule(by) => StepBy::Rule(by),
                         _ => StepBy::Canonical,
                     };
+                    let made = match *reason {
+                        Reason::Rule(by) => self.exact(from, by),
+                        _ => *after,
+                    };
+                    stack.push((made, *after, at));
                     let at = places.path(at);
                     taken += 1 + at.len();
                     steps.push(Step {
                         by,
                         at,
                         before: from,
-                        after: *after,
+                        after: made,
                     });
                 }
                 Some(links) => {

@@ -5,7 +5,7 @@
 //! an explicit list of what is still to be read, so that backing up is cutting a list.
 
 use super::Use;
-use crate::term::{Bank, Head, Sort, Substitution, Symbol, TermId};
+use crate::term::{Bank, Head, Sort, Substitution, Symbol, TermId, match_term};
 use rustc_hash::FxHashMap;
 
 /// The tree. Inserting, removing and one path of a search cost the size of the pattern.
@@ -290,6 +290,18 @@ impl Matcher {
             alternative = 0;
         }
         Some(node)
+    }
+
+    /// Matches one pattern alone, as if it were the last hit of a search; it must match.
+    pub(super) fn rebind(&mut self, bank: &Bank, pattern: TermId, subject: TermId) {
+        self.unbind(0);
+        self.choices.clear();
+        self.leaf = END;
+        let matches = match_term(bank, pattern, subject, &mut self.substitution);
+        debug_assert!(matches);
+        let variables = bank.variables(pattern);
+        self.bound
+            .extend(variables.iter().map(|variable| variable.index));
     }
 
     /// Gives a variable that the last hit left open a value, until the search goes on.

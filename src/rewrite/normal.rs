@@ -1,7 +1,8 @@
 //! Normal forms: from the table where they are known, else by rewriting from the inside out.
 
-use super::{Reason, RuleId, System, Use};
-use crate::term::{Substitution, TermId};
+use super::rule::Operation;
+use super::{Reason, System, Use};
+use crate::term::{Substitution, Symbol, TermId};
 use std::sync::Arc;
 use std::sync::atomic::{AtomicBool, Ordering};
 use std::time::Instant;
@@ -91,8 +92,21 @@ pub(super) struct Frame {
     pub(super) state: u32,
 }
 
+/// A replacing side that is being built.
+#[derive(Clone, Copy)]
+pub(super) struct Build {
+    by: Use,
+    /// The operation to go on with.
+    next: usize,
+    /// Where the values of the rule's variables begin among the saved ones.
+    first: usize,
+}
+
 /// The value on top is the normal form of the frame's term.
 pub(super) const SETTLE: u32 = u32::MAX;
+/// The frame's term is being rewritten by a rule whose replacing side is being built, each subterm
+/// in normal form before the one above it, so that what would be rewritten anyway is not built.
+pub(super) const BUILD: u32 = u32::MAX - 2;
 /// The frame's term is a sum (or product, …) whose flattened arguments are brought to normal form.
 pub(super) const SPINE: u32 = u32::MAX - 1;
 
@@ -108,6 +122,9 @@ impl System {
         self.frames.clear();
         self.values.clear();
         self.spines.clear();
+        self.leaves.clear();
+        self.builds.clear();
+        self.saved.clear();
         self.visit(term);
         while let Some(frame) = self.frames.last_mut() {
             let Frame { term, state } = *frame;
@@ -116,6 +133,10 @@ impl System {
                     self.frames.pop();
                     let value = self.values[self.values.len() - 1];
                     self.table.set_normal(term, value, self.generation);
+                }
+                BUILD => {
+                    limits.poll(self.bank.len())?;
+                    self.continue_build(term);
                 }
                 SPINE => {
                     limits.poll(self.bank.len())?;
@@ -179,6 +200,12 @@ impl System {
             });
         }
         self.values.truncate(start);
+        self.finish(symbol, built);
+    }
+
+    /// Pushes the normal form of a term whose arguments are in normal form.
+    #[inline]
+    fn finish(&mut self, symbol: Symbol, built: TermId) {
         if self.table.normal(built, self.generation).is_some() || self.table.next(built).is_some() {
             return self.visit(built);
         }
@@ -188,49 +215,84 @@ impl System {
         {
             return self.start_spine(symbol, built);
         }
-        match self.root_step(built, None) {
-            Some((next, by)) => {
-                self.table.set_step(built, next, Reason::Rule(by));
-                self.frames.push(Frame {
-                    term: built,
-                    state: SETTLE,
-                });
-                self.visit(next);
-            }
-            None => {
-                self.table.set_normal(built, built, self.generation);
-                self.values.push(built);
-            }
-        }
-    }
-
-    /// One rewrite at the root by an active rule other than `except`.
-    #[inline]
-    pub(super) fn root_step(
-        &mut self,
-        term: TermId,
-        except: Option<RuleId>,
-    ) -> Option<(TermId, Use)> {
-        self.matcher.start(term);
+        self.matcher.start(built);
         while let Some(by) = self.matcher.next(&self.index, &self.bank) {
-            if except == Some(by.rule) {
-                continue;
-            }
             if self.rules[by.rule.index()].oriented {
-                let next = self
-                    .replacement(by)
-                    .expect("an oriented rule has no open variables");
-                return Some((next, by));
+                return self.start_build(built, by);
             }
             let mark = self.bank.mark();
             if let Some(next) = self.replacement(by) {
-                if self.order.greater(&self.bank, term, next) {
-                    return Some((next, by));
+                if self.order.greater(&self.bank, built, next) {
+                    return self.rewritten(built, next, by);
                 }
                 self.bank.rollback(mark);
             }
         }
-        None
+        self.table.set_normal(built, built, self.generation);
+        self.values.push(built);
+    }
+
+    /// The term has become another one; goes on with that.
+    fn rewritten(&mut self, term: TermId, next: TermId, by: Use) {
+        self.table.set_step(term, next, Reason::Rule(by));
+        self.frames.push(Frame {
+            term,
+            state: SETTLE,
+        });
+        self.visit(next);
+    }
+
+    /// Begins to build what an oriented rule makes of a term that it has just matched.
+    fn start_build(&mut self, term: TermId, by: Use) {
+        let rule = &self.rules[by.rule.index()];
+        let program = rule.program(by.backward);
+        if program.operations().is_empty() {
+            let next = self.replacement(by);
+            let next = next.expect("an oriented rule has no open variables");
+            return self.rewritten(term, next, by);
+        }
+        let first = self.saved.len();
+        self.saved
+            .extend_from_slice(self.matcher.substitution.values());
+        self.builds.push(Build { by, next: 0, first });
+        self.frames.push(Frame { term, state: BUILD });
+    }
+
+    /// Builds on until a subterm has to be rewritten first, or the whole is there.
+    fn continue_build(&mut self, term: TermId) {
+        let place = self.builds.len() - 1;
+        let waiting = self.frames.len();
+        loop {
+            let Build { by, next, first } = self.builds[place];
+            let program = self.rules[by.rule.index()].program(by.backward);
+            let operation = program.operations()[next];
+            let is_last = next + 1 == program.operations().len();
+            self.builds[place].next += 1;
+            let built = match operation {
+                Operation::Variable(index) => self.saved[first + index as usize],
+                Operation::Ground(ground) => ground,
+                Operation::Apply(symbol, arity) => {
+                    let start = self.values.len() - arity as usize;
+                    let built = self.bank.apply(symbol, &self.values[start..]);
+                    self.values.truncate(start);
+                    built
+                }
+            };
+            if is_last {
+                self.builds.pop();
+                self.saved.truncate(first);
+                self.frames.pop();
+                return self.rewritten(term, built, by);
+            }
+            match operation {
+                Operation::Variable(_) => self.values.push(built),
+                Operation::Ground(_) => self.visit(built),
+                Operation::Apply(symbol, _) => self.finish(symbol, built),
+            }
+            if self.frames.len() > waiting {
+                return;
+            }
+        }
     }
 
     /// Does the test hold for any active rule whose looked-for side matches the term, with the

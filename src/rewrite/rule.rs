@@ -91,7 +91,7 @@ impl Rule {
 }
 
 #[derive(Clone, Copy, Debug)]
-enum Operation {
+pub(super) enum Operation {
     Variable(u32),
     Ground(TermId),
     Apply(Symbol, u32),
@@ -136,6 +136,12 @@ impl Program {
             operations: operations.into(),
             extra,
         }
+    }
+
+    /// In postorder; none for a side that is large.
+    #[inline]
+    pub(super) fn operations(&self) -> &[Operation] {
+        &self.operations
     }
 
     /// The instance of `side`, which this is the program of. All its variables must have values.

@@ -2,7 +2,7 @@
 
 use super::canonical::{AcLaws, Spine};
 use super::index::{Index, Matcher};
-use super::normal::Frame;
+use super::normal::{Build, Frame};
 use super::{Rule, RuleId, RuleState, Table, Use};
 use crate::order::Order;
 use crate::term::{Bank, Mark, Sort, Symbol, SymbolInfo, TermId};
@@ -40,6 +40,9 @@ pub struct System {
     pub(super) values: Vec<TermId>,
     pub(super) spines: Vec<Spine>,
     pub(super) leaves: Vec<TermId>,
+    pub(super) builds: Vec<Build>,
+    /// The values of the variables of the rules whose replacing sides are being built.
+    pub(super) saved: Vec<TermId>,
 }
 
 impl System {
@@ -73,6 +76,8 @@ impl System {
             values: Vec::new(),
             spines: Vec::new(),
             leaves: Vec::new(),
+            builds: Vec::new(),
+            saved: Vec::new(),
         };
         for (index, info) in symbols.iter().enumerate() {
             if info.arguments.is_empty() {

@@ -25,6 +25,12 @@ impl Substitution {
             .unwrap_or(TermId::NONE)
     }
 
+    /// The terms by variable number, [`TermId::NONE`] where there is none.
+    #[inline]
+    pub fn values(&self) -> &[TermId] {
+        &self.slots
+    }
+
     /// Sets, or with [`TermId::NONE`] clears, the term for a variable.
     #[inline]
     pub fn set(&mut self, index: u32, term: TermId) {
