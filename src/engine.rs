@@ -20,4 +20,4 @@ mod waiting;
 
 pub use record::{LawId, Origin, Record, RecordStep};
 pub use replay::{Peak, ReplayError};
-pub use run::{Counts, Engine, Outcome};
+pub use run::{Counts, Engine, Outcome, Question};

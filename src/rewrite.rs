@@ -5,6 +5,7 @@
 //! normal form of a term is and by which steps it is reached. It decides nothing about which rules
 //! there are: that is the engine's business.
 
+mod asking;
 mod canonical;
 mod canonical_steps;
 mod explain;

@@ -137,7 +137,7 @@ impl Engine {
     }
 
     /// What a rule makes of a term that it matches. Variables that the rule leaves open become the
-    /// least constant.
+    /// theory's least ground term.
     pub fn rewrite_by(&mut self, term: TermId, by: Use) -> Option<TermId> {
         let (from, to) = self.system.rule(by.rule).sides(by.backward);
         let mut substitution = Substitution::default();
@@ -146,7 +146,7 @@ impl Engine {
         }
         for variable in self.system.bank.variables(to) {
             if !substitution.get(variable.index).is_some() {
-                substitution.set(variable.index, self.system.least(variable.sort)?);
+                substitution.set(variable.index, self.system.theory_least(variable.sort)?);
             }
         }
         Some(instantiate(&mut self.system.bank, to, &substitution))

@@ -34,6 +34,17 @@ pub struct Counts {
     pub dropped: u64,
 }
 
+/// Two ground terms, in which constants of [`System::question_constant`] stand for variables.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Question {
+    /// One side.
+    pub left: TermId,
+    /// The other side.
+    pub right: TermId,
+    /// The constants.
+    pub constants: Vec<TermId>,
+}
+
 /// How a run ended.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Outcome {
@@ -104,11 +115,11 @@ impl Engine {
 
     /// Saturates until the rules are complete, the question is met, or a bound is reached.
     ///
-    /// The sides of the question must be ground. `progress` is called after each chosen pair.
+    /// `progress` is called after each chosen pair.
     pub fn run(
         &mut self,
         limits: &mut Limits,
-        question: Option<(TermId, TermId)>,
+        question: Option<&Question>,
         mut progress: impl FnMut(&Engine),
     ) -> Outcome {
         let mut seen = 0;
@@ -133,17 +144,13 @@ impl Engine {
         }
     }
 
-    /// Have two ground terms the same normal form?
-    pub fn meets(
-        &mut self,
-        (s, t): (TermId, TermId),
-        limits: &mut Limits,
-    ) -> Result<bool, Stopped> {
-        self.system.set_asking(true);
-        let s = self.system.normal_form(s, limits);
-        let t = s.and_then(|s| Ok((s, self.system.normal_form(t, limits)?)));
-        self.system.set_asking(false);
-        t.map(|(s, t)| s == t)
+    /// Have the two sides the same normal form?
+    pub fn meets(&mut self, question: &Question, limits: &mut Limits) -> Result<bool, Stopped> {
+        self.system.begin_asking(&question.constants);
+        let left = self.system.normal_form(question.left, limits);
+        let right = left.and_then(|s| Ok((s, self.system.normal_form(question.right, limits)?)));
+        self.system.end_asking();
+        right.map(|(s, t)| s == t)
     }
 
     /// Finishes what is begun, then takes one pair.

@@ -115,6 +115,11 @@ fn a_semilattice_is_ground_complete_and_sums_have_one_normal_form() {
     let bc = bank.apply(join, &[b, c]);
     let two = bank.apply(join, &[bc, a]);
     let limits = &mut Limits::none();
-    assert!(engine.meets((one, two), limits).unwrap());
-    assert!(!engine.meets((ab, two), limits).unwrap());
+    let question = |left, right| Question {
+        left,
+        right,
+        constants: Vec::new(),
+    };
+    assert!(engine.meets(&question(one, two), limits).unwrap());
+    assert!(!engine.meets(&question(ab, two), limits).unwrap());
 }

@@ -5,7 +5,7 @@ use super::index::{Index, Matcher};
 use super::normal::{Build, Frame};
 use super::{Rule, RuleId, RuleState, Table, Use};
 use crate::order::Order;
-use crate::term::{Bank, Mark, Sort, Symbol, SymbolInfo, TermId};
+use crate::term::{Bank, Sort, Symbol, SymbolInfo, TermId};
 
 /// Rules, an index of the active ones, and the table of what they have rewritten.
 ///
@@ -22,18 +22,23 @@ pub struct System {
     pub(super) table: Table,
     /// By symbol: the laws, if the symbol is known to be associative and commutative.
     pub(super) ac: Vec<Option<AcLaws>>,
-    /// By sort, the least constant: of the theory, and of the questions.
-    least: [Vec<TermId>; 2],
-    asking: bool,
+    /// By sort, the least ground term of the theory.
+    pub(super) theory_least: Vec<TermId>,
+    /// By sort, the least ground term of the theory with the constants of the question.
+    pub(super) asked_least: Vec<TermId>,
+    /// Are the terms of a question rewritten, by rules some of which leave variables open?
+    pub(super) asking: bool,
+    /// The number of the state of the rules.
+    pub(super) state: u32,
     /// How many active rules have variables on one side only.
-    open_rules: usize,
+    pub(super) open_rules: usize,
     /// The number of the state of the rules, and in the lowest bit whether open variables become
     /// constants of a question: what [`System::generation`] says.
     pub(super) generation: u32,
     active: usize,
-    theory_symbols: usize,
+    pub(super) theory_symbols: usize,
     /// The symbols after those of the theory.
-    question: Vec<(u32, Sort)>,
+    pub(super) question: Vec<(u32, Sort)>,
     pub(super) matcher: Matcher,
     pub(super) built: Vec<TermId>,
     pub(super) frames: Vec<Frame>,
@@ -63,7 +68,9 @@ impl System {
             index: Index::default(),
             table: Table::default(),
             ac: vec![None; symbols.len()],
-            least: Default::default(),
+            theory_least: Vec::new(),
+            asked_least: Vec::new(),
+            state: 1,
             asking: false,
             open_rules: 0,
             generation: 2,
@@ -79,11 +86,7 @@ impl System {
             builds: Vec::new(),
             saved: Vec::new(),
         };
-        for (index, info) in symbols.iter().enumerate() {
-            if info.arguments.is_empty() {
-                system.offer_least(Symbol(index as u32), false);
-            }
-        }
+        system.theory_least = system.least_terms(&[]);
         system
     }
 
@@ -225,89 +228,6 @@ impl System {
     pub fn set_ac(&mut self, symbol: Symbol, laws: AcLaws) {
         self.ac[symbol.index()] = Some(laws);
         self.changed();
-    }
-
-    /// The constant that stands for the variable of a question with this rank among its variables.
-    ///
-    /// It is below every symbol of the theory; a lower rank is below a higher one.
-    pub fn question_constant(&mut self, rank: u32, sort: Sort) -> TermId {
-        let place = self
-            .question
-            .iter()
-            .position(|known| *known == (rank, sort));
-        let place = place.unwrap_or_else(|| {
-            let weight = self.order.variable_weight();
-            let info = SymbolInfo {
-                arguments: Box::new([]),
-                result: sort,
-                weight,
-            };
-            let symbol = self.bank.declare(info);
-            self.order
-                .add_least(symbol, u64::from(rank) << 16 | u64::from(sort.0));
-            self.ac.push(None);
-            self.question.push((rank, sort));
-            self.offer_least(symbol, true);
-            self.changed();
-            self.question.len() - 1
-        });
-        let symbol = Symbol((self.theory_symbols + place) as u32);
-        self.bank.apply(symbol, &[])
-    }
-
-    /// The rank and sort of a question constant; nothing for the theory's symbols.
-    pub fn question_rank(&self, symbol: Symbol) -> Option<(u32, Sort)> {
-        let place = symbol.index().checked_sub(self.theory_symbols)?;
-        self.question.get(place).copied()
-    }
-
-    /// Are the terms that will be rewritten those of a question, in which variables have become
-    /// constants? Then a variable that a rule leaves open becomes the least of these constants;
-    /// otherwise it becomes the theory's least constant, and without one the rule is not used.
-    pub fn set_asking(&mut self, asking: bool) {
-        self.asking = asking;
-        self.generation = self.generation & !1 | u32::from(asking && self.open_rules > 0);
-    }
-
-    /// Terms that were in normal form may no longer be.
-    fn changed(&mut self) {
-        self.generation = self.generation + 2 & !1;
-        self.set_asking(self.asking);
-    }
-
-    /// The term that an open variable of this sort becomes.
-    pub fn least(&self, sort: Sort) -> Option<TermId> {
-        let of = |least: &[TermId]| {
-            let term = least.get(usize::from(sort.0)).copied();
-            term.filter(|term| term.is_some())
-        };
-        let asked = self.asking.then(|| of(&self.least[1])).flatten();
-        asked.or_else(|| of(&self.least[0]))
-    }
-
-    fn offer_least(&mut self, constant: Symbol, of_question: bool) {
-        let sort = usize::from(self.bank.info(constant).result.0);
-        let term = self.bank.apply(constant, &[]);
-        let least = &mut self.least[usize::from(of_question)];
-        if least.len() <= sort {
-            least.resize(sort + 1, TermId::NONE);
-        }
-        if !least[sort].is_some() || self.order.greater(&self.bank, least[sort], term) {
-            least[sort] = term;
-        }
-    }
-
-    /// Takes a mark: until [`System::rollback`], terms and steps are for the moment only.
-    pub fn mark(&mut self) -> Mark {
-        let mark = self.bank.mark();
-        self.table.mark(mark);
-        mark
-    }
-
-    /// Forgets the terms and steps since the mark.
-    pub fn rollback(&mut self, mark: Mark) {
-        self.table.rollback();
-        self.bank.rollback(mark);
     }
 
     /// Does a rule that leaves variables open decrease this term, which it matches?

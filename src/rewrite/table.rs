@@ -67,6 +67,7 @@ const BLANK: Entry = Entry {
 pub struct Table {
     entries: Vec<Entry>,
     marked: Option<Mark>,
+    asking: bool,
     trail: Vec<(TermId, Entry)>,
     /// Steps that were cleared, for the explanation of terms that were rewritten over them.
     cleared: FxHashMap<TermId, Vec<(TermId, u32)>>,
@@ -157,7 +158,7 @@ impl Table {
 
     /// From now on, what is remembered will be taken back by [`Table::rollback`].
     pub fn mark(&mut self, mark: Mark) {
-        debug_assert!(self.marked.is_none());
+        debug_assert!(self.marked.is_none() && !self.asking);
         self.marked = Some(mark);
     }
 
@@ -170,11 +171,24 @@ impl Table {
         self.entries.truncate(mark.terms());
     }
 
+    /// From now on, what is remembered will be taken back by [`Table::end_asking`].
+    pub(super) fn begin_asking(&mut self) {
+        debug_assert!(self.marked.is_none() && !self.asking);
+        self.asking = true;
+    }
+
+    /// Forgets all steps that were made since asking began.
+    pub(super) fn end_asking(&mut self) {
+        self.asking = false;
+        while let Some((term, before)) = self.trail.pop() {
+            self.entries[term.index()] = before;
+        }
+    }
+
     #[inline]
     fn note(&mut self, term: TermId) {
-        if let Some(mark) = self.marked
-            && mark.has(term)
-        {
+        let keep = |mark: Mark| mark.has(term);
+        if self.asking || self.marked.is_some_and(keep) {
             let before = self.entries.get(term.index()).copied().unwrap_or(BLANK);
             self.trail.push((term, before));
         }

@@ -1,12 +1,13 @@
 //! The ladder: a question goes from the cheapest rung to the dearest.
 
 use super::control::{Control, Work};
+use super::runner::Compared;
 use super::sheet::Sheet;
 use super::subject::is_about;
 use super::workers::Ended;
 use super::{Answer, By, Frontier, ProgramFault, Session, SessionFault, Verdict};
 use crate::proof::{self, Evidence, WorkLimit};
-use crate::rewrite::Stopped;
+use crate::rewrite::{Limits, Stopped};
 use crate::term::TermId;
 use std::sync::Arc;
 use std::sync::atomic::{AtomicBool, Ordering};
@@ -44,7 +45,7 @@ impl Session {
             let ended = self
                 .workers
                 .run(&self.theory, Some((left, right)), &mut work)?;
-            shown = self.by_search(left, right, ended);
+            shown = self.by_search(left, right, ended, &control.stop);
         }
         let number = self.next_answer();
         let question = self.equation_text(left, "=", right);
@@ -82,31 +83,28 @@ impl Session {
             return Shown::Nothing(None);
         };
         let asked = runner.ask(&self.theory, left, right);
-        let system = &runner.engine.system;
-        let known = system.known_normal_form(asked.left).is_some()
-            && system.known_normal_form(asked.right).is_some();
-        let mut limits = work.limits(None);
-        let normal = runner
-            .normal_form(asked.left, &mut limits)
-            .and_then(|s| Ok((s, runner.normal_form(asked.right, &mut limits)?)));
-        let Ok((s, t)) = normal else {
-            return Shown::Nothing(None);
-        };
-        if s == t {
-            let by = if known { By::Table } else { By::NormalForms };
-            return Shown::Equal(by, runner.proof(&asked).map(Evidence::Proof));
+        // Half of the time is left for the search, if rewriting does not end.
+        let mut limits = work.limits(work.budget().map(|budget| budget / 2));
+        match runner.compare(&asked, &mut limits) {
+            Ok(Compared::Same { known, proof }) => {
+                let by = if known { By::Table } else { By::NormalForms };
+                Shown::Equal(by, proof.map(Evidence::Proof))
+            }
+            Ok(Compared::Different(normal)) if runner.engine.is_complete() => {
+                let set = runner.complete_set(Some((&asked, normal)));
+                Shown::NotEqual(set.map(Evidence::Complete))
+            }
+            _ => Shown::Nothing(None),
         }
-        if runner.engine.is_complete() {
-            return Shown::NotEqual(
-                runner
-                    .complete_set(Some((&asked, [s, t])))
-                    .map(Evidence::Complete),
-            );
-        }
-        Shown::Nothing(None)
     }
 
-    fn by_search(&mut self, left: TermId, right: TermId, ended: Ended) -> Shown {
+    fn by_search(
+        &mut self,
+        left: TermId,
+        right: TermId,
+        ended: Ended,
+        stop: &Arc<AtomicBool>,
+    ) -> Shown {
         let (place, by) = match ended {
             Ended::Met(place) => (place, By::Proof),
             Ended::Complete(place) => (place, By::Complete),
@@ -114,21 +112,19 @@ impl Session {
         };
         let runner = self.workers.get(place);
         let asked = runner.ask(&self.theory, left, right);
-        // Bounded by memory only: the rules are complete, or the terms have met already.
-        let mut limits = crate::rewrite::Limits::none();
-        let s = runner.normal_form(asked.left, &mut limits);
-        let t = runner.normal_form(asked.right, &mut limits);
-        match (s, t) {
-            (Ok(s), Ok(t)) if s == t => {
+        // The rules are complete, or the terms have met already: this takes no search.
+        let mut limits = Limits::new(stop.clone());
+        match runner.compare(&asked, &mut limits) {
+            Ok(Compared::Same { proof, .. }) => {
                 let by = if by == By::Complete {
                     By::NormalForms
                 } else {
                     by
                 };
-                Shown::Equal(by, runner.proof(&asked).map(Evidence::Proof))
+                Shown::Equal(by, proof.map(Evidence::Proof))
             }
-            (Ok(s), Ok(t)) if by == By::Complete => {
-                let set = runner.complete_set(Some((&asked, [s, t])));
+            Ok(Compared::Different(normal)) if by == By::Complete => {
+                let set = runner.complete_set(Some((&asked, normal)));
                 Shown::NotEqual(set.map(Evidence::Complete))
             }
             _ => Shown::Nothing(Some(ended)),

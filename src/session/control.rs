@@ -67,6 +67,10 @@ impl<'a, 'c> Work<'a, 'c> {
         self
     }
 
+    pub(super) fn budget(&self) -> Option<Duration> {
+        self.budget
+    }
+
     pub(super) fn elapsed(&self) -> Duration {
         self.begun.elapsed()
     }

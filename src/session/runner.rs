@@ -1,10 +1,10 @@
 //! A theory in an engine.
 
 use super::evidence::{ClaimVariables, Naming, Writer};
-use crate::engine::Engine;
+use crate::engine::{Engine, Question};
 use crate::order::{Order, OrderProblem, OrderSetting};
 use crate::proof;
-use crate::rewrite::{Limits, RuleId};
+use crate::rewrite::{Limits, RuleId, Stopped};
 use crate::term::{Copier, Sort, TermId, Variable};
 use crate::theory::Theory;
 use rustc_hash::FxHashMap;
@@ -13,9 +13,30 @@ use std::rc::Rc;
 /// A question in an engine: ground terms, in which constants stand for the variables.
 #[derive(Clone, Debug)]
 pub(super) struct Asked {
-    pub(super) left: TermId,
-    pub(super) right: TermId,
+    pub(super) question: Question,
     pub(super) variables: ClaimVariables,
+}
+
+/// What the rules say of a question.
+pub(super) enum Compared {
+    /// The sides have the same normal form.
+    Same {
+        /// Were both normal forms in the table?
+        known: bool,
+        /// That they are equal; nothing if the proof would be too long to write down.
+        proof: Option<proof::Proof>,
+    },
+    /// The normal forms differ.
+    Different([TermId; 2]),
+}
+
+/// A term's normal form.
+pub(super) struct Rewritten {
+    pub(super) normal: TermId,
+    /// How many steps lead there, those of equal subterms counted once.
+    pub(super) steps: Option<usize>,
+    /// The chain, its rules cited and not proved.
+    pub(super) chain: Option<proof::Proof>,
 }
 
 /// An engine with one order, and what of the theory it has.
@@ -143,44 +164,71 @@ impl Runner {
             .iter()
             .map(|v| ((rank[v], v.sort), name(v).to_owned()))
             .collect();
+        let mut constants: Vec<TermId> = constants.into_values().collect();
+        constants.sort_unstable();
         Asked {
-            left,
-            right,
+            question: Question {
+                left,
+                right,
+                constants,
+            },
             variables,
         }
     }
 
-    /// The normal form of a question's term, or why it was stopped.
-    pub(super) fn normal_form(
-        &mut self,
-        term: TermId,
-        limits: &mut Limits,
-    ) -> Result<TermId, crate::rewrite::Stopped> {
-        self.engine.system.set_asking(true);
-        let normal = self.engine.system.normal_form(term, limits);
-        self.engine.system.set_asking(false);
-        normal
-    }
-
-    /// The proof that the sides of a question are equal, once their normal forms are the same.
-    /// Nothing if it would be too long.
-    pub(super) fn proof(&mut self, asked: &Asked) -> Option<proof::Proof> {
-        self.engine.system.set_asking(true);
-        let writer = Writer::new(&mut self.engine, &self.naming, &asked.variables);
-        let proof = writer.proof(asked.left, asked.right);
-        self.engine.system.set_asking(false);
-        proof
-    }
-
-    /// The chain from a question's left side to its normal form, as a proof without lemmas' proofs.
-    pub(super) fn trace(
+    /// Compares the normal forms of a question's sides; proves them equal if they are.
+    pub(super) fn compare(
         &mut self,
         asked: &Asked,
-        normal: TermId,
+        limits: &mut Limits,
+    ) -> Result<Compared, Stopped> {
+        let Asked {
+            question,
+            variables,
+        } = asked;
+        let (left, right) = (question.left, question.right);
+        self.engine.system.begin_asking(&question.constants);
+        let system = &mut self.engine.system;
+        let known =
+            system.known_normal_form(left).is_some() && system.known_normal_form(right).is_some();
+        let normal = system.normal_form(left, limits);
+        let normal = normal.and_then(|s| Ok([s, system.normal_form(right, limits)?]));
+        let compared = normal.map(|normal| match normal {
+            [s, t] if s == t => {
+                let writer = Writer::new(&mut self.engine, &self.naming, variables);
+                Compared::Same {
+                    known,
+                    proof: writer.proof(left, right),
+                }
+            }
+            normal => Compared::Different(normal),
+        });
+        self.engine.system.end_asking();
+        compared
+    }
+
+    /// The normal form of a question's left side, and the chain that leads there if it takes no
+    /// more numbers than `most`.
+    pub(super) fn normal_form(
+        &mut self,
+        asked: &Asked,
         most: usize,
-    ) -> Option<proof::Proof> {
-        let writer = Writer::new(&mut self.engine, &self.naming, &asked.variables);
-        writer.trace(asked.left, normal, most)
+        limits: &mut Limits,
+    ) -> Result<Rewritten, Stopped> {
+        let left = asked.question.left;
+        self.engine.system.begin_asking(&asked.question.constants);
+        let normal = self.engine.system.normal_form(left, limits);
+        let rewritten = normal.map(|normal| {
+            let steps = self.engine.system.count_steps(left, normal);
+            let writer = Writer::new(&mut self.engine, &self.naming, &asked.variables);
+            Rewritten {
+                normal,
+                steps,
+                chain: writer.trace(left, normal, most),
+            }
+        });
+        self.engine.system.end_asking();
+        rewritten
     }
 
     /// The proof of a rule.
@@ -198,7 +246,7 @@ impl Runner {
     ) -> Option<proof::CompleteSet> {
         let none = ClaimVariables::default();
         let variables = question.map_or(&none, |(asked, _)| &asked.variables);
-        let claim = question.map(|(asked, _)| [asked.left, asked.right]);
+        let claim = question.map(|(asked, _)| [asked.question.left, asked.question.right]);
         let normal = question.map(|(_, normal)| normal);
         let writer = Writer::new(&mut self.engine, &self.naming, variables);
         writer.complete(claim.zip(normal)).ok()

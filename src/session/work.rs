@@ -1,6 +1,7 @@
 //! Completing, normal forms, traces and proofs.
 
 use super::control::{Control, Work};
+use super::runner::Rewritten;
 use super::sheet::Sheet;
 use super::workers::Ended;
 use super::{
@@ -85,11 +86,10 @@ impl Session {
             .best()
             .expect("there is an engine after catching up");
         let asked = runner.ask(&self.theory, term, term);
-        let normal = runner.normal_form(asked.left, &mut work.limits(None));
+        let rewritten = runner.normal_form(&asked, 0, &mut work.limits(None));
         let complete = runner.engine.is_complete();
-        let (found, steps, stopped) = match normal {
-            Ok(normal) => {
-                let steps = runner.engine.system.count_steps(asked.left, normal);
+        let (found, steps, stopped) = match rewritten {
+            Ok(Rewritten { normal, steps, .. }) => {
                 let back = runner.term_back(&mut self.theory, normal, &asked.variables);
                 (back, steps, None)
             }
@@ -129,11 +129,9 @@ impl Session {
             .best()
             .expect("there is an engine after catching up");
         let asked = runner.ask(&self.theory, term, term);
-        let normal = runner.normal_form(asked.left, &mut work.limits(None));
-        let normal = normal.map_err(SessionFault::Stopped)?;
-        let chain = runner
-            .trace(&asked, normal, LONGEST_TRACE)
-            .ok_or(SessionFault::Stopped(Stopped::Memory))?;
+        let rewritten = runner.normal_form(&asked, LONGEST_TRACE, &mut work.limits(None));
+        let chain = rewritten.map_err(SessionFault::Stopped)?.chain;
+        let chain = chain.ok_or(SessionFault::Stopped(Stopped::Memory))?;
         let mut sheet = Sheet::new(&self.theory, &runner.naming, &chain.terms);
         Ok(sheet.chain(chain.claim.left, &chain.claim.steps))
     }

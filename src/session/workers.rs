@@ -266,10 +266,10 @@ impl Workers {
         let runner = &mut self.runners[place];
         let asked = question.map(|(s, t)| runner.ask(theory, s, t));
         let others = all - runner.engine.counts().formed;
-        let sides = asked.as_ref().map(|asked| (asked.left, asked.right));
+        let question = asked.as_ref().map(|asked| &asked.question);
         runner
             .engine
-            .run(&mut limits, sides, |engine| work.tell(engine, others))
+            .run(&mut limits, question, |engine| work.tell(engine, others))
     }
 
     /// Keeps the engine that completed and lets the others go.
