@@ -37,7 +37,6 @@ pub fn run(session: Session, mut screen: Screen, file: Option<&str>) -> u8 {
             return status::PROGRAM;
         }
     };
-    // The line editor has handlers of its own; ours come after, so that both are told.
     let signals = Signals::shell();
     signals.set_farewell(terminal::restorer());
     let mut shell = Shell::new(session, screen, signals);
@@ -91,7 +90,6 @@ impl LineEditor {
             .history_ignore_dups(true)?
             .completion_type(CompletionType::List)
             .color_mode(color_mode)
-            .enable_signals(true)
             .build();
         let mut editor = Editor::with_config(config)?;
         editor.set_helper(Some(Helper::new(session.library().clone(), color)));
@@ -193,7 +191,7 @@ impl Lines for Prompted {
                     return Read::Text(text);
                 }
                 Err(ReadlineError::Interrupted) => return Read::Cleared,
-                // A signal that came while something was worked out, or a new size.
+                // The terminal has a new size.
                 Err(ReadlineError::Signal(_)) => {}
                 // Also when the terminal has gone away.
                 Err(_) => return Read::End,

@@ -112,7 +112,7 @@ fn words_of_other_trades_are_understood_as_hints() {
     for (word, meant) in [
         ("exit", "quit"),
         ("complte", "complete"),
-        ("rulez", "rules"),
+        ("symbls", "symbols"),
     ] {
         let ran = place.run(&[], format!("{word}\n"));
         let hint = format!("if a command was meant: {meant}");

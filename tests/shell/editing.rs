@@ -94,7 +94,12 @@ fn a_statement_goes_on_while_a_bracket_is_open() {
     terminal.keys("e\r");
     terminal.see("equal        answer 1");
     terminal.line("(x *");
-    terminal.see("(x *\n     …");
+    terminal.until("the second statement", |screen| {
+        screen.matches("(x *").count() == 2
+    });
+    terminal.until("its continuation", |screen| {
+        screen.trim_end().ends_with('…')
+    });
     terminal.keys(CTRL_C);
     terminal.line("e = e");
     terminal.see("equal        answer 2");

@@ -22,7 +22,7 @@ pub struct Terminal {
 }
 
 /// Only for a program that hangs: no test waits so long otherwise.
-const PATIENCE: Duration = Duration::from_secs(120);
+const PATIENCE: Duration = Duration::from_secs(60);
 
 impl Terminal {
     /// Starts the program with `home` as its home and working folder.

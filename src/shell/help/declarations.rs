@@ -51,7 +51,7 @@ pub const DECLARATION_PAGES: &[Page] = &[
             ),
         ],
         page: "Applied as mask(x, y). infix, prefix and postfix declare operators instead.",
-        example: "function mask 2\nvariable x y\nlaw over: mask(x, mask(x, y)) = mask(x, y)",
+        example: "function mask 2\nvariable x y\nlaw twice: mask(x, mask(x, y)) = mask(x, y)",
     },
     Page {
         word: "infix",
@@ -65,7 +65,7 @@ pub const DECLARATION_PAGES: &[Page] = &[
         page: "The number from 0 to 99 is how strongly it binds: the stronger operator takes its \
                arguments first. The side says what x * y * z is: left (x * y) * z, right x * (y * z), \
                none that brackets are needed. A name may be infix too, as in infix mod 50 left.",
-        example: "infix + 30 left\ninfix * 40 left\nvariable x y z\nlaw over: x * (y + z) = x * y + x * z",
+        example: "infix + 30 left\ninfix * 40 left\nvariable x y z\nlaw spread: x * (y + z) = x * y + x * z",
     },
     Page {
         word: "prefix",

@@ -78,7 +78,10 @@ fn short_proof(
         Place::Batch => "the shell shows all".to_owned(),
     };
     if left_out > 0 {
-        let more = format!("… {} more; {all}", count(left_out, "step"));
+        let more = match left_out {
+            1 => format!("… 1 more step; {all}"),
+            _ => format!("… {} more steps; {all}", number(left_out as u128)),
+        };
         text += &fold(&more, look.width, 4);
     }
     if !proof.lemmas.is_empty() {

@@ -110,13 +110,11 @@ pub fn proof(proof: &ProofText, question: &str, look: Look, breaker: Breaker<'_>
         text += &chain(&lemma.lines, look, breaker);
         text.push('\n');
     }
-    if !proof.lemmas.is_empty() {
-        text += &look.ink(
-            Ink::Strong,
-            fold_hanging(question, look.width, 0, 4).trim_end(),
-        );
-        text.push('\n');
-    }
+    text += &look.ink(
+        Ink::Strong,
+        fold_hanging(question, look.width, 0, 4).trim_end(),
+    );
+    text.push('\n');
     text + &chain(&proof.lines, look, breaker)
 }
 
