@@ -191,8 +191,21 @@ impl Completer for Helper {
                 pairs.extend(files);
             }
         }
+        let leads = line[..start].trim().is_empty();
+        if let ([only], true) = (&mut pairs[..], leads)
+            && goes_on(&only.replacement)
+        {
+            only.replacement.push(' ');
+        }
         Ok((start, pairs))
     }
+}
+
+/// Does something always follow this word at the start of a line?
+fn goes_on(word: &str) -> bool {
+    let needs_more = |(form, _): &(&str, &str)| form.contains(' ');
+    DECLARATIONS.contains(&word)
+        || commands::named(word).is_some_and(|command| command.forms.iter().all(needs_more))
 }
 
 /// What may follow; only the rest of a command's own word can be taken over.
