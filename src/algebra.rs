@@ -8,9 +8,13 @@
 //!
 //! Elements of a sort are numbered from 0; every sort has at least one.
 
+mod affine;
 mod equation;
 mod evaluate;
 mod limits;
+mod magmas;
+mod pool;
+mod ring;
 mod search;
 mod shrink;
 mod signature;
@@ -21,6 +25,7 @@ mod tests;
 pub use equation::Equation;
 pub use evaluate::{Evaluator, Refutation};
 pub use limits::{Limits, StopReason};
+pub use pool::{Pool, PoolOutcome};
 pub use search::{GivenUp, Outcome, Search};
 pub use shrink::shrink;
 pub use signature::{Problem, Shape, Signature};

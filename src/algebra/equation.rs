@@ -62,6 +62,20 @@ impl Equation {
         equation
     }
 
+    /// A variable is equal to itself.
+    pub(super) fn trivial() -> Self {
+        Equation {
+            variables: vec![Variable {
+                index: 0,
+                sort: crate::term::Sort(0),
+            }],
+            steps: Vec::new(),
+            arguments: Vec::new(),
+            left: 0,
+            right: 0,
+        }
+    }
+
     /// The variables, in the order of their first occurrence: the order of every assignment.
     pub fn variables(&self) -> &[Variable] {
         &self.variables
