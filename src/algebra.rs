@@ -11,6 +11,7 @@
 mod affine;
 mod equation;
 mod evaluate;
+mod known;
 mod limits;
 mod magmas;
 mod pool;
@@ -19,11 +20,10 @@ mod search;
 mod shrink;
 mod signature;
 mod tables;
-#[cfg(test)]
-mod tests;
 
 pub use equation::Equation;
 pub use evaluate::{Evaluator, Refutation};
+pub use known::Known;
 pub use limits::{Limits, StopReason};
 pub use pool::{Pool, PoolOutcome};
 pub use search::{GivenUp, Outcome, Search};

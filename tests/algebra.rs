@@ -1,12 +1,21 @@
-//! Finite algebras for the claims that the theories say do not follow.
+//! Finite algebras: for the claims of the theories, against values from outside, and at random.
 
-use equable::algebra::{Algebra, Counterexample, Limits, Outcome, Problem, Search};
+#[path = "algebra/limits.rs"]
+mod limits;
+#[path = "algebra/outside.rs"]
+mod outside;
+#[path = "algebra/random.rs"]
+mod random;
+
+use equable::algebra::{
+    Algebra, Counterexample, Limits, Outcome, Pool, PoolOutcome, Problem, Search,
+};
 use equable::language::{Loaded, Loader, read_theory};
 use equable::term::{Bank, Head, TermId, Variable};
 use equable::theory::{Expected, Theory};
 use std::collections::HashMap;
 use std::sync::Arc;
-use std::time::{Duration, Instant};
+use std::time::Instant;
 
 fn theories() -> Vec<Theory> {
     let folder = std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join("theories");
@@ -95,6 +104,32 @@ fn check(
     assert_ne!(values[0], values[1]);
 }
 
+/// Looks in the pool and then searches, up to this total size, and checks what is found.
+fn refute(
+    theory: &Theory,
+    sides: (TermId, TermId),
+    largest: u32,
+) -> (Option<Counterexample>, Search) {
+    let laws = theory.laws.iter().map(|law| (law.left, law.right));
+    let problem = Problem::new(&theory.bank, theory.signature.sorts().len(), laws, sides);
+    let mut limits = Limits::none();
+    let mut pool = Pool::new(problem.signature.clone(), problem.laws.clone());
+    let pooled = pool.refute(&problem.claim, &mut limits);
+    let variables = problem.claim.variables().to_vec();
+    let mut search = Search::new(Arc::new(problem), largest);
+    let found = match pooled {
+        PoolOutcome::Refuted(found) => Some(*found),
+        _ => match search.run(&mut limits) {
+            Outcome::Found(found) => Some(*found),
+            _ => None,
+        },
+    };
+    if let Some(found) = &found {
+        check(theory, sides, found, &variables);
+    }
+    (found, search)
+}
+
 /// The claims that have infinite counterexamples only, as the theories themselves say.
 const INFINITE: [&str; 4] = [
     "queue.last-is-not-first",
@@ -105,41 +140,61 @@ const INFINITE: [&str; 4] = [
 
 #[test]
 fn every_claim_that_a_finite_algebra_refutes_is_refuted() {
-    let seconds =
-        std::env::var("SECONDS_EACH").map_or(20.0, |text| text.parse().expect("a number"));
     for theory in theories() {
         let name = theory.name.clone().expect("it has a name");
-        for claim in &theory.claims {
-            if claim.expected != Expected::NotEqual {
-                continue;
-            }
-            let laws = theory.laws.iter().map(|law| (law.left, law.right));
-            let sides = (claim.left, claim.right);
-            let sorts = theory.signature.sorts().len();
-            let problem = Arc::new(Problem::new(&theory.bank, sorts, laws, sides));
-            let begun = Instant::now();
-            let deadline = begun + Duration::from_secs_f64(seconds);
-            let mut limits = Limits::new(Arc::default(), Some(deadline));
-            let mut search = Search::new(problem.clone(), 64);
-            let outcome = search.run(&mut limits);
+        let claims = theory
+            .claims
+            .iter()
+            .filter(|claim| claim.expected == Expected::NotEqual);
+        for claim in claims {
             let full = format!("{name}.{}", claim.name.as_deref().unwrap_or("?"));
-            let ruled = search.ruled_out_total();
-            match outcome {
-                Outcome::Found(found) => {
-                    println!(
-                        "{full}: {:?} smallest {} ({ruled} ruled out) in {:?}",
-                        found.algebra.sizes(),
-                        found.smallest,
-                        begun.elapsed()
-                    );
-                    check(&theory, sides, &found, problem.claim.variables());
+            let infinite = INFINITE.contains(&full.as_str());
+            let begun = Instant::now();
+            let largest = if infinite { 12 } else { 40 };
+            let (found, search) = refute(&theory, (claim.left, claim.right), largest);
+            assert_eq!(found.is_none(), infinite, "{full}");
+            let time = begun.elapsed();
+            match found {
+                Some(found) => {
+                    let label = if found.smallest {
+                        "smallest"
+                    } else {
+                        "perhaps not smallest"
+                    };
+                    println!("{full}: {:?}, {label}, {time:?}", found.algebra.sizes());
                 }
-                other => println!(
-                    "{full}: {other:?}, {ruled} ruled out, given up {:?} in {:?}",
-                    search.given_up(),
-                    begun.elapsed()
-                ),
+                None => println!("{full}: none up to {}, {time:?}", search.ruled_out_total()),
             }
+        }
+    }
+}
+
+#[test]
+fn claims_that_follow_are_never_refuted() {
+    for theory in theories() {
+        for claim in theory
+            .claims
+            .iter()
+            .filter(|claim| claim.expected == Expected::Equal)
+        {
+            let laws = theory.laws.iter().map(|law| (law.left, law.right));
+            let sorts = theory.signature.sorts().len();
+            let problem = Problem::new(&theory.bank, sorts, laws, (claim.left, claim.right));
+            let mut limits = Limits::none();
+            let mut pool = Pool::new(problem.signature.clone(), problem.laws.clone());
+            let pooled = pool.refute(&problem.claim, &mut limits);
+            assert!(
+                matches!(pooled, PoolOutcome::None),
+                "{:?}: {pooled:?}",
+                claim.name
+            );
+            let mut search = Search::new(Arc::new(problem), sorts as u32 + 3);
+            let outcome = search.run(&mut limits);
+            assert!(
+                matches!(outcome, Outcome::Exhausted),
+                "{:?}: {outcome:?}",
+                claim.name
+            );
         }
     }
 }

@@ -29,6 +29,14 @@ pub enum GivenUp {
     Memory,
 }
 
+impl std::fmt::Display for GivenUp {
+    fn fmt(&self, f: &mut std::fmt::Formatter<'_>) -> std::fmt::Result {
+        match self {
+            GivenUp::Memory => write!(f, "the instances of the laws need too much memory"),
+        }
+    }
+}
+
 /// How a search ended.
 #[derive(Clone, Debug)]
 pub enum Outcome {
@@ -49,6 +57,14 @@ pub struct Search {
     ruled_out: Vec<Vec<u32>>,
     given_up: Vec<(Vec<u32>, GivenUp)>,
     round: u32,
+    /// What has been found, while smaller sizes are still being looked at.
+    best: Option<Best>,
+}
+
+struct Best {
+    example: Box<Counterexample>,
+    /// The round in which it was found.
+    round: u32,
 }
 
 /// One vector of sizes.
@@ -63,6 +79,9 @@ struct Attempt {
 /// How many failures one try may meet in the first round; each round allows three times as many.
 const FIRST_FAILURES: u64 = 300;
 
+/// For how many rounds smaller sizes are looked at when something has been found.
+const ROUNDS_FOR_SMALLER: u32 = 3;
+
 impl Search {
     /// A search through all sizes up to this total over all sorts.
     pub fn new(problem: Arc<Problem>, largest_total: u32) -> Self {
@@ -74,6 +93,7 @@ impl Search {
             ruled_out: Vec::new(),
             given_up: Vec::new(),
             round: 1,
+            best: None,
         }
     }
 
@@ -103,20 +123,24 @@ impl Search {
     ///
     /// In each round the sizes that are still open, and some further ones, are each tried with
     /// both cell orders, for a number of failures that grows with the rounds: a size that is hard
-    /// to rule out does not keep the search from the next.
+    /// to rule out does not keep the search from the next. When something is found, smaller sizes
+    /// that are still open get a few rounds more.
     pub fn run(&mut self, limits: &mut Limits) -> Outcome {
         loop {
             if let Err(reason) = limits.look() {
-                return Outcome::Stopped(reason);
+                return self.stopped(reason);
             }
             let Some(mut attempt) = self.next_attempt() else {
-                return Outcome::Exhausted;
+                return match self.take_best() {
+                    Some(found) => Outcome::Found(found),
+                    None => Outcome::Exhausted,
+                };
             };
             match attempt_once(&self.problem, &mut attempt, self.round, limits) {
-                Ok(Run::Found(mut found)) => {
-                    self.open.push(attempt);
-                    found.smallest = found.algebra.total() <= self.ruled_out_total() + 1;
-                    return Outcome::Found(found);
+                Ok(Run::Found(example)) => {
+                    self.put_back(attempt);
+                    let round = self.best.as_ref().map_or(self.round, |best| best.round);
+                    self.best = Some(Best { example, round });
                 }
                 Ok(Run::None) => self.ruled_out.push(attempt.sizes),
                 Ok(Run::TooLarge) => self.given_up.push((attempt.sizes, GivenUp::Memory)),
@@ -126,24 +150,46 @@ impl Search {
                 }
                 Err(reason) => {
                     self.put_back(attempt);
-                    return Outcome::Stopped(reason);
+                    return self.stopped(reason);
                 }
             }
         }
     }
 
-    /// The smallest sizes that have not had their turn in this round.
+    fn stopped(&mut self, reason: StopReason) -> Outcome {
+        match self.take_best() {
+            Some(found) => Outcome::Found(found),
+            None => Outcome::Stopped(reason),
+        }
+    }
+
+    fn take_best(&mut self) -> Option<Box<Counterexample>> {
+        let mut found = self.best.take()?.example;
+        found.smallest = found.algebra.total() <= self.ruled_out_total() + 1;
+        Some(found)
+    }
+
+    /// The smallest sizes that have not had their turn in this round; once something has been
+    /// found, only smaller ones are of interest.
     fn next_attempt(&mut self) -> Option<Attempt> {
+        let total = |sizes: &[u32]| sizes.iter().sum::<u32>();
+        let below = match &self.best {
+            Some(best) => best.example.algebra.total(),
+            None => u32::MAX,
+        };
         loop {
-            let due = |attempt: &Attempt| attempt.round < self.round;
+            let due =
+                |attempt: &Attempt| attempt.round < self.round && total(&attempt.sizes) < below;
             if let Some(place) = self.open.iter().position(due) {
                 return Some(self.open.remove(place));
             }
             let reach = match self.open.first() {
-                Some(first) => first.sizes.iter().sum::<u32>() + 2 + self.round,
+                Some(first) => total(&first.sizes) + 2 + self.round,
                 None => u32::MAX,
             };
-            if self.sizes.next_total() <= reach
+            let next = self.sizes.next_total();
+            if next <= reach
+                && next < below
                 && let Some(sizes) = self.sizes.next()
             {
                 return Some(Attempt {
@@ -152,7 +198,13 @@ impl Search {
                     failures: Vec::new(),
                 });
             }
-            if self.open.is_empty() {
+            let more = |best: &Best| self.round < best.round + ROUNDS_FOR_SMALLER;
+            if !self.best.as_ref().is_none_or(more)
+                || !self
+                    .open
+                    .iter()
+                    .any(|attempt| total(&attempt.sizes) < below)
+            {
                 return None;
             }
             self.round += 1;
@@ -196,26 +248,5 @@ fn run_both(tree: &mut Tree<'_>, failures: u64, limits: &mut Limits) -> Result<R
             tree.run(Order::Weighted, failures, limits)
         }
         settled => Ok(settled),
-    }
-}
-
-/// A search for one algebra of given sizes in which some tables are given.
-pub(super) fn complete(
-    problem: &Problem,
-    sizes: &[u32],
-    given: &[(crate::term::Symbol, &[u8])],
-    failures: u64,
-    limits: &mut Limits,
-) -> Result<Option<Counterexample>, StopReason> {
-    let Some(grid) = Grid::new(problem, sizes, limits.bytes) else {
-        return Ok(None);
-    };
-    let mut tree = Tree::new(&grid, vec![0; grid.cells()]);
-    if !tree.give(given) || !tree.begin(limits)? {
-        return Ok(None);
-    }
-    match tree.run(Order::SmallestDomain, failures, limits)? {
-        Run::Found(found) => Ok(Some(*found)),
-        _ => Ok(None),
     }
 }

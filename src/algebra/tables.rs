@@ -141,6 +141,28 @@ impl Algebra {
         })
     }
 
+    /// The same algebra for a signature that has grown: one element for each new sort, and the
+    /// value 0 everywhere for each new symbol. None if that would be too large.
+    pub fn extended(&self, signature: &Signature) -> Option<Self> {
+        let mut sizes = self.sizes.to_vec();
+        sizes.resize(signature.sorts(), 1);
+        let mut values: Vec<Vec<u8>> = self
+            .tables
+            .iter()
+            .map(|table| table.values.to_vec())
+            .collect();
+        for shape in signature.symbols().iter().skip(values.len()) {
+            let size = |sort: &Sort| sizes[sort.0 as usize] as usize;
+            let cells = shape.arguments.iter().try_fold(1usize, |cells, sort| {
+                cells
+                    .checked_mul(size(sort))
+                    .filter(|&cells| cells <= 1 << 24)
+            });
+            values.push(vec![0; cells?]);
+        }
+        Algebra::new(signature, sizes, values).ok()
+    }
+
     /// The number of elements of each sort.
     pub fn sizes(&self) -> &[u32] {
         &self.sizes

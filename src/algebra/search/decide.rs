@@ -5,7 +5,6 @@ use super::super::tables::{Algebra, Counterexample};
 use super::grid::{Block, Cell, Grid};
 use super::propagate::{examine_all, propagate};
 use super::state::{Conflict, OPEN, Point, State};
-use crate::term::Symbol;
 
 /// Which open cell is decided next. Each order settles problems that the other does not.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -72,20 +71,6 @@ impl<'a> Tree<'a> {
 
     pub(super) fn into_failures(self) -> Vec<u32> {
         self.state.failures
-    }
-
-    /// Sets the tables of these symbols. False if that is impossible. As elements are then no
-    /// longer interchangeable, all have names.
-    pub(super) fn give(&mut self, given: &[(Symbol, &[u8])]) -> bool {
-        self.named.copy_from_slice(&self.grid.sizes);
-        given.iter().all(|&(symbol, values)| {
-            let base = self.grid.blocks[symbol.index()].base;
-            let set = |(cell, &value): (u32, &u8)| {
-                let cell = Cell(base + cell);
-                self.state.restrict(cell, 1 << value).is_ok()
-            };
-            (0..).zip(values).all(set)
-        })
     }
 
     /// Propagates what holds without any decision. False if no algebra has these sizes.

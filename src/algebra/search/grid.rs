@@ -85,6 +85,9 @@ pub(super) struct Grid<'a> {
 const CELL_BYTES: usize = 64;
 const INSTANCE_BYTES: usize = 48;
 
+/// More cells are never decided in a reasonable time; their tables would only take memory.
+const MOST_CELLS: u32 = 1 << 21;
+
 impl<'a> Grid<'a> {
     /// The layout, unless it needs more bytes than these.
     pub(super) fn new(problem: &'a Problem, sizes: &[u32], bytes: usize) -> Option<Self> {
@@ -110,6 +113,9 @@ impl<'a> Grid<'a> {
             .iter()
             .map(|program| program.instances as usize)
             .sum();
+        if base > MOST_CELLS {
+            return None;
+        }
         let cost = (base as usize).checked_mul(CELL_BYTES)?;
         if cost.checked_add(instances.checked_mul(INSTANCE_BYTES)?)? > bytes {
             return None;

@@ -169,6 +169,10 @@ fn find(program: &Program, look: Look, registers: &[u8]) -> Cell {
     }
 }
 
+/// Equations with more subterms are not worth trying them with every value, and the search must
+/// soon notice when it is to stop.
+const LONGEST_LOOK_AHEAD: usize = 1000;
+
 /// Strikes the values of the only open cell below the sides with which they cannot come out.
 fn look_ahead(
     program: &Program,
@@ -177,6 +181,9 @@ fn look_ahead(
     registers: &mut [u8],
 ) -> Result<(), Conflict> {
     let mut remaining = state.domain[blocked.index()];
+    if program.looks.len() > LONGEST_LOOK_AHEAD {
+        return Ok(());
+    }
     let mut keep = remaining;
     while remaining != 0 {
         let value = remaining.trailing_zeros() as u8;
