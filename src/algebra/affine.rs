@@ -157,7 +157,7 @@ pub(super) struct Family<'a> {
     /// Symbols that occur in no law and not in the claim get the constant 0 only.
     pub used: &'a [bool],
     pub plan: &'a Plan,
-    /// How many maps may be tried for all symbols together.
+    /// How many elementary steps may be spent.
     pub most: u64,
 }
 
@@ -181,7 +181,7 @@ impl Family<'_> {
             .iter()
             .map(|shape| vec![0; shape.arguments.len() + 1]);
         let mut maps: Vec<Vec<u8>> = zero.collect();
-        let mut tried = 0;
+        let mut spent = 0;
         let mut depth = 0;
         // Whether the map at the present depth is the first one, to be tested before advancing.
         let mut fresh = true;
@@ -194,6 +194,10 @@ impl Family<'_> {
                 if visit(model, forms).is_break() {
                     return Ok(ControlFlow::Break(()));
                 }
+                // Making and testing an algebra counts as well.
+                let costs = 100 * maps.len() as u64;
+                limits.spend(costs)?;
+                spent += costs;
                 if depth == 0 {
                     return Ok(ControlFlow::Continue(()));
                 }
@@ -209,17 +213,19 @@ impl Family<'_> {
                 depth -= 1;
                 continue;
             }
-            tried += 1;
-            if tried > self.most {
-                return Ok(ControlFlow::Continue(()));
-            }
             let laws = || self.plan.testable[depth].iter().map(|&law| &self.laws[law]);
-            let cost = laws().map(|law| law.registers() * (law.variables().len() + 1));
-            limits.spend(1 + cost.sum::<usize>() as u64)?;
+            let cost = |law: &Equation| (law.registers() * (law.variables().len() + 1)) as u64;
+            let mut costs = 1;
             let holds = laws().all(|law| {
+                costs += cost(law);
                 let [left, right] = forms.sides(ring, &maps, law);
                 left == right
             });
+            limits.spend(costs)?;
+            spent += costs;
+            if spent > self.most {
+                return Ok(ControlFlow::Continue(()));
+            }
             fresh = holds;
             depth += usize::from(holds);
         }

@@ -7,6 +7,7 @@
 //! used in a form in which every byte is a valid index, so that the loop has no check in it.
 
 use super::equation::{Equation, Step};
+use super::limits::{Limits, StopReason};
 use super::tables::{Algebra, Table};
 
 /// An assignment under which the sides of an equation differ.
@@ -48,13 +49,25 @@ impl Evaluator {
     /// An assignment under which the sides differ, if there is one. Costs a look-up for every
     /// assignment and every distinct subterm at most.
     pub fn refute(&mut self, algebra: &Algebra, equation: &Equation) -> Option<Refutation> {
+        let found = self.refute_within(algebra, equation, &mut Limits::none());
+        found.expect("nothing stops it")
+    }
+
+    /// Like [`Evaluator::refute`], within limits: for equations with so many variables that
+    /// running through all assignments takes long.
+    pub fn refute_within(
+        &mut self,
+        algebra: &Algebra,
+        equation: &Equation,
+        limits: &mut Limits,
+    ) -> Result<Option<Refutation>, StopReason> {
         if equation.left() == equation.right() {
-            return None;
+            return Ok(None);
         }
         let ranges = ranges(algebra, equation);
         let probed = probe(algebra, equation, &ranges);
         if probed.is_some() {
-            return probed;
+            return Ok(probed);
         }
         let outer = self.prepare(equation, &ranges);
         let length: usize = ranges[outer..]
@@ -64,6 +77,7 @@ impl Evaluator {
         self.lay_out_variables(&ranges, outer, length);
         let mut assignment = vec![0; outer];
         loop {
+            limits.spend((length * equation.registers()) as u64)?;
             for (register, &value) in assignment.iter().enumerate() {
                 self.single[register] = value as u8;
             }
@@ -75,13 +89,13 @@ impl Evaluator {
                 let mut full = assignment;
                 full.extend(digits(place, &ranges[outer..]));
                 let values = algebra.evaluate(equation, &full);
-                return Some(Refutation {
+                return Ok(Some(Refutation {
                     assignment: full,
                     values,
-                });
+                }));
             }
             if !advance(&mut assignment, &ranges) {
-                return None;
+                return Ok(None);
             }
         }
     }

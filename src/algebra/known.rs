@@ -2,6 +2,7 @@
 
 use super::equation::Equation;
 use super::evaluate::{Evaluator, Refutation};
+use super::limits::{Limits, StopReason};
 use super::signature::Signature;
 use super::tables::Algebra;
 
@@ -32,36 +33,61 @@ impl Known {
 
     /// Fits the algebras to a signature that has grown, and drops those in which not all of
     /// these laws, perhaps new ones, hold. The places of the dropped ones, as they were before.
-    pub fn update(&mut self, signature: &Signature, laws: &[Equation]) -> Vec<usize> {
+    /// When it is stopped, all stay as they were.
+    pub fn update(
+        &mut self,
+        signature: &Signature,
+        laws: &[Equation],
+        limits: &mut Limits,
+    ) -> Result<Vec<usize>, StopReason> {
+        let mut kept = Vec::new();
         let mut dropped = Vec::new();
-        let evaluator = &mut self.evaluator;
-        let kept = std::mem::take(&mut self.algebras).into_iter().enumerate();
-        let kept = kept.filter_map(|(place, algebra)| {
+        for (place, algebra) in self.algebras.iter().enumerate() {
             let grown = algebra.sizes().len() < signature.sorts()
                 || algebra.tables().len() < signature.symbols().len();
             let fitting = if grown {
                 algebra.extended(signature)
             } else {
-                Some(algebra)
+                Some(algebra.clone())
             };
-            let holds = |algebra: &Algebra| laws.iter().all(|law| evaluator.holds(algebra, law));
-            let kept = fitting.filter(holds);
-            if kept.is_none() {
-                dropped.push(place);
+            match fitting {
+                Some(algebra) if holds(&algebra, laws, &mut self.evaluator, limits)? => {
+                    kept.push(algebra);
+                }
+                _ => dropped.push(place),
             }
-            kept
-        });
-        self.algebras = kept.collect();
-        dropped
+        }
+        self.algebras = kept;
+        Ok(dropped)
     }
 
     /// The first algebra in which the claim fails, by its place, with an assignment that shows it.
     /// The claim must be over the signature of the last [`Known::update`], or of the algebras.
-    pub fn refute(&mut self, claim: &Equation) -> Option<(usize, Refutation)> {
-        let evaluator = &mut self.evaluator;
-        let tried = self.algebras.iter().enumerate();
-        tried
-            .into_iter()
-            .find_map(|(place, algebra)| Some((place, evaluator.refute(algebra, claim)?)))
+    pub fn refute(
+        &mut self,
+        claim: &Equation,
+        limits: &mut Limits,
+    ) -> Result<Option<(usize, Refutation)>, StopReason> {
+        for (place, algebra) in self.algebras.iter().enumerate() {
+            let found = self.evaluator.refute_within(algebra, claim, limits)?;
+            if let Some(found) = found {
+                return Ok(Some((place, found)));
+            }
+        }
+        Ok(None)
     }
+}
+
+fn holds(
+    algebra: &Algebra,
+    laws: &[Equation],
+    evaluator: &mut Evaluator,
+    limits: &mut Limits,
+) -> Result<bool, StopReason> {
+    for law in laws {
+        if evaluator.refute_within(algebra, law, limits)?.is_some() {
+            return Ok(false);
+        }
+    }
+    Ok(true)
 }

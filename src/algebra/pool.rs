@@ -43,7 +43,6 @@ pub struct Pool {
     overflown: bool,
     evaluator: Evaluator,
     forms: Forms,
-    most: u64,
 }
 
 enum Model {
@@ -55,8 +54,13 @@ enum Model {
 /// How many algebras are kept at most.
 const MOST_KEPT: usize = 10_000;
 
-/// How many maps are tried over one ring at most, when there are several symbols.
-const MOST_TRIED: u64 = 20_000;
+/// How many elementary steps are spent on one ring at most: a few milliseconds. One binary
+/// operation needs far less; with many symbols the pool is a guess, and search is better.
+const MOST_STEPS: u64 = 500_000;
+
+/// How many steps the test of one law in one small table may take. As sizes are then left out
+/// upward from some size, what is found in a smaller table is still the smallest.
+const LONGEST_TEST: u64 = 1_000_000;
 
 /// Two families of small tables, then the rings.
 const SMALL_FAMILIES: usize = 2;
@@ -84,7 +88,6 @@ impl Pool {
             overflown: false,
             evaluator: Evaluator::default(),
             forms: Forms::default(),
-            most: MOST_TRIED,
         }
     }
 
@@ -117,7 +120,13 @@ impl Pool {
     fn look(&mut self, limits: &mut Limits) -> Result<Option<Counterexample>, StopReason> {
         for model in &self.kept {
             limits.spend(self.problem.claim.registers() as u64)?;
-            let found = refute(model, &self.problem, &mut self.evaluator, &mut self.forms);
+            let found = refute(
+                model,
+                &self.problem,
+                &mut self.evaluator,
+                &mut self.forms,
+                limits,
+            )?;
             if found.is_some() {
                 return Ok(found);
             }
@@ -158,6 +167,14 @@ impl Pool {
         }
         let problem = &self.problem;
         let mut registers = Vec::new();
+        // Testing a table is not interrupted, so it must not take long.
+        let long = |law: &Equation| {
+            let assignments = u64::from(size).saturating_pow(law.variables().len() as u32);
+            assignments.saturating_mul(law.registers() as u64) > LONGEST_TEST
+        };
+        if problem.laws.iter().any(long) {
+            return Ok(None);
+        }
         for table in magmas::all(size) {
             let cost: usize = problem.laws.iter().map(Equation::registers).sum();
             limits.spend(4 * cost as u64)?;
@@ -169,7 +186,13 @@ impl Pool {
             let algebra = Algebra::new(&problem.signature, vec![u32::from(size)], vec![values]);
             let Ok(algebra) = algebra else { continue };
             let model = Model::Small(algebra);
-            let found = refute(&model, problem, &mut self.evaluator, &mut self.forms);
+            let found = refute(
+                &model,
+                problem,
+                &mut self.evaluator,
+                &mut self.forms,
+                limits,
+            )?;
             if found.is_some() {
                 return Ok(found);
             }
@@ -190,19 +213,18 @@ impl Pool {
             laws: &self.problem.laws,
             used: &self.used,
             plan: &self.plan,
-            most: self.most,
+            most: MOST_STEPS,
         };
         let mut found = None;
         let (kept, overflown) = (&mut self.kept, &mut self.overflown);
-        let (problem, evaluator) = (&self.problem, &mut self.evaluator);
+        let problem = &self.problem;
         let _ = family.each(&mut self.forms, limits, |affine, forms| {
-            let model = Model::Affine(affine);
-            found = refute(&model, problem, evaluator, forms);
+            found = refute_affine(&affine, problem, forms);
             if found.is_some() {
                 return ControlFlow::Break(());
             }
             if kept.len() < MOST_KEPT {
-                kept.push(model);
+                kept.push(Model::Affine(affine));
             } else {
                 *overflown = true;
             }
@@ -217,29 +239,32 @@ fn refute(
     problem: &Problem,
     evaluator: &mut Evaluator,
     forms: &mut Forms,
-) -> Option<Counterexample> {
+    limits: &mut Limits,
+) -> Result<Option<Counterexample>, StopReason> {
     match model {
         Model::Small(algebra) => {
-            let found = evaluator.refute(algebra, &problem.claim)?;
-            Some(Counterexample {
+            let found = evaluator.refute_within(algebra, &problem.claim, limits)?;
+            Ok(found.map(|found| Counterexample {
                 algebra: algebra.clone(),
                 assignment: found.assignment,
                 values: found.values,
                 smallest: true,
-            })
+            }))
         }
-        Model::Affine(affine) => {
-            let assignment = affine.refute(&problem.claim, forms)?;
-            let algebra = affine.algebra(&problem.signature)?;
-            let values = algebra.evaluate(&problem.claim, &assignment);
-            // With one element of each sort everything is equal.
-            let smallest = algebra.total() as usize == problem.signature.sorts() + 1;
-            Some(Counterexample {
-                algebra,
-                assignment,
-                values,
-                smallest,
-            })
-        }
+        Model::Affine(affine) => Ok(refute_affine(affine, problem, forms)),
     }
+}
+
+fn refute_affine(affine: &Affine, problem: &Problem, forms: &mut Forms) -> Option<Counterexample> {
+    let assignment = affine.refute(&problem.claim, forms)?;
+    let algebra = affine.algebra(&problem.signature)?;
+    let values = algebra.evaluate(&problem.claim, &assignment);
+    // With one element of each sort everything is equal.
+    let smallest = algebra.total() as usize == problem.signature.sorts() + 1;
+    Some(Counterexample {
+        algebra,
+        assignment,
+        values,
+        smallest,
+    })
 }

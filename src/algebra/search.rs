@@ -79,6 +79,10 @@ struct Attempt {
 /// How many failures one try may meet in the first round; each round allows three times as many.
 const FIRST_FAILURES: u64 = 300;
 
+/// How many times more failures the weighted order may meet than the other: on lattices it is the
+/// better one by far, on some problems with few failures the other is.
+const WEIGHTED_SHARE: u64 = 8;
+
 /// For how many rounds smaller sizes are looked at when something has been found.
 const ROUNDS_FOR_SMALLER: u32 = 3;
 
@@ -242,7 +246,7 @@ fn run_both(tree: &mut Tree<'_>, failures: u64, limits: &mut Limits) -> Result<R
     if !tree.begin(limits)? {
         return Ok(Run::None);
     }
-    match tree.run(Order::SmallestDomain, failures, limits)? {
+    match tree.run(Order::SmallestDomain, failures / WEIGHTED_SHARE, limits)? {
         Run::Unsettled => {
             tree.restart();
             tree.run(Order::Weighted, failures, limits)

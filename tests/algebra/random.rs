@@ -34,7 +34,7 @@ fn term(
     let fitting: Vec<usize> = (0..info.len())
         .filter(|&symbol| info[symbol].result == sort)
         .collect();
-    if depth == 0 || number % 3 == 0 || fitting.is_empty() {
+    if depth == 0 || number.is_multiple_of(3) || fitting.is_empty() {
         let index = u32::from(sort.0) * 3 + number / 3 % 3;
         return bank.variable(Variable { index, sort });
     }
@@ -197,7 +197,7 @@ fn check(case: &Case, problem: &Problem, found: &Counterexample) {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig::with_cases(300))]
+    #![proptest_config(ProptestConfig { cases: 300, failure_persistence: None, ..Default::default() })]
 
     #[test]
     fn search_finds_exactly_what_there_is(

@@ -56,6 +56,8 @@ pub(super) enum Look {
 pub(super) struct Program {
     /// How many values each variable takes.
     pub ranges: Box<[u32]>,
+    /// How many bits its values take in a packed instance.
+    pub bits: Box<[u32]>,
     pub looks: Vec<Look>,
     /// Pairs of a register and a stride.
     pub places: Vec<(u32, u32)>,
@@ -66,6 +68,21 @@ pub(super) struct Program {
     /// Must the sides differ, not be equal?
     pub differ: bool,
     pub instances: u32,
+}
+
+impl Program {
+    /// The instance of this number, with some bits for each variable, so that its values, which
+    /// are read far more often than anything else, are read without division.
+    pub(super) fn pack(&self, number: u32) -> u32 {
+        let (mut rest, mut shift, mut packed) = (number, 0, 0);
+        for (&range, &bits) in self.ranges.iter().zip(&self.bits) {
+            // A variable with a single value has no bits, and may come after all of them are used.
+            packed |= (rest % range).checked_shl(shift).unwrap_or(0);
+            rest /= range;
+            shift += bits;
+        }
+        packed
+    }
 }
 
 /// Everything about one vector of sizes that does not change during the search.
@@ -169,8 +186,16 @@ fn law_program(law: &Equation, blocks: &[Block], sizes: &[u32]) -> Option<Progra
     let instances = ranges
         .iter()
         .try_fold(1u32, |product, &range| product.checked_mul(range))?;
+    let bits: Box<[u32]> = ranges
+        .iter()
+        .map(|range| u32::BITS - (range - 1).leading_zeros())
+        .collect();
+    if bits.iter().sum::<u32>() > u32::BITS {
+        return None;
+    }
     let mut program = Program {
         ranges,
+        bits,
         looks: Vec::with_capacity(law.steps().len()),
         places: Vec::new(),
         inner: vec![false; law.registers()],
@@ -187,6 +212,7 @@ fn law_program(law: &Equation, blocks: &[Block], sizes: &[u32]) -> Option<Progra
 fn claim_program(claim: &Equation, blocks: &[Block], signature: &Signature) -> Program {
     let mut program = Program {
         ranges: Box::new([]),
+        bits: Box::new([]),
         looks: Vec::with_capacity(claim.registers()),
         places: Vec::new(),
         inner: vec![false; claim.registers()],

@@ -27,6 +27,15 @@ impl Side {
     }
 }
 
+/// What is known when a single cell below the sides is open.
+#[derive(Clone, Copy)]
+struct Known {
+    /// The register that holds the open cell; those before it are known.
+    first: usize,
+    /// The cells of the sides, where they come before.
+    cells: [Cell; 2],
+}
+
 /// Looks at every instance for the first time. The inner error is a conflict.
 pub(super) fn examine_all(
     grid: &Grid<'_>,
@@ -37,7 +46,8 @@ pub(super) fn examine_all(
     for (number, program) in grid.programs.iter().enumerate() {
         for instance in 0..program.instances {
             limits.spend(1 + program.looks.len() as u64)?;
-            let done = examine(program, number as u32, instance, state, registers);
+            let packed = program.pack(instance);
+            let done = examine(program, number as u32, packed, state, registers);
             if done.is_err() {
                 return Ok(Err(Conflict));
             }
@@ -90,14 +100,14 @@ fn examine(
     registers: &mut [u8],
 ) -> Result<(), Conflict> {
     let mut rest = instance;
-    for (register, &range) in registers.iter_mut().zip(&program.ranges) {
-        *register = (rest % range) as u8;
-        rest /= range;
+    for (register, &bits) in registers.iter_mut().zip(&program.bits) {
+        *register = (rest & ((1 << bits) - 1)) as u8;
+        rest >>= bits;
     }
     let mut blocked = Cell::NONE;
+    let mut first = 0;
     let mut cells = [Cell::NONE; 2];
-    let mut at = program.ranges.len();
-    for &look in &program.looks {
+    for (at, &look) in (program.ranges.len()..).zip(&program.looks) {
         let cell = find(program, look, registers);
         let value = if cell == Cell::NONE {
             OPEN
@@ -111,6 +121,7 @@ fn examine(
                 return Ok(());
             }
             blocked = cell;
+            first = at;
         }
         if at == program.left {
             cells[0] = cell;
@@ -118,11 +129,11 @@ fn examine(
         if at == program.right {
             cells[1] = cell;
         }
-        at += 1;
     }
     if blocked != Cell::NONE {
         state.watch(blocked, number, instance);
-        return look_ahead(program, blocked, state, registers);
+        let known = Known { first, cells };
+        return look_ahead(program, blocked, known, state, registers);
     }
     let left = Side {
         value: registers[program.left],
@@ -177,56 +188,67 @@ const LONGEST_LOOK_AHEAD: usize = 1000;
 fn look_ahead(
     program: &Program,
     blocked: Cell,
+    known: Known,
     state: &mut State,
     registers: &mut [u8],
 ) -> Result<(), Conflict> {
-    let mut remaining = state.domain[blocked.index()];
     if program.looks.len() > LONGEST_LOOK_AHEAD {
         return Ok(());
     }
+    let mut remaining = state.domain[blocked.index()];
     let mut keep = remaining;
     while remaining != 0 {
         let value = remaining.trailing_zeros() as u8;
         remaining &= remaining - 1;
-        let mut cells = [Cell::NONE; 2];
-        let mut at = program.ranges.len();
-        for &look in &program.looks {
-            let cell = find(program, look, registers);
-            registers[at] = if cell == Cell::NONE {
-                OPEN
-            } else if cell == blocked {
-                value
-            } else {
-                state.value[cell.index()]
-            };
-            if at == program.left {
-                cells[0] = cell;
-            }
-            if at == program.right {
-                cells[1] = cell;
-            }
-            at += 1;
-        }
-        let left = Side {
-            value: registers[program.left],
-            cell: cells[0],
-        }
-        .mask(state);
-        let right = Side {
-            value: registers[program.right],
-            cell: cells[1],
-        }
-        .mask(state);
-        let possible = if program.differ {
-            left != right || !left.is_power_of_two()
-        } else {
-            left & right != 0
-        };
-        if !possible {
+        if !is_possible(program, blocked, value, known, state, registers) {
             keep &= !(1 << value);
         }
     }
     state.restrict(blocked, keep)
+}
+
+/// Can the sides come out right when the only open cell below them has this value?
+#[inline]
+fn is_possible(
+    program: &Program,
+    blocked: Cell,
+    value: u8,
+    known: Known,
+    state: &State,
+    registers: &mut [u8],
+) -> bool {
+    let mut cells = known.cells;
+    let looks = &program.looks[known.first - program.ranges.len()..];
+    for (at, &look) in (known.first..).zip(looks) {
+        let cell = find(program, look, registers);
+        let found = if cell == blocked {
+            value
+        } else {
+            state.value[cell.index()]
+        };
+        // Below a side, another open cell leaves everything possible.
+        if found == OPEN && program.inner[at] {
+            return true;
+        }
+        registers[at] = found;
+        if at == program.left {
+            cells[0] = cell;
+        }
+        if at == program.right {
+            cells[1] = cell;
+        }
+    }
+    let side = |register: usize, cell| Side {
+        value: registers[register],
+        cell,
+    };
+    let left = side(program.left, cells[0]).mask(state);
+    let right = side(program.right, cells[1]).mask(state);
+    if program.differ {
+        left != right || !left.is_power_of_two()
+    } else {
+        left & right != 0
+    }
 }
 
 fn bring_together(
