@@ -9,6 +9,7 @@ pub mod proof;
 
 pub mod rewrite;
 
+pub mod algebra;
 pub mod engine;
 
 pub mod language;

@@ -1,0 +1,73 @@
+//! How long a search may take, and how it is stopped.
+
+use std::sync::Arc;
+use std::sync::atomic::{AtomicBool, Ordering};
+use std::time::Instant;
+
+/// Why a search came back without an answer.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum StopReason {
+    /// The stop flag was raised.
+    Flag,
+    /// The deadline has passed.
+    Deadline,
+}
+
+/// The bounds of a search.
+///
+/// The flag and the clock are asked every few thousand elementary steps, that is, within about a
+/// millisecond.
+#[derive(Clone, Debug)]
+pub struct Limits {
+    /// Raised from outside to end the search.
+    pub stop: Arc<AtomicBool>,
+    /// When the search ends at the latest.
+    pub deadline: Option<Instant>,
+    /// How many bytes the search may use for one size. Sizes that need more are given up.
+    pub bytes: usize,
+    steps: u64,
+    next: u64,
+}
+
+/// How many elementary steps (table look-ups and the like) pass between two looks at the clock.
+const STRIDE: u64 = 1 << 14;
+
+impl Limits {
+    /// Limits with 512 MiB of memory.
+    pub fn new(stop: Arc<AtomicBool>, deadline: Option<Instant>) -> Self {
+        Limits {
+            stop,
+            deadline,
+            bytes: 512 << 20,
+            steps: 0,
+            next: 0,
+        }
+    }
+
+    /// No limit but the memory.
+    pub fn none() -> Self {
+        Self::new(Arc::new(AtomicBool::new(false)), None)
+    }
+
+    /// Counts steps, and tells when it is time to stop.
+    #[inline]
+    pub(super) fn spend(&mut self, steps: u64) -> Result<(), StopReason> {
+        self.steps += steps;
+        if self.steps < self.next {
+            return Ok(());
+        }
+        self.next = self.steps + STRIDE;
+        self.look()
+    }
+
+    /// Looks at the flag and the clock.
+    pub(super) fn look(&self) -> Result<(), StopReason> {
+        if self.stop.load(Ordering::Relaxed) {
+            return Err(StopReason::Flag);
+        }
+        match self.deadline {
+            Some(deadline) if Instant::now() >= deadline => Err(StopReason::Deadline),
+            _ => Ok(()),
+        }
+    }
+}
