@@ -3,6 +3,8 @@
 //! Everything that the shell and the batch commands do goes through a [`Session`]. Nothing here
 //! prints: results are data with text in them, for the shell to lay out.
 
+mod algebra_view;
+mod algebras;
 mod answer;
 mod ask;
 mod change;
@@ -21,7 +23,10 @@ mod view;
 mod work;
 mod workers;
 
-pub use answer::{Answer, By, Completion, Frontier, NormalForm, ProgramFault, Verdict};
+pub use algebra_view::{AlgebraText, AlgebraView, Evaluation, EvaluationFault};
+pub use answer::{
+    Answer, By, Completion, FoundAlgebra, Frontier, NormalForm, ProgramFault, Verdict,
+};
 pub use change::{ChangeFault, Undone};
 pub use check::ClaimResult;
 pub use control::{Control, Progress};
@@ -36,6 +41,7 @@ use crate::language::TheoryNames;
 use crate::rewrite::Stopped;
 use crate::term::TermId;
 use crate::theory::Theory;
+use algebras::Algebras;
 use std::path::PathBuf;
 use std::time::Duration;
 use workers::Workers;
@@ -48,6 +54,7 @@ pub struct Session {
     /// The text as it was then.
     saved_text: String,
     workers: Workers,
+    algebras: Algebras,
     answers: Vec<Answer>,
     it: Option<TermId>,
     budgets: Budgets,
@@ -117,6 +124,7 @@ impl Session {
             theory,
             path,
             workers: Workers::default(),
+            algebras: Algebras::default(),
             answers: Vec::new(),
             it: None,
             budgets: Budgets::default(),

@@ -24,6 +24,8 @@ pub enum Stopped {
 pub struct Limits {
     /// Set from outside to stop.
     pub stop: Arc<AtomicBool>,
+    /// Set when somebody else has done what the work is for; then the time counts as used up.
+    pub elsewhere: Option<Arc<AtomicBool>>,
     /// When the time is used up.
     pub deadline: Option<Instant>,
     /// How many terms the bank may hold.
@@ -36,6 +38,7 @@ impl Limits {
     pub fn new(stop: Arc<AtomicBool>) -> Self {
         Limits {
             stop,
+            elsewhere: None,
             deadline: None,
             terms: 1 << 28,
             countdown: 0,
@@ -69,6 +72,9 @@ impl Limits {
     pub fn check(&self, terms: usize) -> Result<(), Stopped> {
         if self.stop.load(Ordering::Relaxed) {
             return Err(Stopped::Interrupted);
+        }
+        if (self.elsewhere.as_ref()).is_some_and(|flag| flag.load(Ordering::Relaxed)) {
+            return Err(Stopped::Time);
         }
         if self
             .deadline

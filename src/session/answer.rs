@@ -35,6 +35,10 @@ pub enum By {
     NormalForms,
     /// The rules are complete, and the normal forms differ.
     Complete,
+    /// The sides differ in an algebra that was known.
+    KnownAlgebra,
+    /// The search for an algebra found one in which the sides differ.
+    Algebra,
     /// The search for a proof found one.
     Proof,
 }
@@ -46,6 +50,8 @@ impl By {
             By::Table => "table",
             By::NormalForms => "normal forms",
             By::Complete => "complete",
+            By::KnownAlgebra => "known algebra",
+            By::Algebra => "algebra",
             By::Proof => "proof",
         }
     }
@@ -62,12 +68,25 @@ pub struct Frontier {
     pub waiting: usize,
     /// Orders that were tried.
     pub orders: usize,
+    /// If algebras were searched: none with at most so many elements tells the sides apart.
+    pub ruled_out: Option<u32>,
+    /// Were some sizes given up because they need too much memory?
+    pub given_up: bool,
     /// Why it ended; nothing if no pair was left.
     pub stopped: Option<Stopped>,
     /// What else there is to say about the end.
     pub remark: Option<String>,
     /// What to try next, as lines to type.
     pub next: Vec<String>,
+}
+
+/// The algebra in which the two sides of a question differ.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct FoundAlgebra {
+    /// Its number, as in `A2`.
+    pub number: u32,
+    /// Are all algebras with fewer elements ruled out?
+    pub smallest: bool,
 }
 
 /// A fault of this program: evidence that the checker rejected.
@@ -100,6 +119,8 @@ pub struct Answer {
     pub frontier: Option<Frontier>,
     /// The normal forms of both sides where they differ, printed.
     pub normal: Option<[String; 2]>,
+    /// The algebra, if one settled it; its tables are in the evidence.
+    pub algebra: Option<FoundAlgebra>,
     /// Set when the evidence was rejected: then the verdict is undecided.
     pub fault: Option<(ProgramFault, Evidence)>,
     /// Have the laws changed since?

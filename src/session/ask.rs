@@ -1,11 +1,13 @@
 //! The ladder: a question goes from the cheapest rung to the dearest.
 
+use super::algebras;
 use super::control::{Control, Work};
 use super::runner::Compared;
 use super::sheet::Sheet;
 use super::subject::is_about;
 use super::workers::Ended;
-use super::{Answer, By, Frontier, ProgramFault, Session, SessionFault, Verdict};
+use super::{Answer, By, FoundAlgebra, Frontier, ProgramFault, Session, SessionFault, Verdict};
+use crate::algebra::Counterexample;
 use crate::proof::{self, Evidence, WorkLimit};
 use crate::rewrite::{Limits, Stopped};
 use crate::term::TermId;
@@ -19,13 +21,33 @@ const CHECK_LIMIT: WorkLimit = WorkLimit(200_000_000);
 /// What a rung has shown, before its evidence is checked.
 enum Shown {
     Equal(By, Option<Evidence>),
-    NotEqual(Option<Evidence>),
+    NotEqual(By, Option<Evidence>),
     Nothing(Option<Ended>),
 }
 
+/// How a question is to be settled.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+enum Means {
+    /// By a proof or an algebra, whichever comes first.
+    All,
+    /// By the rules and the search for a proof.
+    Proof,
+    /// By an algebra with at most so many elements.
+    Algebra(u32),
+}
+
+/// How far the search for an algebra got.
+#[derive(Clone, Copy, Debug, Default)]
+struct Reach {
+    ruled_out: u32,
+    exhausted: bool,
+    given_up: bool,
+}
+
 impl Session {
-    /// Climbs the ladder with an equation between two terms of the theory, searching for a proof
-    /// for at most `budget` if the rules as they stand do not settle it.
+    /// Climbs the ladder with an equation between two terms of the theory. If neither the rules as
+    /// they stand nor a known algebra settle it, a proof and an algebra are searched for side by
+    /// side, for at most `budget`.
     ///
     /// The answer is kept; its evidence has been accepted by the checker.
     pub fn ask(
@@ -35,23 +57,46 @@ impl Session {
         budget: Duration,
         control: &mut Control,
     ) -> Result<&Answer, SessionFault> {
+        self.settle(left, right, Means::All, Some(budget), control)
+    }
+
+    /// Looks for a proof only.
+    pub fn prove(
+        &mut self,
+        left: TermId,
+        right: TermId,
+        budget: Duration,
+        control: &mut Control,
+    ) -> Result<&Answer, SessionFault> {
+        self.settle(left, right, Means::Proof, Some(budget), control)
+    }
+
+    /// Looks for a finite algebra only, with at most so many elements over all sorts, without end
+    /// if there is no budget.
+    pub fn separate(
+        &mut self,
+        left: TermId,
+        right: TermId,
+        most: u32,
+        budget: Option<Duration>,
+        control: &mut Control,
+    ) -> Result<&Answer, SessionFault> {
+        self.settle(left, right, Means::Algebra(most), budget, control)
+    }
+
+    fn settle(
+        &mut self,
+        left: TermId,
+        right: TermId,
+        means: Means,
+        budget: Option<Duration>,
+        control: &mut Control,
+    ) -> Result<&Answer, SessionFault> {
         let begun = Instant::now();
-        self.workers.catch_up(&self.theory, self.lineage)?;
-        let formed = self.workers.formed();
-        let mut work =
-            Work::new(control, "looking for a proof", Some(budget)).formed_before(formed);
-        let mut shown = self.by_rules(left, right, &mut work);
-        if let Shown::Nothing(None) = shown {
-            let ended = self
-                .workers
-                .run(&self.theory, Some((left, right)), &mut work)?;
-            shown = self.by_search(left, right, ended, &control.stop);
-        }
-        let number = self.next_answer();
-        let question = self.equation_text(left, "=", right);
+        let question = (left, right);
         let mut answer = Answer {
-            number,
-            question,
+            number: self.next_answer(),
+            question: self.equation_text(left, "=", right),
             verdict: Verdict::Undecided,
             by: None,
             evidence: None,
@@ -59,22 +104,152 @@ impl Session {
             checking: Duration::ZERO,
             frontier: None,
             normal: None,
+            algebra: None,
             fault: None,
             outdated: false,
         };
+        self.algebras.catch_up(&self.theory, self.lineage);
+        if !matches!(means, Means::Algebra(_)) {
+            self.workers.catch_up(&self.theory, self.lineage)?;
+        }
+        let (shown, reach) = self.climb(question, means, budget, &mut answer, control)?;
         let check_begun = Instant::now();
-        let remark = self.judge(shown, (left, right), &mut answer, &control.stop);
+        let remark = self.judge(shown, question, &mut answer, &control.stop);
         answer.checking = check_begun.elapsed();
-        let interrupted = control.stop.load(Ordering::Relaxed);
-        if answer.verdict == Verdict::NotEqual {
+        if answer.by == Some(By::Complete) && answer.verdict == Verdict::NotEqual {
             answer.normal = self.normal_texts(answer.evidence.as_ref());
         }
         if answer.verdict == Verdict::Undecided {
-            answer.frontier = Some(self.frontier(left, right, budget, interrupted, remark));
+            answer.algebra = None;
+            let interrupted = control.stop.load(Ordering::Relaxed);
+            let frontier = self.frontier(question, means, budget, interrupted, reach, remark);
+            answer.frontier = Some(frontier);
         }
         answer.elapsed = begun.elapsed();
         self.answers.push(answer);
         Ok(self.answers.last().expect("it was just pushed"))
+    }
+
+    fn climb(
+        &mut self,
+        question: (TermId, TermId),
+        means: Means,
+        budget: Option<Duration>,
+        answer: &mut Answer,
+        control: &mut Control,
+    ) -> Result<(Shown, Option<Reach>), SessionFault> {
+        let formed = self.workers.formed();
+        let doing = match means {
+            Means::Algebra(_) => "looking for an algebra",
+            Means::Proof => "looking for a proof",
+            Means::All => "looking for a proof or an algebra",
+        };
+        let mut work = Work::new(control, doing, budget).formed_before(formed);
+        if !matches!(means, Means::Algebra(_)) {
+            let shown = self.by_rules(question.0, question.1, &mut work);
+            if !matches!(shown, Shown::Nothing(None)) {
+                return Ok((shown, None));
+            }
+        }
+        if means != Means::Proof
+            && let Some(shown) = self.by_known_algebra(question, means, answer, &work)
+        {
+            return Ok((shown, None));
+        }
+        let (ended, reach, found) = self.search(question, means, &mut work)?;
+        if let Some(found) = found {
+            let kept = self.algebras.keep(&found, &answer.question);
+            answer.algebra = Some(FoundAlgebra {
+                number: kept.number,
+                smallest: found.smallest,
+            });
+            let evidence = Evidence::Algebra(algebras::evidence(&self.theory, question, &found));
+            return Ok((Shown::NotEqual(By::Algebra, Some(evidence)), reach));
+        }
+        let stop = work.stop();
+        let shown = match ended {
+            Some(ended) => self.by_search(question.0, question.1, ended, &stop),
+            None => Shown::Nothing(None),
+        };
+        Ok((shown, reach))
+    }
+
+    /// A known algebra in which the sides differ.
+    fn by_known_algebra(
+        &mut self,
+        question: (TermId, TermId),
+        means: Means,
+        answer: &mut Answer,
+        work: &Work,
+    ) -> Option<Shown> {
+        let mut limits = work.algebra_limits(work.stop());
+        let (kept, found) = self.algebras.refute(&self.theory, question, &mut limits)?;
+        if let Means::Algebra(most) = means
+            && found.algebra.total() > most
+        {
+            return None;
+        }
+        answer.algebra = Some(FoundAlgebra {
+            number: kept.number,
+            smallest: false,
+        });
+        let evidence = Evidence::Algebra(algebras::evidence(&self.theory, question, &found));
+        Some(Shown::NotEqual(By::KnownAlgebra, Some(evidence)))
+    }
+
+    /// Searches for a proof on this thread and for an algebra on another; the first to succeed
+    /// ends both.
+    fn search(
+        &mut self,
+        question: (TermId, TermId),
+        means: Means,
+        work: &mut Work,
+    ) -> Result<(Option<Ended>, Option<Reach>, Option<Box<Counterexample>>), SessionFault> {
+        if means == Means::Proof {
+            let ended = self.workers.run(&self.theory, Some(question), work)?;
+            return Ok((Some(ended), None, None));
+        }
+        let largest = match means {
+            Means::Algebra(most) => most,
+            _ => algebras::LARGEST,
+        };
+        let hunt = self.algebras.hunt(&self.theory, question, largest);
+        let halt = Arc::new(AtomicBool::new(false));
+        let caught_one = Arc::new(AtomicBool::new(false));
+        let mut limits = work.algebra_limits(halt.clone());
+        let (ended, caught) = std::thread::scope(|scope| {
+            let done = caught_one.clone();
+            let hunter = scope.spawn(move || {
+                let caught = hunt.run(largest, &mut limits);
+                done.store(caught.found.is_some(), Ordering::Relaxed);
+                caught
+            });
+            let mut ended = None;
+            if means == Means::All {
+                work.set_elsewhere(Some(caught_one.clone()));
+                ended = Some(self.workers.run(&self.theory, Some(question), work));
+                work.set_elsewhere(None);
+            }
+            let settled = matches!(ended, Some(Ok(Ended::Met(_) | Ended::Complete(_)) | Err(_)));
+            while !settled && !hunter.is_finished() && !work.is_over() {
+                work.tell_waiting();
+                std::thread::sleep(Duration::from_millis(2));
+            }
+            halt.store(true, Ordering::Relaxed);
+            (ended.transpose(), hunter.join())
+        });
+        // A search that panicked has found nothing; the next one begins anew.
+        let Ok(mut caught) = caught else {
+            return Ok((ended?, None, None));
+        };
+        let reach = Reach {
+            ruled_out: caught.ruled_out,
+            exhausted: caught.exhausted,
+            given_up: caught.given_up,
+        };
+        let found = caught.found.take();
+        self.algebras.return_from(caught);
+        Ok((ended?, Some(reach), found))
     }
 
     /// The rungs that need no search: normal forms by the rules as they stand.
@@ -92,7 +267,7 @@ impl Session {
             }
             Ok(Compared::Different(normal)) if runner.engine.is_complete() => {
                 let set = runner.complete_set(Some((&asked, normal)));
-                Shown::NotEqual(set.map(Evidence::Complete))
+                Shown::NotEqual(By::Complete, set.map(Evidence::Complete))
             }
             _ => Shown::Nothing(None),
         }
@@ -125,7 +300,7 @@ impl Session {
             }
             Ok(Compared::Different(normal)) if by == By::Complete => {
                 let set = runner.complete_set(Some((&asked, normal)));
-                Shown::NotEqual(set.map(Evidence::Complete))
+                Shown::NotEqual(By::Complete, set.map(Evidence::Complete))
             }
             _ => Shown::Nothing(Some(ended)),
         }
@@ -142,7 +317,7 @@ impl Session {
     ) -> Option<String> {
         let (verdict, by, evidence) = match shown {
             Shown::Equal(by, evidence) => (Verdict::Equal, by, evidence),
-            Shown::NotEqual(evidence) => (Verdict::NotEqual, By::Complete, evidence),
+            Shown::NotEqual(by, evidence) => (Verdict::NotEqual, by, evidence),
             Shown::Nothing(Some(Ended::Exhausted)) => {
                 let remark = "some pairs were too large to keep, so the rules are not complete";
                 return Some(remark.to_owned());
@@ -190,13 +365,17 @@ impl Session {
 
     fn frontier(
         &self,
-        left: TermId,
-        right: TermId,
-        budget: Duration,
+        (left, right): (TermId, TermId),
+        means: Means,
+        budget: Option<Duration>,
         interrupted: bool,
+        reach: Option<Reach>,
         remark: Option<String>,
     ) -> Frontier {
-        let best = self.workers.best_ref();
+        let best = self
+            .workers
+            .best_ref()
+            .filter(|_| !matches!(means, Means::Algebra(_)));
         let (rules, waiting, complete) = best.map_or((0, 0, false), |runner| {
             let engine = &runner.engine;
             (
@@ -205,29 +384,56 @@ impl Session {
                 engine.is_complete(),
             )
         });
-        let stopped = match (interrupted, complete) {
+        let over = complete || reach.is_some_and(|reach| reach.exhausted && best.is_none());
+        let stopped = match (interrupted, over) {
             (true, _) => Some(Stopped::Interrupted),
             (false, true) => None,
             (false, false) => Some(Stopped::Time),
         };
-        let longer = (budget.as_secs() * 10).max(60);
-        let mut next = Vec::new();
-        if !complete {
-            next.push(format!("complete within {longer}s"));
-            let question = self.equation_text(left, "=", right);
-            if question.len() < 60 {
-                next.push(format!("prove {question} within {longer}s"));
-            }
-        }
         Frontier {
             rules,
-            pairs: self.workers.formed(),
+            pairs: best.map_or(0, |_| self.workers.formed()),
             waiting,
-            orders: self.workers.tried(),
+            orders: best.map_or(0, |_| self.workers.tried()),
+            ruled_out: reach.map(|reach| reach.ruled_out),
+            given_up: reach.is_some_and(|reach| reach.given_up),
             stopped,
             remark,
-            next,
+            next: self.advice(
+                self.equation_text(left, "=", right),
+                means,
+                budget,
+                complete,
+                reach,
+            ),
         }
+    }
+
+    /// Lines that may get further.
+    fn advice(
+        &self,
+        question: String,
+        means: Means,
+        budget: Option<Duration>,
+        complete: bool,
+        reach: Option<Reach>,
+    ) -> Vec<String> {
+        let longer = (budget.map_or(6, |budget| budget.as_secs()) * 10).max(60);
+        let short = question.len() < 60;
+        let mut next = Vec::new();
+        if !complete && !matches!(means, Means::Algebra(_)) {
+            next.push(format!("complete within {longer}s"));
+        }
+        if short && matches!(means, Means::Algebra(_)) {
+            next.push(format!("prove {question} within {longer}s"));
+        }
+        if short && let Some(Reach { ruled_out, .. }) = reach {
+            let most = (ruled_out + 3).max(8);
+            next.push(format!("separate {question}, at most {most}"));
+        } else if short && means == Means::Proof {
+            next.push(format!("separate {question}, at most 8"));
+        }
+        next
     }
 
     fn normal_texts(&self, evidence: Option<&Evidence>) -> Option<[String; 2]> {

@@ -1,9 +1,10 @@
 //! How work is bounded, interrupted and watched.
 
+use crate::algebra;
 use crate::engine::Engine;
 use crate::rewrite::Limits;
 use std::sync::Arc;
-use std::sync::atomic::AtomicBool;
+use std::sync::atomic::{AtomicBool, Ordering};
 use std::time::{Duration, Instant};
 
 /// What is going on, for a line of progress.
@@ -40,6 +41,8 @@ pub(super) struct Work<'a, 'c> {
     told: Instant,
     /// Pairs formed by the engines before the work began.
     formed_before: u64,
+    /// Set when the answer was found by somebody else.
+    elsewhere: Option<Arc<AtomicBool>>,
 }
 
 const TELL_EVERY: Duration = Duration::from_millis(50);
@@ -59,6 +62,7 @@ impl<'a, 'c> Work<'a, 'c> {
             budget,
             told: begun,
             formed_before: 0,
+            elsewhere: None,
         }
     }
 
@@ -75,13 +79,31 @@ impl<'a, 'c> Work<'a, 'c> {
         self.begun.elapsed()
     }
 
-    /// Is the time used up?
+    /// From now on the work also ends when this flag is set.
+    pub(super) fn set_elsewhere(&mut self, flag: Option<Arc<AtomicBool>>) {
+        self.elsewhere = flag;
+    }
+
+    /// Is the time used up, or is there no need to go on?
     pub(super) fn is_over(&self) -> bool {
-        self.budget.is_some_and(|budget| self.elapsed() >= budget) || self.is_stopped()
+        let set = |flag: &Arc<AtomicBool>| flag.load(Ordering::Relaxed);
+        self.budget.is_some_and(|budget| self.elapsed() >= budget)
+            || self.is_stopped()
+            || self.elsewhere.as_ref().is_some_and(set)
+    }
+
+    /// The flag that stops the work from outside.
+    pub(super) fn stop(&self) -> Arc<AtomicBool> {
+        self.control.stop.clone()
+    }
+
+    /// The bounds of a search for an algebra that this flag stops.
+    pub(super) fn algebra_limits(&self, stop: Arc<AtomicBool>) -> algebra::Limits {
+        algebra::Limits::new(stop, self.budget.map(|budget| self.begun + budget))
     }
 
     pub(super) fn is_stopped(&self) -> bool {
-        self.control.stop.load(std::sync::atomic::Ordering::Relaxed)
+        self.control.stop.load(Ordering::Relaxed)
     }
 
     /// The bounds of the whole work, or of a slice of it.
@@ -90,10 +112,27 @@ impl<'a, 'c> Work<'a, 'c> {
         if let Some(budget) = self.budget {
             limits = limits.until(self.begun + budget);
         }
+        limits.elsewhere = self.elsewhere.clone();
         if let Some(slice) = slice {
             limits = limits.until(Instant::now() + slice);
         }
         limits
+    }
+
+    /// Tells that there is nothing to count.
+    pub(super) fn tell_waiting(&mut self) {
+        let now = Instant::now();
+        if now.duration_since(self.told) >= TELL_EVERY {
+            self.told = now;
+            (self.control.watch)(&Progress {
+                doing: self.doing.clone(),
+                elapsed: self.begun.elapsed(),
+                budget: self.budget,
+                rules: 0,
+                waiting: 0,
+                formed: 0,
+            });
+        }
     }
 
     /// Tells how far an engine is, if it is time to; `others` is what the other engines formed.

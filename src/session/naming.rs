@@ -1,6 +1,7 @@
 //! What things are called in evidence.
 
-use crate::term::{Sort, Variable};
+use crate::proof::{TermIndex, Terms};
+use crate::term::{Bank, Head, Sort, TermId, Variable};
 use crate::theory::Theory;
 use rustc_hash::FxHashMap;
 
@@ -81,4 +82,40 @@ pub(super) fn naming(theory: &Theory) -> Naming {
         typed: signature.has_sorts(),
         types: types.collect(),
     }
+}
+
+/// The plain form of a term of the theory.
+pub(super) fn plain_term(
+    bank: &Bank,
+    naming: &Naming,
+    terms: &mut Terms,
+    term: TermId,
+) -> TermIndex {
+    let mut known: FxHashMap<TermId, TermIndex> = FxHashMap::default();
+    let mut stack = vec![term];
+    let mut arguments = Vec::new();
+    while let Some(&top) = stack.last() {
+        if known.contains_key(&top) {
+            stack.pop();
+            continue;
+        }
+        let before = stack.len();
+        let open = bank
+            .arguments(top)
+            .iter()
+            .filter(|a| !known.contains_key(a));
+        stack.extend(open);
+        if stack.len() > before {
+            continue;
+        }
+        arguments.clear();
+        arguments.extend(bank.arguments(top).iter().map(|a| known[a]));
+        let made = match bank.head(top) {
+            Head::Variable(v) => terms.variable(&naming.variables[v.index as usize].0),
+            Head::Symbol(symbol) => terms.apply(&naming.symbols[symbol.index()], &arguments),
+        };
+        known.insert(top, made);
+        stack.pop();
+    }
+    known[&term]
 }

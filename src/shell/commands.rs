@@ -1,12 +1,14 @@
 //! The commands. Each is one file with its words, its help, its parser and its rendering; the list
 //! below is all that dispatch, help, hints and Tab know.
 
+mod algebras;
 mod answers;
 mod budget;
 mod check;
 mod claims;
 mod complete;
 mod drop;
+mod evaluate;
 mod help;
 mod laws;
 mod new;
@@ -18,6 +20,7 @@ mod quit;
 mod redo;
 mod rules;
 mod save;
+mod separate;
 mod status;
 mod symbols;
 mod theories;
@@ -33,8 +36,10 @@ use super::problem::Problem;
 pub const ALL: &[&Command] = &[
     &trace::COMMAND,
     &prove::COMMAND,
+    &separate::COMMAND,
     &proof::COMMAND,
     &why::COMMAND,
+    &evaluate::COMMAND,
     &answers::COMMAND,
     &complete::COMMAND,
     &check::COMMAND,
@@ -47,6 +52,7 @@ pub const ALL: &[&Command] = &[
     &rules::COMMAND,
     &symbols::COMMAND,
     &claims::COMMAND,
+    &algebras::COMMAND,
     &status::COMMAND,
     &new::COMMAND,
     &open::COMMAND,

@@ -5,6 +5,7 @@ use super::line::{Line, TYPED};
 use super::problem::Problem;
 use super::show;
 use crate::language::{Change, Fault, Question, Source};
+use crate::session::{Control, Session, SessionFault};
 use crate::term::TermId;
 use std::time::Duration;
 
@@ -40,10 +41,18 @@ pub fn ask(
     right: TermId,
     budget: Duration,
 ) -> Result<(), Problem> {
-    let asked = shell.work(|session, control| {
+    settle(shell, |session, control| {
         let answer = session.ask(left, right, budget, control);
         answer.map(|answer| answer.number)
-    });
+    })
+}
+
+/// Has a question settled, and shows the answer, whose number is given back.
+pub fn settle(
+    shell: &mut Shell,
+    by: impl FnOnce(&mut Session, &mut Control) -> Result<u32, SessionFault>,
+) -> Result<(), Problem> {
+    let asked = shell.work(by);
     let number =
         asked.map_err(|fault| Problem::session(fault, &shell.session.theory().signature))?;
     let answer = &shell.session.answers()[number as usize - 1];

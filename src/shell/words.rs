@@ -17,14 +17,9 @@ const LATER: &[(&str, &str)] = &[
     ),
     ("find", "guess the values and ask the equation with them"),
     (
-        "separate",
-        "complete may find rules that tell the two sides apart",
-    ),
-    (
         "closed",
         "an equation that follows from the laws holds on closed terms too",
     ),
-    ("evaluate", "a term alone gives its normal form"),
     ("evidence", "proof N shows the proof of an answer"),
     ("simplify", ""),
     (
@@ -36,7 +31,6 @@ const LATER: &[(&str, &str)] = &[
         "drop NAME takes a law out, and law NAME: s = t states it anew",
     ),
     ("reload", "open FILE reads a file again"),
-    ("algebras", ""),
     (
         "audit",
         "check verifies the claims, and status tells whether the rules are complete",

@@ -34,5 +34,9 @@ fn run(shell: &mut Shell, line: Line<'_>) -> Result<(), Problem> {
         return Err(line.problem(fault));
     };
     let budget = rest.within()?.unwrap_or(TIME);
-    question::ask(shell, left, right, budget)
+    question::settle(shell, |session, control| {
+        session
+            .prove(left, right, budget, control)
+            .map(|answer| answer.number)
+    })
 }

@@ -1,7 +1,9 @@
 //! Answers and normal forms.
 
 use super::proof::{LONGEST_CHAIN, chain, steps};
-use crate::session::{Answer, Frontier, NormalForm, ProgramFault, ProofText, Session, Verdict};
+use crate::session::{
+    Answer, FoundAlgebra, Frontier, NormalForm, ProgramFault, ProofText, Session, Verdict,
+};
 use crate::shell::layout::{Breaker, columns, fold, fold_hanging, heading};
 use crate::shell::problem::{OWN_FAULT, stop_text};
 use crate::shell::quantity::{count, number, show_duration};
@@ -34,7 +36,17 @@ pub fn answer(answer: &Answer, session: &Session, look: Look, place: Place) -> S
     }
     match answer.verdict {
         Verdict::Equal => facts.push("proof checked".to_owned()),
-        Verdict::NotEqual => facts.push("rules complete, checked".to_owned()),
+        Verdict::NotEqual => facts.push(match answer.algebra {
+            None => "rules complete, checked".to_owned(),
+            Some(FoundAlgebra { number, smallest }) => {
+                let what = if smallest {
+                    "smallest algebra"
+                } else {
+                    "algebra"
+                };
+                format!("{what} A{number}, checked")
+            }
+        }),
         Verdict::Undecided => {
             let stopped = answer.frontier.as_ref().and_then(|f| f.stopped);
             facts.extend(stopped.map(|stopped| stop_text(stopped).to_owned()));
@@ -51,6 +63,9 @@ pub fn answer(answer: &Answer, session: &Session, look: Look, place: Place) -> S
         Verdict::NotEqual => {
             if let Some(normal) = &answer.normal {
                 text += &normal_forms(normal, session, look);
+            }
+            if let Some(found) = session.algebra_text(answer) {
+                text += &super::algebra::text(&found, look);
             }
         }
         Verdict::Undecided => {
@@ -121,6 +136,33 @@ pub fn normal_forms(normal: &[String; 2], session: &Session, look: Look) -> Stri
 }
 
 fn frontier(frontier: &Frontier, look: Look, place: Place) -> String {
+    let mut text = String::new();
+    if frontier.orders > 0 {
+        text += &fold(&searched(frontier), look.width, 4);
+    }
+    if let Some(ruled_out) = frontier.ruled_out {
+        let mut none = match ruled_out {
+            0 => "no algebra found yet, and no size ruled out".to_owned(),
+            1 => "no algebra with 1 element tells the sides apart".to_owned(),
+            most => format!("no algebra with up to {most} elements tells the sides apart"),
+        };
+        if frontier.given_up {
+            none += "; some larger sizes need too much memory";
+        }
+        text += &fold(&none, look.width, 4);
+    }
+    if let Some(remark) = &frontier.remark {
+        text += &fold(remark, look.width, 4);
+    }
+    if place == Place::Shell && !frontier.next.is_empty() {
+        let next = format!("next: {}", frontier.next.join(", or "));
+        text += &fold_hanging(&next, look.width, 4, 10);
+    }
+    text
+}
+
+/// How far the search for a proof came.
+fn searched(frontier: &Frontier) -> String {
     let mut done = format!(
         "{} from {}",
         count(frontier.rules, "rule"),
@@ -137,15 +179,7 @@ fn frontier(frontier: &Frontier, look: Look, place: Place) -> String {
         1 => "; 1 pair waits".to_owned(),
         waiting => format!("; {} pairs wait", number(waiting as u128)),
     };
-    let mut text = fold(&done, look.width, 4);
-    if let Some(remark) = &frontier.remark {
-        text += &fold(remark, look.width, 4);
-    }
-    if place == Place::Shell && !frontier.next.is_empty() {
-        let next = format!("next: {}", frontier.next.join(", or "));
-        text += &fold_hanging(&next, look.width, 4, 10);
-    }
-    text
+    done
 }
 
 /// A normal form, with how it came about beside it where there is room.

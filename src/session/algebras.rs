@@ -1,0 +1,303 @@
+//! The finite algebras of a session: those that are known, and the search for more.
+
+use super::naming::{Naming, naming, plain_term};
+use crate::algebra::{
+    Algebra, Counterexample, Equation, Known, Limits, Outcome, Pool, PoolOutcome, Problem, Search,
+    Signature,
+};
+use crate::proof::{self, AlgebraClaim, AlgebraEvidence, Terms};
+use crate::term::TermId;
+use crate::theory::Theory;
+use std::sync::Arc;
+
+/// An algebra that the session keeps.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub(super) struct Kept {
+    /// Its number, which no other gets: `A2`.
+    pub(super) number: u32,
+    /// Are all smaller ones known not to do for the question that it was found for?
+    pub(super) smallest: bool,
+    /// The question that it was found for.
+    pub(super) question: String,
+}
+
+/// All algebras, and what the searches need from one question to the next.
+#[derive(Default)]
+pub(super) struct Algebras {
+    known: Known,
+    kept: Vec<Kept>,
+    next_number: u32,
+    /// The laws that the known algebras obey, and the ids that their terms have.
+    laws: Vec<(TermId, TermId)>,
+    symbols: usize,
+    lineage: u32,
+    pool: Option<Pool>,
+    /// The search for the last question, to be gone on with.
+    last: Option<((TermId, TermId), Search)>,
+}
+
+/// A search that is to be run, on any thread.
+pub(super) struct Hunt {
+    pool: Option<Pool>,
+    search: Search,
+    claim: Equation,
+    question: (TermId, TermId),
+    /// Has the pool been asked already?
+    pool_done: bool,
+}
+
+/// What came of a search.
+pub(super) struct Caught {
+    hunt: Hunt,
+    pub(super) found: Option<Box<Counterexample>>,
+    /// Is every size that was asked for done?
+    pub(super) exhausted: bool,
+    /// All algebras with at most so many elements are ruled out.
+    pub(super) ruled_out: u32,
+    /// Sizes that need too much memory.
+    pub(super) given_up: bool,
+}
+
+/// Searches without a bound of their own end at this many elements.
+pub(super) const LARGEST: u32 = 60;
+
+impl Algebras {
+    /// Drops the algebras that a law, perhaps a new one, refutes.
+    pub(super) fn catch_up(&mut self, theory: &Theory, lineage: u32) {
+        let laws: Vec<_> = theory
+            .laws
+            .iter()
+            .map(|law| (law.left, law.right))
+            .collect();
+        let symbols = theory.bank.symbols().len();
+        if (self.lineage, self.symbols) == (lineage, symbols) && self.laws == laws {
+            return;
+        }
+        let (signature, equations) = compiled(theory);
+        let mut limits = Limits::none();
+        if let Ok(dropped) = self.known.update(&signature, &equations, &mut limits) {
+            let mut place = 0;
+            self.kept.retain(|_| {
+                place += 1;
+                !dropped.contains(&(place - 1))
+            });
+        }
+        self.pool = Some(Pool::new(signature, equations));
+        self.last = None;
+        (self.lineage, self.symbols, self.laws) = (lineage, symbols, laws);
+    }
+
+    /// The algebras with what is known of them.
+    pub(super) fn all(&self) -> impl Iterator<Item = (&Kept, &Algebra)> {
+        self.kept.iter().zip(self.known.algebras())
+    }
+
+    /// A known algebra in which the sides differ.
+    pub(super) fn refute(
+        &mut self,
+        theory: &Theory,
+        (left, right): (TermId, TermId),
+        limits: &mut Limits,
+    ) -> Option<(Kept, Counterexample)> {
+        let claim = Equation::compile(&theory.bank, left, right);
+        let (place, found) = self.known.refute(&claim, limits).ok()??;
+        let kept = self.kept[place].clone();
+        let algebra = self.known.algebras()[place].clone();
+        let (assignment, values) = (found.assignment, found.values);
+        Some((
+            kept,
+            Counterexample {
+                algebra,
+                assignment,
+                values,
+                smallest: false,
+            },
+        ))
+    }
+
+    /// A search for an algebra in which the sides differ: the one for the same question, where it
+    /// was stopped, or a new one.
+    pub(super) fn hunt(
+        &mut self,
+        theory: &Theory,
+        question: (TermId, TermId),
+        largest: u32,
+    ) -> Hunt {
+        let known = self
+            .last
+            .take()
+            .filter(|(last, _)| *last == question && largest == LARGEST);
+        let pool_done = known.is_some();
+        let claim = Equation::compile(&theory.bank, question.0, question.1);
+        let search = known.map(|(_, search)| search).unwrap_or_else(|| {
+            let laws = theory.laws.iter().map(|law| (law.left, law.right));
+            let sorts = theory.signature.sorts().len();
+            let problem = Problem::new(&theory.bank, sorts, laws, question);
+            Search::new(Arc::new(problem), largest)
+        });
+        Hunt {
+            pool: self.pool.take(),
+            search,
+            claim,
+            question,
+            pool_done,
+        }
+    }
+
+    /// Takes back what a search was given.
+    pub(super) fn return_from(&mut self, caught: Caught) {
+        self.pool = caught.hunt.pool;
+        self.last = Some((caught.hunt.question, caught.hunt.search));
+    }
+
+    /// Keeps an algebra and numbers it, unless it is known.
+    pub(super) fn keep(&mut self, found: &Counterexample, question: &str) -> Kept {
+        let place = self.known.add(found.algebra.clone());
+        if place == self.kept.len() {
+            self.next_number += 1;
+            self.kept.push(Kept {
+                number: self.next_number,
+                smallest: found.smallest,
+                question: question.to_owned(),
+            });
+        }
+        self.kept[place].clone()
+    }
+}
+
+impl Hunt {
+    /// Asks the pool, then searches, sizes upward.
+    pub(super) fn run(mut self, largest: u32, limits: &mut Limits) -> Caught {
+        if !self.pool_done
+            && let Some(pool) = &mut self.pool
+            && let PoolOutcome::Refuted(found) = pool.refute(&self.claim, limits)
+            && found.algebra.total() <= largest
+        {
+            return self.caught(Some(found), false);
+        }
+        self.pool_done = true;
+        match self.search.run(limits) {
+            Outcome::Found(found) => self.caught(Some(found), false),
+            Outcome::Exhausted => self.caught(None, true),
+            Outcome::Stopped(_) => self.caught(None, false),
+        }
+    }
+
+    fn caught(self, found: Option<Box<Counterexample>>, exhausted: bool) -> Caught {
+        let ruled_out = self.search.ruled_out_total();
+        let given_up = !self.search.given_up().is_empty();
+        Caught {
+            hunt: self,
+            found,
+            exhausted,
+            ruled_out,
+            given_up,
+        }
+    }
+}
+
+fn compiled(theory: &Theory) -> (Signature, Vec<Equation>) {
+    let laws = theory.laws.iter();
+    let equations = laws
+        .map(|law| Equation::compile(&theory.bank, law.left, law.right))
+        .collect();
+    let sorts = theory.signature.sorts().len();
+    (Signature::new(&theory.bank, sorts), equations)
+}
+
+/// The evidence that two terms of the theory differ in an algebra.
+pub(super) fn evidence(
+    theory: &Theory,
+    (left, right): (TermId, TermId),
+    found: &Counterexample,
+) -> AlgebraEvidence {
+    let naming = naming(theory);
+    let mut terms = Terms::default();
+    let laws = theory.laws.iter().map(|law| proof::Equation {
+        name: terms.name(&law.name),
+        left: plain_term(&theory.bank, &naming, &mut terms, law.left),
+        right: plain_term(&theory.bank, &naming, &mut terms, law.right),
+        when: Vec::new(),
+    });
+    let laws: Vec<_> = laws.collect();
+    let sides = [left, right].map(|side| plain_term(&theory.bank, &naming, &mut terms, side));
+    let claim = Equation::compile(&theory.bank, left, right);
+    let with = claim
+        .variables()
+        .iter()
+        .zip(&found.assignment)
+        .map(|(variable, value)| {
+            (
+                terms.name(&naming.variables[variable.index as usize].0),
+                *value,
+            )
+        });
+    let with = with.collect();
+    let sorts = theory.signature.sorts().iter().zip(found.algebra.sizes());
+    let sorts = sorts
+        .map(|(name, size)| (terms.name(name), *size))
+        .collect();
+    let tables = named_tables(&naming, &found.algebra);
+    AlgebraEvidence {
+        laws,
+        sorts,
+        tables: tables
+            .into_iter()
+            .map(|(name, table)| (terms.name(name), table))
+            .collect(),
+        claim: AlgebraClaim {
+            left: sides[0],
+            right: sides[1],
+            when: Vec::new(),
+            with,
+            unknowns: Vec::new(),
+            values: Some(found.values),
+        },
+        types: types(theory, &naming, &mut terms),
+        terms,
+    }
+}
+
+/// The tables of an algebra, with the names of the symbols.
+pub(super) fn named_tables<'n>(
+    naming: &'n Naming,
+    algebra: &Algebra,
+) -> Vec<(&'n str, proof::Table)> {
+    let plain = |table: &crate::algebra::Table| proof::Table {
+        shape: table.shape().to_vec(),
+        values: table.values().iter().copied().map(u32::from).collect(),
+    };
+    let names = naming.symbols.iter().map(String::as_str);
+    names.zip(algebra.tables().iter().map(plain)).collect()
+}
+
+/// The sorts of all symbols, and of the variables that occur, if the theory names sorts.
+fn types(theory: &Theory, naming: &Naming, terms: &mut Terms) -> Option<proof::Types> {
+    if !naming.typed {
+        return None;
+    }
+    let mut operators = Vec::new();
+    for (name, sorts) in naming.symbols.iter().zip(&naming.types) {
+        let sorts = sorts.iter().map(|sort| theory.signature.sort_name(*sort));
+        let sorts = sorts.map(|sort| terms.name(sort)).collect();
+        operators.push((terms.name(name), sorts));
+    }
+    let mut variables = Vec::new();
+    let used: Vec<_> = terms
+        .all()
+        .filter_map(|term| match terms.node(term) {
+            proof::Node::Variable(name) => Some(name),
+            proof::Node::Apply(..) => None,
+        })
+        .collect();
+    for (name, sort) in &naming.variables {
+        let name = terms.name(name);
+        if used.contains(&name) {
+            variables.push((name, terms.name(theory.signature.sort_name(*sort))));
+        }
+    }
+    Some(proof::Types {
+        operators,
+        variables,
+    })
+}
