@@ -1,6 +1,6 @@
 //! One JSON object a line, with the fields that scripts rely on.
 
-use super::program::{BAND, GROUP, Place};
+use super::program::{OPEN, GROUP, Place};
 use serde_json::{Value, json};
 
 fn lines(text: &str) -> Vec<Value> {
@@ -12,7 +12,7 @@ fn lines(text: &str) -> Vec<Value> {
 fn ask() {
     let place = Place::new();
     place.file("group.theory", GROUP);
-    place.file("band.theory", BAND);
+    place.file("open.theory", OPEN);
     let ask = |file, question| {
         let ran = place.run(&["ask", file, question, "--json", "--within", "500ms"], "");
         let mut lines = lines(&ran.out);
@@ -33,7 +33,7 @@ fn ask() {
     assert_eq!(other["verdict"], "not equal");
     assert_eq!(other["expected"], "not equal");
     assert_eq!(other["by"], "complete");
-    let open = ask("band.theory", "x * y = y * x");
+    let open = ask("open.theory", "f(g(x)) = x");
     assert_eq!(open["verdict"], "undecided");
     assert_eq!(open["by"], Value::Null);
 }

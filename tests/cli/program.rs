@@ -92,13 +92,16 @@ claim flip: i(x * y) = i(y) * i(x)
 claim x * y != y * x
 ";
 
-/// An idempotent semigroup with four constants: no finite complete set of rules is known to the
-/// program, and an inequation stays undecided.
-pub const BAND: &str = "\
-theory band
+/// A band with a one-sided inverse: the rules do not come to an end, and as the inverse is
+/// two-sided in every finite algebra, none tells the two sides of the claim apart.
+pub const OPEN: &str = "\
+theory unsettled
 infix * 40 left
+function f 1
+function g 1
 variable x y z
 law assoc: (x * y) * z = x * (y * z)
 law again: x * x = x
-claim swap: x * y != y * x
+law back: g(f(x)) = x
+claim onto: f(g(x)) != x
 ";

@@ -1,6 +1,6 @@
 //! 0 as asked, 1 not, 2 undecided, 3 the input is at fault.
 
-use super::program::{BAND, GROUP, Place};
+use super::program::{OPEN, GROUP, Place};
 
 #[test]
 fn a_pipe_gets_the_answers_of_the_shell() {
@@ -23,13 +23,13 @@ fn a_pipe_gets_the_answers_of_the_shell() {
 fn ask_ends_with_what_was_asked() {
     let place = Place::new();
     place.file("group.theory", GROUP);
-    place.file("band.theory", BAND);
+    place.file("open.theory", OPEN);
     let status = |arguments: &[&str]| place.run(arguments, "").status;
     assert_eq!(status(&["ask", "group.theory", "x * i(x) = e"]), 0);
     assert_eq!(status(&["ask", "group.theory", "x * y = y * x"]), 1);
     assert_eq!(status(&["ask", "group.theory", "x * y != y * x"]), 0);
     assert_eq!(status(&["ask", "group.theory", "x * i(x) != e"]), 1);
-    let question = ["ask", "band.theory", "x * y = y * x", "--within", "100ms"];
+    let question = ["ask", "open.theory", "f(g(x)) = x", "--within", "100ms"];
     assert_eq!(status(&question), 2);
     assert_eq!(status(&["ask", "group.theory", "x"]), 3);
     assert_eq!(status(&["ask", "group.theory", ""]), 3);
@@ -48,7 +48,7 @@ fn ask_ends_with_what_was_asked() {
 fn check_ends_with_the_worst() {
     let place = Place::new();
     place.file("group.theory", GROUP);
-    place.file("band.theory", BAND);
+    place.file("open.theory", OPEN);
     place.file("wrong.theory", format!("{GROUP}claim wrong: x = e\n"));
     place.file("broken.theory", "law x = y\n");
     let check = |files: &[&str]| {
@@ -62,11 +62,11 @@ fn check_ends_with_the_worst() {
         "{}",
         fine.out
     );
-    assert_eq!(check(&["band.theory"]).status, 2);
+    assert_eq!(check(&["open.theory"]).status, 2);
     let wrong = check(&["wrong.theory"]);
     assert_eq!(wrong.status, 1);
     assert!(wrong.out.contains("NOT as claimed"), "{}", wrong.out);
-    assert_eq!(check(&["band.theory", "wrong.theory"]).status, 1);
+    assert_eq!(check(&["open.theory", "wrong.theory"]).status, 1);
     let broken = check(&["broken.theory", "group.theory"]);
     assert_eq!(broken.status, 3);
     assert!(
@@ -79,7 +79,7 @@ fn check_ends_with_the_worst() {
 fn normal_and_complete() {
     let place = Place::new();
     place.file("group.theory", GROUP);
-    place.file("band.theory", BAND);
+    place.file("open.theory", OPEN);
     let normal = place.run(&["normal", "group.theory", "e * (e * x)"], "");
     assert_eq!((normal.status, normal.out.as_str()), (0, "x\n"));
     assert!(normal.err.contains("not complete"), "{}", normal.err);
@@ -94,7 +94,7 @@ fn normal_and_complete() {
         "{}",
         complete.out
     );
-    let endless = place.run(&["complete", "band.theory", "--within", "100ms"], "");
+    let endless = place.run(&["complete", "open.theory", "--within", "100ms"], "");
     assert_eq!(endless.status, 2, "{}", endless.out);
 }
 

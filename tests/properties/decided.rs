@@ -266,9 +266,10 @@ fn abelian_groups() {
         complete: false,
         equal: |s, t| exponents(s) == exponents(t),
     });
-    // The complete set needs matching modulo AC (Peterson & Stickel 1981, from memory).
+    // The complete set needs matching modulo AC (Peterson & Stickel 1981, from memory); algebras
+    // tell the sides apart.
     assert!(
-        equal > 10 && different == 0,
+        equal > 10 && different > 10,
         "{equal} equal, {different} different"
     );
 }
@@ -304,9 +305,9 @@ fn lattices() {
         complete: false,
         equal: |s, t| below(s, t) && below(t, s),
     });
-    // There is no complete set, and so far nothing else that tells terms apart.
+    // There is no complete set; algebras tell the sides apart.
     assert!(
-        equal > 10 && different == 0,
+        equal > 10 && different > 10,
         "{equal} equal, {different} different"
     );
 }
@@ -323,7 +324,7 @@ fn bands() {
         equal: same_in_bands,
     });
     assert!(
-        equal > 10 && different == 0,
+        equal > 10 && different > 10,
         "{equal} equal, {different} different"
     );
 }
