@@ -2,6 +2,7 @@
 
 use super::evidence::{ClaimVariables, Writer};
 use super::naming::{Naming, naming};
+use super::shorten::shorten;
 use crate::engine::{Engine, Question};
 use crate::order::{Order, OrderProblem, OrderSetting};
 use crate::proof;
@@ -199,7 +200,9 @@ impl Runner {
                 let writer = Writer::new(&mut self.engine, &self.naming, variables);
                 Compared::Same {
                     known,
-                    proof: writer.proof(left, right).map(Box::new),
+                    proof: writer
+                        .proof(left, right)
+                        .map(|proof| Box::new(shorten(proof))),
                 }
             }
             normal => Compared::Different(normal),
