@@ -15,7 +15,7 @@ mod substitution;
 mod unify;
 
 pub use bank::{Bank, Head, Mark, SymbolInfo};
-pub use copy::{Copier, renumber};
+pub use copy::{Copier, fold, renumber};
 pub use counts::VariableCounts;
 pub use id::{Sort, Symbol, TermId, Variable};
 pub use matching::match_term;

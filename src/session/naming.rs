@@ -1,7 +1,7 @@
 //! What things are called in evidence.
 
 use crate::proof::{TermIndex, Terms};
-use crate::term::{Bank, Head, Sort, TermId, Variable};
+use crate::term::{Bank, Head, Sort, TermId, Variable, fold};
 use crate::theory::Theory;
 use rustc_hash::FxHashMap;
 
@@ -91,31 +91,9 @@ pub(super) fn plain_term(
     terms: &mut Terms,
     term: TermId,
 ) -> TermIndex {
-    let mut known: FxHashMap<TermId, TermIndex> = FxHashMap::default();
-    let mut stack = vec![term];
-    let mut arguments = Vec::new();
-    while let Some(&top) = stack.last() {
-        if known.contains_key(&top) {
-            stack.pop();
-            continue;
-        }
-        let before = stack.len();
-        let open = bank
-            .arguments(top)
-            .iter()
-            .filter(|a| !known.contains_key(a));
-        stack.extend(open);
-        if stack.len() > before {
-            continue;
-        }
-        arguments.clear();
-        arguments.extend(bank.arguments(top).iter().map(|a| known[a]));
-        let made = match bank.head(top) {
-            Head::Variable(v) => terms.variable(&naming.variables[v.index as usize].0),
-            Head::Symbol(symbol) => terms.apply(&naming.symbols[symbol.index()], &arguments),
-        };
-        known.insert(top, made);
-        stack.pop();
-    }
-    known[&term]
+    let mut known = FxHashMap::default();
+    fold(bank, term, &mut known, |head, arguments| match head {
+        Head::Variable(v) => terms.variable(&naming.variables[v.index as usize].0),
+        Head::Symbol(symbol) => terms.apply(&naming.symbols[symbol.index()], arguments),
+    })
 }

@@ -7,7 +7,7 @@ use crate::engine::{Engine, Question};
 use crate::order::{Order, OrderProblem, OrderSetting};
 use crate::proof;
 use crate::rewrite::{Limits, RuleId, Stopped};
-use crate::term::{Copier, Sort, TermId, Variable};
+use crate::term::{Copier, Head, Sort, TermId, Variable, fold};
 use crate::theory::Theory;
 use rustc_hash::FxHashMap;
 use std::rc::Rc;
@@ -298,32 +298,12 @@ fn copy_back(
     term: TermId,
     numbers: &FxHashMap<(u32, Sort), u32>,
 ) -> TermId {
-    let mut known: FxHashMap<TermId, TermId> = FxHashMap::default();
-    let mut stack = vec![term];
-    let mut arguments = Vec::new();
-    while let Some(&top) = stack.last() {
-        if known.contains_key(&top) {
-            stack.pop();
-            continue;
-        }
-        let before = stack.len();
-        stack.extend(
-            system
-                .bank
-                .arguments(top)
-                .iter()
-                .filter(|a| !known.contains_key(a)),
-        );
-        if stack.len() > before {
-            continue;
-        }
-        arguments.clear();
-        arguments.extend(system.bank.arguments(top).iter().map(|a| known[a]));
-        let symbol = system
-            .bank
-            .as_symbol(top)
-            .expect("a question's terms are ground");
-        let made = match system.question_rank(symbol) {
+    let mut known = FxHashMap::default();
+    fold(&system.bank, term, &mut known, |head, arguments| {
+        let Head::Symbol(symbol) = head else {
+            unreachable!("a question's terms are ground");
+        };
+        match system.question_rank(symbol) {
             Some(rank) => {
                 let index = numbers.get(&rank).copied().unwrap_or(0);
                 bank.variable(Variable {
@@ -331,10 +311,7 @@ fn copy_back(
                     sort: rank.1,
                 })
             }
-            None => bank.apply(symbol, &arguments),
-        };
-        known.insert(top, made);
-        stack.pop();
-    }
-    known[&term]
+            None => bank.apply(symbol, arguments),
+        }
+    })
 }

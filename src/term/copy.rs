@@ -4,6 +4,40 @@ use super::substitution::map_variables;
 use super::{Bank, Head, Symbol, TermId, Variable};
 use rustc_hash::FxHashMap;
 
+/// What a term becomes, made from what its arguments become, distinct subterms once each.
+///
+/// `known` has what subterms became, over any number of calls for which `make` is the same.
+pub fn fold<R: Copy>(
+    bank: &Bank,
+    term: TermId,
+    known: &mut FxHashMap<TermId, R>,
+    mut make: impl FnMut(Head, &[R]) -> R,
+) -> R {
+    let mut stack = vec![term];
+    let mut arguments = Vec::new();
+    while let Some(&top) = stack.last() {
+        if known.contains_key(&top) {
+            stack.pop();
+            continue;
+        }
+        let before = stack.len();
+        let open = bank
+            .arguments(top)
+            .iter()
+            .filter(|a| !known.contains_key(a));
+        stack.extend(open);
+        if stack.len() > before {
+            continue;
+        }
+        arguments.clear();
+        arguments.extend(bank.arguments(top).iter().map(|a| known[a]));
+        let made = make(bank.head(top), &arguments);
+        known.insert(top, made);
+        stack.pop();
+    }
+    known[&term]
+}
+
 /// Copies terms from one bank to another, distinct subterms once each, over any number of calls.
 #[derive(Clone, Debug, Default)]
 pub struct Copier {
@@ -21,34 +55,10 @@ impl Copier {
         mut symbol: impl FnMut(Symbol) -> Symbol,
         mut variable: impl FnMut(&mut Bank, Variable) -> TermId,
     ) -> TermId {
-        let mut frames = vec![term];
-        let mut arguments = Vec::new();
-        while let Some(&top) = frames.last() {
-            if self.known.contains_key(&top) {
-                frames.pop();
-                continue;
-            }
-            let before = frames.len();
-            frames.extend(
-                from.arguments(top)
-                    .iter()
-                    .filter(|a| !self.known.contains_key(a)),
-            );
-            if frames.len() > before {
-                continue;
-            }
-            let made = match from.head(top) {
-                Head::Variable(v) => variable(to, v),
-                Head::Symbol(s) => {
-                    arguments.clear();
-                    arguments.extend(from.arguments(top).iter().map(|a| self.known[a]));
-                    to.apply(symbol(s), &arguments)
-                }
-            };
-            self.known.insert(top, made);
-            frames.pop();
-        }
-        self.known[&term]
+        fold(from, term, &mut self.known, |head, arguments| match head {
+            Head::Variable(v) => variable(to, v),
+            Head::Symbol(s) => to.apply(symbol(s), arguments),
+        })
     }
 }
 
