@@ -44,6 +44,14 @@ struct Reach {
     given_up: bool,
 }
 
+/// What the searches side by side came to.
+#[derive(Default)]
+struct Searched {
+    ended: Option<Ended>,
+    reach: Option<Reach>,
+    found: Option<Box<Counterexample>>,
+}
+
 impl Session {
     /// Climbs the ladder with an equation between two terms of the theory. If neither the rules as
     /// they stand nor a known algebra settle it, a proof and an algebra are searched for side by
@@ -156,7 +164,11 @@ impl Session {
         {
             return Ok((shown, None));
         }
-        let (ended, reach, found) = self.search(question, means, &mut work)?;
+        let Searched {
+            ended,
+            reach,
+            found,
+        } = self.search(question, means, &mut work)?;
         if let Some(found) = found {
             let kept = self.algebras.keep(&found, &answer.question);
             answer.algebra = Some(FoundAlgebra {
@@ -204,10 +216,13 @@ impl Session {
         question: (TermId, TermId),
         means: Means,
         work: &mut Work,
-    ) -> Result<(Option<Ended>, Option<Reach>, Option<Box<Counterexample>>), SessionFault> {
+    ) -> Result<Searched, SessionFault> {
         if means == Means::Proof {
             let ended = self.workers.run(&self.theory, Some(question), work)?;
-            return Ok((Some(ended), None, None));
+            return Ok(Searched {
+                ended: Some(ended),
+                ..Searched::default()
+            });
         }
         let largest = match means {
             Means::Algebra(most) => most,
@@ -240,7 +255,10 @@ impl Session {
         });
         // A search that panicked has found nothing; the next one begins anew.
         let Ok(mut caught) = caught else {
-            return Ok((ended?, None, None));
+            return Ok(Searched {
+                ended: ended?,
+                ..Searched::default()
+            });
         };
         let reach = Reach {
             ruled_out: caught.ruled_out,
@@ -249,7 +267,11 @@ impl Session {
         };
         let found = caught.found.take();
         self.algebras.return_from(caught);
-        Ok((ended?, Some(reach), found))
+        Ok(Searched {
+            ended: ended?,
+            reach: Some(reach),
+            found,
+        })
     }
 
     /// The rungs that need no search: normal forms by the rules as they stand.
