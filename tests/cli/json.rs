@@ -1,6 +1,6 @@
 //! One JSON object a line, with the fields that scripts rely on.
 
-use super::program::{OPEN, GROUP, Place};
+use super::program::{GROUP, OPEN, Place};
 use serde_json::{Value, json};
 
 fn lines(text: &str) -> Vec<Value> {

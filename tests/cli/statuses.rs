@@ -1,6 +1,6 @@
 //! 0 as asked, 1 not, 2 undecided, 3 the input is at fault.
 
-use super::program::{OPEN, GROUP, Place};
+use super::program::{GROUP, OPEN, Place};
 
 #[test]
 fn a_pipe_gets_the_answers_of_the_shell() {
