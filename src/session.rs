@@ -18,6 +18,7 @@ mod library;
 mod naming;
 mod runner;
 mod sheet;
+mod shorten;
 mod store;
 mod subject;
 mod view;

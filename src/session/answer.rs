@@ -140,8 +140,13 @@ pub struct NormalForm {
     pub elapsed: Duration,
     /// Are the rules complete, so that the normal form is the same for all equal terms?
     pub complete: bool,
-    /// Set when rewriting was stopped; `text` is then what had been reached.
+    /// Set when rewriting was stopped; `text` is then the term itself.
     pub stopped: Option<Stopped>,
+    /// Has the checker accepted the proof that the term equals it? Where rewriting took very many
+    /// steps, none is written.
+    pub checked: bool,
+    /// Set when the checker rejected the proof; `text` is then the term itself.
+    pub fault: Option<(ProgramFault, Evidence)>,
 }
 
 /// How a completion went.

@@ -2,6 +2,7 @@
 
 use super::evidence::{ClaimVariables, Writer};
 use super::naming::{Naming, naming};
+use super::shorten::shorten;
 use crate::engine::{Engine, Question};
 use crate::order::{Order, OrderProblem, OrderSetting};
 use crate::proof;
@@ -38,7 +39,12 @@ pub(super) struct Rewritten {
     pub(super) steps: Option<usize>,
     /// The chain, its rules cited and not proved.
     pub(super) chain: Option<proof::Proof>,
+    /// That the term equals its normal form, if it took few steps.
+    pub(super) proof: Option<proof::Proof>,
 }
+
+/// The normal form of a term is proved equal to it if it took no more steps than this.
+const MOST_PROVED: usize = 1_000;
 
 /// An engine with one order, and what of the theory it has.
 pub(super) struct Runner {
@@ -199,7 +205,9 @@ impl Runner {
                 let writer = Writer::new(&mut self.engine, &self.naming, variables);
                 Compared::Same {
                     known,
-                    proof: writer.proof(left, right).map(Box::new),
+                    proof: writer
+                        .proof(left, right)
+                        .map(|proof| Box::new(shorten(proof))),
                 }
             }
             normal => Compared::Different(normal),
@@ -221,11 +229,18 @@ impl Runner {
         let normal = self.engine.system.normal_form(left, limits);
         let rewritten = normal.map(|normal| {
             let steps = self.engine.system.count_steps(left, normal);
-            let writer = Writer::new(&mut self.engine, &self.naming, &asked.variables);
+            let chain = Writer::new(&mut self.engine, &self.naming, &asked.variables)
+                .trace(left, normal, most);
+            let few = steps.is_some_and(|steps| steps <= MOST_PROVED);
+            let proof = few.then(|| {
+                let writer = Writer::new(&mut self.engine, &self.naming, &asked.variables);
+                writer.proof(left, normal)
+            });
             Rewritten {
                 normal,
                 steps,
-                chain: writer.trace(left, normal, most),
+                chain,
+                proof: proof.flatten(),
             }
         });
         self.engine.system.end_asking();

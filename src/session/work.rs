@@ -89,15 +89,37 @@ impl Session {
         let asked = runner.ask(&self.theory, term, term);
         let rewritten = runner.normal_form(&asked, 0, &mut work.limits(None));
         let complete = runner.engine.is_complete();
-        let (found, steps, stopped) = match rewritten {
-            Ok(Rewritten { normal, steps, .. }) => {
+        let mut checked = false;
+        let mut fault = None;
+        let (mut found, mut steps, stopped) = match rewritten {
+            Ok(Rewritten {
+                normal,
+                steps,
+                proof,
+                ..
+            }) => {
                 let back = runner.term_back(&mut self.theory, normal, &asked.variables);
+                if let Some(proof) = proof {
+                    let evidence = Evidence::Proof(proof);
+                    match self.verify(&evidence, Some((term, back)), &control.stop) {
+                        proof::Outcome::Accepted => checked = true,
+                        proof::Outcome::TooCostly => {}
+                        proof::Outcome::Rejected { place, reason } => {
+                            fault = Some((ProgramFault { place, reason }, evidence));
+                        }
+                    }
+                }
                 (back, steps, None)
             }
             Err(stopped) => (term, None, Some(stopped)),
         };
+        if fault.is_some() {
+            (found, steps) = (term, None);
+        }
         self.it = Some(found);
         Ok(NormalForm {
+            checked,
+            fault,
             text: self.term_text(found),
             term: self.term_text(term),
             steps,

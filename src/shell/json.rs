@@ -69,6 +69,7 @@ pub fn normal(file: &str, found: &NormalForm) -> Value {
         "steps": found.steps,
         "seconds": seconds(found.elapsed),
         "complete": found.complete,
+        "checked": found.checked,
         "finished": found.stopped.is_none(),
     })
 }

@@ -31,6 +31,9 @@ pub fn normal(shell: &mut Shell, term: TermId) -> Result<(), Problem> {
         found.map_err(|fault| Problem::session(fault, &shell.session.theory().signature))?;
     let text = show::normal(&found, &shell.session, shell.look());
     shell.out(&text);
+    if let Some((fault, evidence)) = &found.fault {
+        shell.report_fault(fault, evidence);
+    }
     Ok(())
 }
 

@@ -186,7 +186,12 @@ fn searched(frontier: &Frontier) -> String {
 pub fn normal(found: &NormalForm, session: &Session, look: Look) -> String {
     let mut facts = Vec::new();
     if let Some(steps) = found.steps {
-        facts.push(count(steps, "step"));
+        let checked = if found.checked && steps > 0 {
+            ", checked"
+        } else {
+            ""
+        };
+        facts.push(count(steps, "step") + checked);
     }
     facts.push(match (found.stopped, found.complete) {
         (Some(stopped), _) => stop_text(stopped).to_owned(),
@@ -215,7 +220,7 @@ pub fn normal(found: &NormalForm, session: &Session, look: Look) -> String {
         }
     }
     if found.stopped.is_some() {
-        text += &fold("this is how far rewriting came", look.width, 4);
+        text += &fold("the term stands as it was typed", look.width, 4);
     }
     text
 }
