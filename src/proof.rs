@@ -29,7 +29,7 @@ mod values;
 mod work;
 mod write;
 
-pub use check::{check, check_json, check_until};
+pub use check::{check, check_json, check_until, read_json};
 pub use evidence::{
     AlgebraClaim, AlgebraEvidence, Claim, CompleteClaim, CompleteSet, Condition, Equation,
     Evidence, Lemma, OrderKind, Proof, Rule, StatedOrder, Step, Table, Types, Way,

@@ -13,6 +13,7 @@ mod control;
 mod derivation;
 mod derived;
 mod evidence;
+mod file;
 mod library;
 mod naming;
 mod runner;
@@ -31,9 +32,11 @@ pub use answer::{
 pub use change::{ChangeFault, Undone};
 pub use check::ClaimResult;
 pub use control::{Control, Progress};
+pub use file::{write_atomically, write_evidence};
 pub use library::{Library, Listed, Shelf};
 pub use sheet::{LemmaText, ProofLine, ProofText};
 pub use store::{OpenFault, Opened, SaveFault};
+pub use subject::is_of_theory;
 pub use view::{ClaimView, LawView, RuleView, Status, SymbolView};
 pub use workers::NoOrder;
 

@@ -9,6 +9,7 @@ mod batch;
 mod commands;
 mod desk;
 mod editor;
+mod evidence;
 mod help;
 mod json;
 mod layout;
@@ -22,6 +23,7 @@ mod question;
 mod screen;
 mod show;
 mod signals;
+mod verify;
 mod words;
 
 use arguments::Arguments;

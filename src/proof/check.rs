@@ -39,17 +39,25 @@ fn judge(evidence: &Evidence, work: &mut Work) -> Outcome {
     result.into()
 }
 
-/// Judges evidence in the form of JSON. A file is paid for by its length and the number of values
-/// in it before it is read, because the reader holds them all in memory.
-pub fn check_json(json: &[u8], limit: WorkLimit) -> Outcome {
+/// Reads evidence within a limit, and says what is left of it for [`check`]. A file is paid for by
+/// its length and the number of values in it before it is read, because the reader holds them all
+/// in memory.
+///
+/// # Errors
+///
+/// [`Outcome::TooCostly`], or a rejection if it is not JSON of the form of any evidence.
+pub fn read_json(json: &[u8], limit: WorkLimit) -> Result<(Evidence, WorkLimit), Outcome> {
     let opens = |byte: &&u8| matches!(byte, b'[' | b'{' | b',' | b':');
     let values = json.iter().filter(opens).count() as u64;
     let cost = (json.len() as u64).saturating_add(values.saturating_mul(UNITS_PER_VALUE));
-    let Some(left) = limit.0.checked_sub(cost) else {
-        return Outcome::TooCostly;
-    };
-    match from_json(json) {
-        Ok(evidence) => check(&evidence, WorkLimit(left)),
-        Err(rejection) => rejection,
+    let left = limit.0.checked_sub(cost).ok_or(Outcome::TooCostly)?;
+    Ok((from_json(json)?, WorkLimit(left)))
+}
+
+/// Judges evidence in the form of JSON.
+pub fn check_json(json: &[u8], limit: WorkLimit) -> Outcome {
+    match read_json(json, limit) {
+        Ok((evidence, left)) => check(&evidence, left),
+        Err(outcome) => outcome,
     }
 }

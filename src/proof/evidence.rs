@@ -38,6 +38,16 @@ impl Evidence {
         }
     }
 
+    /// The equations by which the evidence introduces symbols. Whether a theory has them already
+    /// is for whoever has the theory to compare.
+    pub fn definitions(&self) -> &[Equation] {
+        match self {
+            Evidence::Proof(proof) => &proof.definitions,
+            Evidence::Algebra(_) => &[],
+            Evidence::Complete(set) => &set.definitions,
+        }
+    }
+
     /// The sorts that the evidence states. Evidence without sorts says nothing about a theory with
     /// sorts, since its equations then hold between all terms.
     pub fn types(&self) -> Option<&Types> {

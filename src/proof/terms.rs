@@ -1,6 +1,7 @@
 //! Plain terms with names, each distinct term stored once.
 
 use std::hash::{BuildHasher, RandomState};
+use std::sync::Arc;
 
 use rustc_hash::{FxHashMap, FxHashSet};
 
@@ -59,8 +60,8 @@ struct Entry {
 /// ```
 #[derive(Clone, Debug, Default)]
 pub struct Terms {
-    names: Vec<Box<str>>,
-    name_of: std::collections::HashMap<Box<str>, Name>,
+    names: Vec<Arc<str>>,
+    name_of: std::collections::HashMap<Arc<str>, Name>,
     entries: Vec<Entry>,
     arguments: Vec<TermIndex>,
     by_hash: FxHashMap<u64, TermIndex>,
@@ -77,8 +78,11 @@ impl Terms {
             return name;
         }
         let name = Name(index(self.names.len()));
-        self.names.push(text.into());
-        self.name_of.insert(text.into(), name);
+        // Shared, since a hostile file may hold names of many megabytes and the checkers copy the
+        // table.
+        let text: Arc<str> = text.into();
+        self.names.push(Arc::clone(&text));
+        self.name_of.insert(text, name);
         name
     }
 

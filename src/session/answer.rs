@@ -176,6 +176,8 @@ pub struct Completion {
     pub stopped: Option<Stopped>,
     /// A sentence on what stands between this and a complete set, if anything does.
     pub remark: Option<String>,
+    /// The rule set as the checker accepted it, if it is complete.
+    pub evidence: Option<Evidence>,
     /// Set when the checker rejected the rule set.
     pub fault: Option<(ProgramFault, Evidence)>,
 }

@@ -1,12 +1,12 @@
 //! Opening and saving.
 
+use super::file::write_atomically;
 use super::library::{Found, built_in_source, is_path};
 use super::runner::Runner;
 use super::workers::Workers;
 use super::{Library, Session};
 use crate::language::{Diagnostic, decode, read_theory, set_derived, set_order};
 use crate::theory::Derived;
-use std::io::Write;
 use std::path::{Path, PathBuf};
 
 /// What opening a theory has brought.
@@ -112,7 +112,8 @@ impl Session {
         };
         self.store_derived();
         let text = self.theory.document.text();
-        write_atomically(&path, &text).map_err(|error| SaveFault::System(path.clone(), error))?;
+        write_atomically(&path, |file| file.write_all(text.as_bytes()))
+            .map_err(|error| SaveFault::System(path.clone(), error))?;
         self.saved_text = text;
         self.theory.source = path.display().to_string();
         self.path = Some(path.clone());
@@ -151,37 +152,3 @@ impl Session {
 }
 
 const STATED: &str = "is the one that was stated";
-
-/// Writes a file by way of a temporary file in the same folder, flushed and renamed. A device or
-/// pipe is written to as it is.
-fn write_atomically(path: &Path, text: &str) -> std::io::Result<()> {
-    // A link is followed, so that it stays one.
-    let path = &path.canonicalize().unwrap_or_else(|_| path.to_owned());
-    let known = std::fs::metadata(path);
-    if known.as_ref().is_ok_and(|file| !file.is_file()) {
-        let mut file = std::fs::OpenOptions::new().write(true).open(path)?;
-        file.write_all(text.as_bytes())?;
-        return file.flush();
-    }
-    let folder = path
-        .parent()
-        .filter(|folder| !folder.as_os_str().is_empty());
-    let folder = folder.unwrap_or(Path::new("."));
-    let mut file = tempfile::Builder::new()
-        .prefix(".equable-")
-        .tempfile_in(folder)?;
-    file.write_all(text.as_bytes())?;
-    if let Ok(known) = known {
-        if known.permissions().readonly() {
-            return Err(std::io::Error::from(std::io::ErrorKind::PermissionDenied));
-        }
-        file.as_file().set_permissions(known.permissions())?;
-    }
-    file.as_file().sync_all()?;
-    file.persist(path).map_err(|error| error.error)?;
-    // The name is safe once the folder is; where that cannot be asked for, it is left to the system.
-    if let Ok(folder) = std::fs::File::open(folder) {
-        let _ = folder.sync_all();
-    }
-    Ok(())
-}

@@ -6,10 +6,20 @@
 
 use super::naming::Naming;
 use super::naming::naming;
-use crate::proof::{Equation, Evidence, Node, TermIndex, Terms, Types};
+use crate::proof::{Equation, Evidence, Name, Node, TermIndex, Terms, Types};
 use crate::term::{Head, TermId};
 use crate::theory::Theory;
 use rustc_hash::FxHashSet;
+
+/// Are the laws and sorts of evidence those of the theory? Where not, says how they differ.
+///
+/// # Errors
+///
+/// A sentence about the first difference.
+pub fn is_of_theory(theory: &Theory, evidence: &Evidence) -> Result<(), String> {
+    let naming = naming(theory);
+    Subject::new(theory, &naming, evidence).belongs(evidence)
+}
 
 /// Compares the laws, the sorts and the claim; where they differ, says how.
 pub(super) fn is_about(
@@ -18,17 +28,13 @@ pub(super) fn is_about(
     question: Option<(TermId, TermId)>,
 ) -> Result<(), String> {
     let naming = naming(theory);
-    let subject = Subject {
-        theory,
-        naming: &naming,
-        terms: evidence.terms(),
-    };
-    let laws = evidence.laws();
-    laws.iter().try_for_each(|law| subject.law(law))?;
-    if !matches!(evidence, Evidence::Proof(_)) && laws.len() != theory.laws.len() {
-        return Err("it does not have every law of the theory".to_owned());
+    let subject = Subject::new(theory, &naming, evidence);
+    subject.belongs(evidence)?;
+    if let Evidence::Proof(proof) = evidence
+        && !proof.claim.when.is_empty()
+    {
+        return Err("its claim has conditions, which the question has not".to_owned());
     }
-    subject.types(evidence.types())?;
     match (question, evidence.claim()) {
         (None, None) => Ok(()),
         (Some((left, right)), Some((s, t))) if subject.same(left, s) && subject.same(right, t) => {
@@ -44,7 +50,46 @@ struct Subject<'a> {
     terms: &'a Terms,
 }
 
-impl Subject<'_> {
+impl<'a> Subject<'a> {
+    fn new(theory: &'a Theory, naming: &'a Naming, evidence: &'a Evidence) -> Self {
+        Subject {
+            theory,
+            naming,
+            terms: evidence.terms(),
+        }
+    }
+
+    fn belongs(&self, evidence: &Evidence) -> Result<(), String> {
+        let laws = evidence.laws();
+        laws.iter().try_for_each(|law| self.law(law))?;
+        // The laws of a theory have different names, so that counting them is enough.
+        let named: FxHashSet<_> = laws.iter().map(|law| law.name).collect();
+        if !matches!(evidence, Evidence::Proof(_)) && named.len() != self.theory.laws.len() {
+            return Err("it does not have every law of the theory".to_owned());
+        }
+        let defined = self.defined(evidence.definitions())?;
+        self.types(evidence.types(), &defined)
+    }
+
+    /// The symbols that the evidence defines. One of the theory is none of them: the checker only
+    /// sees that the laws that are used do not mention it.
+    fn defined(&self, definitions: &[Equation]) -> Result<FxHashSet<Name>, String> {
+        let mut defined = FxHashSet::default();
+        for definition in definitions {
+            if let Node::Apply(name, _) = self.terms.node(definition.left) {
+                let text = self.terms.text(name);
+                let bare = text.rsplit_once('/').map_or(text, |(bare, _)| bare);
+                let signature = &self.theory.signature;
+                let mut known = signature.symbols().iter().map(|symbol| &symbol.name);
+                if known.any(|known| known == text || known == bare) {
+                    return Err(format!("it defines {text}, which the theory has"));
+                }
+                defined.insert(name);
+            }
+        }
+        Ok(defined)
+    }
+
     fn law(&self, law: &Equation) -> Result<(), String> {
         let name = self.terms.text(law.name);
         let known = self
@@ -59,7 +104,7 @@ impl Subject<'_> {
         }
     }
 
-    fn types(&self, types: Option<&Types>) -> Result<(), String> {
+    fn types(&self, types: Option<&Types>, defined: &FxHashSet<Name>) -> Result<(), String> {
         let signature = &self.theory.signature;
         let Some(types) = types else {
             let untyped = !signature.has_sorts();
@@ -69,7 +114,28 @@ impl Subject<'_> {
                 Err("it leaves the sorts out".to_owned())
             };
         };
+        let sort_is_known = |sort: &Name| {
+            let sort = self.terms.text(*sort);
+            let is_unnamed = !signature.has_sorts() && sort.is_empty();
+            is_unnamed || signature.sort_named(sort).is_some()
+        };
+        for (variable, sort) in &types.variables {
+            let name = self.terms.text(*variable);
+            let mut variables = self.naming.variables.iter();
+            let right = match variables.find(|(known, _)| known == name) {
+                Some((_, wanted)) => signature.sort_name(*wanted) == self.terms.text(*sort),
+                None => sort_is_known(sort),
+            };
+            if !right {
+                return Err(format!(
+                    "the variable {name} has another sort in the theory"
+                ));
+            }
+        }
         for (name, sorts) in &types.operators {
+            if defined.contains(name) && sorts.iter().all(sort_is_known) {
+                continue;
+            }
             let name = self.terms.text(*name);
             let place = self.naming.symbols.iter().position(|known| known == name);
             let wanted = place.map(|place| &self.naming.types[place]);

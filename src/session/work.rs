@@ -59,6 +59,7 @@ impl Session {
             orders: tried,
             stopped,
             remark,
+            evidence: None,
             fault: None,
         };
         if let Ended::Complete(_) = ended {
@@ -178,7 +179,10 @@ impl Session {
             return;
         };
         match self.verify(&evidence, None, stop) {
-            proof::Outcome::Accepted => completion.complete = true,
+            proof::Outcome::Accepted => {
+                completion.complete = true;
+                completion.evidence = Some(evidence);
+            }
             proof::Outcome::TooCostly if stop.load(Ordering::Relaxed) => {
                 completion.stopped = Some(Stopped::Interrupted);
                 completion.remark =

@@ -1,7 +1,8 @@
 //! The command line.
 
 use super::quantity;
-use clap::{Args, Parser, Subcommand};
+use clap::{Args, Parser, Subcommand, ValueEnum};
+use std::path::PathBuf;
 use std::time::Duration;
 
 const AFTER: &str = "\
@@ -10,7 +11,9 @@ folder and among the theories inside the program. A theory whose name is a comma
 opened with ./NAME.
 
 Exit status: 0 everything as asked or claimed, 1 something is not, 2 something is undecided,
-3 the input is at fault, 4 the program could not do its work.";
+3 the input is at fault, 4 the program could not do its work. For verify: 0 everything is accepted,
+1 something is rejected, 2 something is too costly to check, 3 and 4 as before; where several
+apply, 4 goes before 3, 3 before 1, and 1 before 2.";
 
 /// Keeps equational laws and answers, with evidence, what follows from them.
 #[derive(Debug, Parser)]
@@ -43,6 +46,8 @@ pub enum Task {
         question: String,
         #[command(flatten)]
         options: Options,
+        #[command(flatten)]
+        evidence: EvidenceFolder,
     },
     /// The normal form of a term by the rules of a theory.
     Normal {
@@ -60,6 +65,8 @@ pub enum Task {
         files: Vec<String>,
         #[command(flatten)]
         options: Options,
+        #[command(flatten)]
+        evidence: EvidenceFolder,
     },
     /// Looks for a complete set of rules for a theory.
     Complete {
@@ -67,18 +74,50 @@ pub enum Task {
         file: String,
         #[command(flatten)]
         options: Options,
+        #[command(flatten)]
+        evidence: EvidenceFolder,
+    },
+    /// Checks evidence in files, without searching for anything.
+    Verify {
+        /// The files, as --evidence and the command evidence write them.
+        #[arg(required = true, value_name = "EVIDENCE")]
+        files: Vec<String>,
+        /// The laws and sorts must be those of this theory.
+        #[arg(long, value_name = "FILE")]
+        theory: Option<String>,
+        /// One JSON object a line instead of text.
+        #[arg(long)]
+        json: bool,
     },
 }
 
 /// What the tasks that answer have in common.
 #[derive(Clone, Copy, Debug, Args)]
 pub struct Options {
-    /// One JSON object a line instead of text.
-    #[arg(long)]
-    pub json: bool,
+    /// One JSON object a line instead of text; full has the evidence inside.
+    #[arg(long, value_name = "FORM", num_args = 0..=1, require_equals = true)]
+    #[arg(default_missing_value = "brief")]
+    pub json: Option<Json>,
     /// For how long to work, such as 500ms, 60s, 2m or 1h.
     #[arg(long, value_name = "TIME", value_parser = duration)]
     pub within: Option<Duration>,
+}
+
+/// Where evidence goes.
+#[derive(Clone, Debug, Args)]
+pub struct EvidenceFolder {
+    /// Write the evidence of every settled answer into this folder, one JSON file each.
+    #[arg(long = "evidence", value_name = "FOLDER")]
+    pub folder: Option<PathBuf>,
+}
+
+/// How much an answer as JSON holds.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, ValueEnum)]
+pub enum Json {
+    /// The answer, and where its evidence is.
+    Brief,
+    /// The evidence too.
+    Full,
 }
 
 fn duration(text: &str) -> Result<Duration, String> {

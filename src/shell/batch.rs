@@ -1,16 +1,19 @@
 //! What the command line asks for.
 
-use super::arguments::{Arguments, Options, Task};
+use super::arguments::{Arguments, EvidenceFolder, Options, Task};
 use super::commands::open;
 use super::desk::Shell;
 use super::editor;
+use super::evidence::Folder;
+use super::json::Kept;
 use super::lines::{self, Piped};
 use super::problem::{Problem, plain_error};
 use super::quantity::count;
 use super::screen::Screen;
 use super::signals::Signals;
-use super::{json, line, places, show, status};
+use super::{json, line, places, show, status, verify};
 use crate::language::{Diagnostic, Fault, Question, Source};
+use crate::proof::Evidence;
 use crate::session::{ClaimResult, Session, Verdict};
 use crate::theory::Expected;
 use std::io::{ErrorKind, IsTerminal};
@@ -33,16 +36,67 @@ pub fn run(arguments: Arguments) -> u8 {
                     file,
                     question,
                     options,
-                } => ask(&mut shell, &file, &question, options),
+                    evidence,
+                } => match folder(&evidence, false) {
+                    Ok(mut kept) => ask(&mut shell, &file, &question, options, &mut kept),
+                    Err(problem) => told(&mut shell, problem),
+                },
                 Task::Normal {
                     file,
                     term,
                     options,
                 } => normal(&mut shell, &file, &term, options),
-                Task::Check { files, options } => check(&mut shell, &files, options),
-                Task::Complete { file, options } => complete(&mut shell, &file, options),
+                Task::Check {
+                    files,
+                    options,
+                    evidence,
+                } => match folder(&evidence, true) {
+                    Ok(mut kept) => check(&mut shell, &files, options, &mut kept),
+                    Err(problem) => told(&mut shell, problem),
+                },
+                Task::Complete {
+                    file,
+                    options,
+                    evidence,
+                } => match folder(&evidence, true) {
+                    Ok(mut kept) => complete(&mut shell, &file, options, &mut kept),
+                    Err(problem) => told(&mut shell, problem),
+                },
+                Task::Verify {
+                    files,
+                    theory,
+                    json,
+                } => verify::run(&mut shell, &files, theory.as_deref(), json),
             };
             finish(&shell, status)
+        }
+    }
+}
+
+/// The folder for evidence, if there is to be one.
+fn folder(wanted: &EvidenceFolder, replaces: bool) -> Result<Option<Folder>, Problem> {
+    let folder = wanted.folder.as_deref();
+    folder.map(|path| Folder::make(path, replaces)).transpose()
+}
+
+fn told(shell: &mut Shell, problem: Problem) -> u8 {
+    shell.tell(problem);
+    shell.status
+}
+
+/// Writes evidence into the folder, if there are both; gives the path.
+fn keep(
+    shell: &mut Shell,
+    folder: &mut Option<Folder>,
+    (theory, about): (&str, &str),
+    evidence: Option<&Evidence>,
+) -> Option<String> {
+    let written = folder.as_mut()?.write(theory, about, evidence?);
+    match written {
+        Ok(path) => Some(path),
+        Err(problem) => {
+            shell.tell(problem);
+            None
         }
     }
 }
@@ -198,7 +252,13 @@ fn about(text: &str, message: &str, help: &str) -> Problem {
     Problem::Text(vec![Diagnostic::new(source, fault)])
 }
 
-fn ask(shell: &mut Shell, file: &str, text: &str, options: Options) -> u8 {
+fn ask(
+    shell: &mut Shell,
+    file: &str,
+    text: &str,
+    options: Options,
+    folder: &mut Option<Folder>,
+) -> u8 {
     if !open_quietly(shell, file) {
         return shell.status;
     }
@@ -222,28 +282,35 @@ fn ask(shell: &mut Shell, file: &str, text: &str, options: Options) -> u8 {
         shell.tell(problem);
         return shell.status;
     }
-    let Some(answer) = shell.session.answers().last() else {
+    let Some(answer) = shell.session.answers().last().cloned() else {
         return status::PROGRAM;
     };
-    let text = if options.json {
+    let path = keep(shell, folder, (file, "question"), answer.evidence.as_ref());
+    let text = if let Some(form) = options.json {
+        let kept = Kept::new(form, answer.evidence.as_ref(), path);
         let sign = if wanted == Expected::Equal { "=" } else { "!=" };
         let question = shell.session.equation_text(left, sign, right);
-        format!("{}\n", json::ask(file, &question, wanted, answer))
+        format!("{}\n", json::ask(file, &question, wanted, &answer, kept))
     } else {
-        show::answer(answer, &shell.session, shell.look(), show::Place::Batch)
+        let place = show::Place::Batch;
+        show::answer(&answer, &shell.session, shell.look(), place) + &evidence_in(path)
     };
-    let verdict = answer.verdict;
-    let fault = answer.fault.clone();
     shell.out(&text);
-    if let Some((fault, evidence)) = fault {
-        shell.report_fault(&fault, &evidence);
+    if let Some((fault, evidence)) = &answer.fault {
+        shell.report_fault(fault, evidence);
         return shell.status;
     }
-    match (verdict, wanted) {
+    let status = match (answer.verdict, wanted) {
         (Verdict::Undecided, _) => status::UNDECIDED,
         (Verdict::Equal, Expected::Equal) | (Verdict::NotEqual, Expected::NotEqual) => status::FINE,
         _ => status::NOT,
-    }
+    };
+    status::worse(shell.status, status)
+}
+
+/// The line that says where the evidence is.
+fn evidence_in(path: Option<String>) -> String {
+    path.map_or_else(String::new, |path| format!("evidence in {path}\n"))
 }
 
 fn normal(shell: &mut Shell, file: &str, text: &str, options: Options) -> u8 {
@@ -272,7 +339,7 @@ fn normal(shell: &mut Shell, file: &str, text: &str, options: Options) -> u8 {
             return shell.status;
         }
     };
-    if options.json {
+    if options.json.is_some() {
         shell.out(&format!("{}\n", json::normal(file, &found)));
     } else {
         shell.out(&format!("{}\n", found.text));
@@ -281,7 +348,7 @@ fn normal(shell: &mut Shell, file: &str, text: &str, options: Options) -> u8 {
         shell.remark("Rewriting was stopped; this is how far it came.");
         return status::UNDECIDED;
     }
-    if !found.complete && !options.json {
+    if !found.complete && options.json.is_none() {
         shell.remark(
             "Note: the rules are not complete, so an equal term may have another normal form.",
         );
@@ -308,11 +375,11 @@ impl Timer {
     }
 }
 
-fn check(shell: &mut Shell, files: &[String], options: Options) -> u8 {
+fn check(shell: &mut Shell, files: &[String], options: Options, folder: &mut Option<Folder>) -> u8 {
     let mut worst = status::FINE;
     for file in files {
         shell.status = status::FINE;
-        let status = check_one(shell, file, files.len() > 1, options);
+        let status = check_one(shell, file, files.len() > 1, options, folder);
         worst = status::worse(worst, status);
         if shell.interrupted || shell.screen.broken().is_some() {
             break;
@@ -321,11 +388,17 @@ fn check(shell: &mut Shell, files: &[String], options: Options) -> u8 {
     worst
 }
 
-fn check_one(shell: &mut Shell, file: &str, is_one_of_many: bool, options: Options) -> u8 {
+fn check_one(
+    shell: &mut Shell,
+    file: &str,
+    is_one_of_many: bool,
+    options: Options,
+    folder: &mut Option<Folder>,
+) -> u8 {
     if !open_quietly(shell, file) {
         return shell.status;
     }
-    if is_one_of_many && !options.json {
+    if is_one_of_many && options.json.is_none() {
         shell.out(&format!("{file}\n"));
     }
     let within = options.within.unwrap_or(shell.session.budgets().check);
@@ -340,9 +413,21 @@ fn check_one(shell: &mut Shell, file: &str, is_one_of_many: bool, options: Optio
         }
     };
     let look = shell.look();
-    let text = if options.json {
-        let line = |result: &ClaimResult| format!("{}\n", json::claim(file, result));
-        results.iter().map(line).collect()
+    let paths: Vec<Option<String>> = results
+        .iter()
+        .map(|result| {
+            let number = result.number.to_string();
+            let about = result.name.as_deref().unwrap_or(&number);
+            let evidence = result.answer.evidence.as_ref();
+            keep(shell, folder, (file, about), evidence)
+        })
+        .collect();
+    let text = if let Some(form) = options.json {
+        let line = |(result, path): (&ClaimResult, Option<String>)| {
+            let kept = Kept::new(form, result.answer.evidence.as_ref(), path);
+            format!("{}\n", json::claim(file, result, kept))
+        };
+        results.iter().zip(paths).map(line).collect()
     } else if claims == 0 {
         "no claims\n".to_owned()
     } else {
@@ -372,7 +457,7 @@ fn check_one(shell: &mut Shell, file: &str, is_one_of_many: bool, options: Optio
     status::worse(shell.status, status)
 }
 
-fn complete(shell: &mut Shell, file: &str, options: Options) -> u8 {
+fn complete(shell: &mut Shell, file: &str, options: Options, folder: &mut Option<Folder>) -> u8 {
     if !open_quietly(shell, file) {
         return shell.status;
     }
@@ -386,14 +471,16 @@ fn complete(shell: &mut Shell, file: &str, options: Options) -> u8 {
             return shell.status;
         }
     };
-    let text = if options.json {
-        format!("{}\n", json::complete(file, &shell.session, &done))
+    let path = keep(shell, folder, (file, "complete"), done.evidence.as_ref());
+    let text = if let Some(form) = options.json {
+        let kept = Kept::new(form, done.evidence.as_ref(), path);
+        format!("{}\n", json::complete(file, &shell.session, &done, kept))
     } else {
         let mut text = show::completion(&done, shell.look(), show::Place::Batch);
         for rule in shell.session.rules() {
             text += &format!("{}\n", rule.text);
         }
-        text
+        text + &evidence_in(path)
     };
     shell.out(&text);
     if let Some((fault, evidence)) = &done.fault {

@@ -9,6 +9,7 @@ mod claims;
 mod complete;
 mod drop;
 mod evaluate;
+mod evidence;
 mod help;
 mod laws;
 mod new;
@@ -38,6 +39,7 @@ pub const ALL: &[&Command] = &[
     &prove::COMMAND,
     &separate::COMMAND,
     &proof::COMMAND,
+    &evidence::COMMAND,
     &why::COMMAND,
     &evaluate::COMMAND,
     &answers::COMMAND,

@@ -12,6 +12,7 @@ use crate::language::{Diagnostic, first_word, is_declaration, is_reserved};
 use crate::proof::{self, Evidence};
 use crate::session::{Control, ProgramFault, Session};
 use std::panic::{AssertUnwindSafe, catch_unwind};
+use std::path::Path;
 
 /// The shell.
 pub struct Shell {
@@ -240,6 +241,20 @@ impl Shell {
                 false
             }
         }
+    }
+
+    /// May this file be written? One that is there is replaced only if whoever sits in front says
+    /// so. A script says what it means.
+    pub fn may_replace(&mut self, path: &Path) -> bool {
+        let Some(editor) = self.editor.as_mut().filter(|_| path.is_file()) else {
+            return true;
+        };
+        let question = format!(
+            "{} is there already. Replace it? yes or no: ",
+            path.display()
+        );
+        let answer = editor.ask(&question, &self.signals, self.screen.look());
+        matches!(answer.trim().to_lowercase().as_str(), "y" | "yes")
     }
 
     /// The theory is put away because there are no more lines.

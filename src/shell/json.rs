@@ -1,8 +1,10 @@
 //! Answers as JSON, one object a line.
 
+use super::arguments::Json;
 use crate::language::Names;
 use crate::language::TheoryNames;
 use crate::order::OrderKind;
+use crate::proof::{Evidence, to_json};
 use crate::session::{Answer, By, ClaimResult, Completion, NormalForm, Session};
 use crate::theory::Expected;
 use serde_json::{Map, Value, json};
@@ -17,19 +19,53 @@ pub fn expected(expected: Option<Expected>) -> Value {
     }
 }
 
+/// Where the evidence of an answer is, as fields of its object.
+pub struct Kept {
+    /// The value of `"evidence"`: a path, the evidence itself, or null.
+    evidence: Value,
+    /// The path, where the evidence itself stands in the other field.
+    file: Option<String>,
+}
+
+impl Kept {
+    /// Of evidence that was written to `file`, if it was written.
+    pub fn new(form: Json, evidence: Option<&Evidence>, file: Option<String>) -> Kept {
+        match (form, evidence) {
+            (Json::Full, Some(evidence)) => Kept {
+                evidence: to_json(evidence),
+                file,
+            },
+            _ => Kept {
+                evidence: file.map_or(Value::Null, Value::String),
+                file: None,
+            },
+        }
+    }
+
+    fn put_into(self, made: &mut Value) {
+        if let Some(object) = made.as_object_mut() {
+            object.insert("evidence".to_owned(), self.evidence);
+            if let Some(file) = self.file {
+                object.insert("evidence_file".to_owned(), json!(file));
+            }
+        }
+    }
+}
+
 /// The answer to a question of `ask`.
-pub fn ask(file: &str, question: &str, wanted: Expected, answer: &Answer) -> Value {
-    object(file, None, question, Some(wanted), answer)
+pub fn ask(file: &str, question: &str, wanted: Expected, answer: &Answer, kept: Kept) -> Value {
+    object(file, None, question, Some(wanted), answer, kept)
 }
 
 /// The answer to a claim.
-pub fn claim(file: &str, result: &ClaimResult) -> Value {
+pub fn claim(file: &str, result: &ClaimResult, kept: Kept) -> Value {
     object(
         file,
         result.name.as_deref(),
         &result.text,
         Some(result.expected),
         &result.answer,
+        kept,
     )
 }
 
@@ -39,6 +75,7 @@ fn object(
     question: &str,
     wanted: Option<Expected>,
     answer: &Answer,
+    kept: Kept,
 ) -> Value {
     let mut made = json!({
         "file": file,
@@ -48,8 +85,8 @@ fn object(
         "expected": expected(wanted),
         "by": answer.by.map(By::text),
         "seconds": seconds(answer.elapsed),
-        "evidence": null,
     });
+    kept.put_into(&mut made);
     if let (Some([left, right]), Some(object)) = (&answer.normal, made.as_object_mut()) {
         object.insert("normal".to_owned(), json!([left, right]));
     }
@@ -75,13 +112,13 @@ pub fn normal(file: &str, found: &NormalForm) -> Value {
 }
 
 /// A completion.
-pub fn complete(file: &str, session: &Session, done: &Completion) -> Value {
+pub fn complete(file: &str, session: &Session, done: &Completion, kept: Kept) -> Value {
     let rules: Vec<Value> = session
         .rules()
         .into_iter()
         .map(|rule| json!({ "number": rule.number, "rule": rule.text, "oriented": rule.oriented }))
         .collect();
-    json!({
+    let mut made = json!({
         "file": file,
         "complete": done.complete,
         "rules": done.rules,
@@ -90,7 +127,9 @@ pub fn complete(file: &str, session: &Session, done: &Completion) -> Value {
         "pairs": done.pairs,
         "seconds": seconds(done.elapsed),
         "list": rules,
-    })
+    });
+    kept.put_into(&mut made);
+    made
 }
 
 /// The order as in evidence, from the line that states it.

@@ -90,6 +90,12 @@ impl<'t> Line<'t> {
         start..start + rest.len()
     }
 
+    /// The place of the first word, for messages about the whole command.
+    pub fn command(&self) -> Range<usize> {
+        let (_, range) = self.from(0).peek().unwrap_or(("", 0..0));
+        range
+    }
+
     /// Reads `within TIME`, if it is there, and the end of the line.
     pub fn within(&mut self) -> Result<Option<Duration>, Problem> {
         let mut time = None;

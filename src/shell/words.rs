@@ -20,7 +20,6 @@ const LATER: &[(&str, &str)] = &[
         "closed",
         "an equation that follows from the laws holds on closed terms too",
     ),
-    ("evidence", "proof N shows the proof of an answer"),
     ("simplify", ""),
     (
         "replace",

@@ -6,6 +6,7 @@
 // Each test crate uses a part of this.
 #![allow(dead_code)]
 
+pub mod by_hand;
 pub mod textbook;
 pub mod tree;
 

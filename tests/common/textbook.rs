@@ -4,7 +4,8 @@
 use super::tree::Tree::{self, App, Var};
 use equable::order::{OrderKind, OrderSetting};
 use equable::session::Session;
-use std::collections::BTreeMap;
+use serde_json::Value;
+use std::collections::{BTreeMap, BTreeSet};
 
 /// An order by the names of symbols. Prefix and infix uses of one sign must not both occur.
 pub struct Textbook {
@@ -40,6 +41,42 @@ impl Textbook {
             weights: weights.collect(),
             variable: u64::from(setting.variable_weight),
         }
+    }
+
+    /// The order of a file of evidence, if its parameters are those of a reduction order.
+    pub fn of_json(order: &Value, operators: &BTreeMap<String, usize>) -> Result<Self, String> {
+        let precedence = order["precedence"].as_array().ok_or("no precedence")?;
+        let precedence = precedence.iter().filter_map(|name| name.as_str());
+        let precedence: Vec<String> = precedence.map(str::to_owned).collect();
+        let distinct: BTreeSet<&String> = precedence.iter().collect();
+        let all = operators.keys().all(|name| distinct.contains(name));
+        if distinct.len() != precedence.len() || !all {
+            return Err("the precedence is not one".to_owned());
+        }
+        if order["kind"] == "lpo" {
+            return Ok(Textbook {
+                kind: OrderKind::Lpo,
+                precedence,
+                weights: BTreeMap::new(),
+                variable: 1,
+            });
+        }
+        let variable = order["variable"].as_u64().filter(|weight| *weight > 0);
+        let mut weights = BTreeMap::new();
+        for (name, arity) in operators {
+            let weight = order["weights"][name].as_u64().ok_or("no weight")?;
+            let too_light = *arity == 0 && variable.is_none_or(|least| weight < least);
+            if too_light || *arity == 1 && weight == 0 && precedence[0] != *name {
+                return Err("the weights are not admissible".to_owned());
+            }
+            weights.insert(name.clone(), weight);
+        }
+        Ok(Textbook {
+            kind: OrderKind::Kbo,
+            precedence,
+            weights,
+            variable: variable.ok_or("variables weigh nothing")?,
+        })
     }
 
     pub fn greater(&self, s: &Tree, t: &Tree) -> bool {

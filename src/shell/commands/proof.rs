@@ -9,6 +9,7 @@ use crate::shell::line::Line;
 use crate::shell::problem::Problem;
 use crate::shell::quantity::count;
 use crate::shell::show;
+use std::ops::Range;
 
 /// The command.
 pub const COMMAND: Command = Command {
@@ -42,9 +43,21 @@ fn run(shell: &mut Shell, mut line: Line<'_>) -> Result<(), Problem> {
 
 /// The place of the answer that the line names; the last one if it names none.
 fn number(shell: &Shell, line: &mut Line<'_>) -> Result<usize, Problem> {
-    let known = shell.session.answers().len();
     let wanted = line.peek().filter(|(word, _)| *word != "short");
-    let start = line.at;
+    if wanted.is_some() {
+        line.word();
+    }
+    answer_at(shell, line, wanted)
+}
+
+/// The place of the answer with the number that was read from the line; of the last one if there
+/// was none.
+pub(super) fn answer_at(
+    shell: &Shell,
+    line: &Line<'_>,
+    wanted: Option<(&str, Range<usize>)>,
+) -> Result<usize, Problem> {
+    let known = shell.session.answers().len();
     let fault = |range, message: String| {
         let help = match known {
             0 => "type an equation first: its answer gets a number".to_owned(),
@@ -56,10 +69,9 @@ fn number(shell: &Shell, line: &mut Line<'_>) -> Result<usize, Problem> {
     let Some((word, range)) = wanted else {
         return match known.checked_sub(1) {
             Some(last) => Ok(last),
-            None => Err(line.problem(fault(start - 5..start, "there is no answer yet".to_owned()))),
+            None => Err(line.problem(fault(line.command(), "there is no answer yet".to_owned()))),
         };
     };
-    line.word();
     match word.parse::<usize>() {
         Ok(number) if (1..=known).contains(&number) => Ok(number - 1),
         Ok(number) => Err(line.problem(fault(range, format!("there is no answer {number}")))),

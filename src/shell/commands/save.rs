@@ -39,23 +39,12 @@ fn run(shell: &mut Shell, mut line: Line<'_>) -> Result<(), Problem> {
     Ok(())
 }
 
-/// Another file is replaced only if whoever sits in front says so. A script says what it means.
+/// The theory's own file is what `save` is for.
 fn may_replace(shell: &mut Shell, path: &Path) -> bool {
     let same = |a: &Path, b: &Path| match (a.canonicalize(), b.canonicalize()) {
         (Ok(a), Ok(b)) => a == b,
         _ => false,
     };
     let own = shell.session.path().is_some_and(|own| same(own, path));
-    if own || !path.is_file() {
-        return true;
-    }
-    let Some(editor) = &mut shell.editor else {
-        return true;
-    };
-    let question = format!(
-        "{} is there already. Replace it? yes or no: ",
-        path.display()
-    );
-    let answer = editor.ask(&question, &shell.signals, shell.screen.look());
-    matches!(answer.trim().to_lowercase().as_str(), "y" | "yes")
+    own || shell.may_replace(path)
 }
