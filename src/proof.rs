@@ -8,13 +8,14 @@
 //!
 //! Nothing here imports another module of the program and nothing here searches, so that a fault
 //! in the engine cannot vouch for itself. Read in this order: `terms`, `evidence`, `check_chain`,
-//! `check_algebra`, `check_order`, `check_rewrite`, `check_join`, `check_complete`.
+//! `check_algebra`, `check_order`, `check_rewrite`, `check_ac`, `check_join`, `check_complete`.
 //!
 //! Rejection is always safe, acceptance has to be right. Every loop whose length depends on the
 //! evidence spends from a [`WorkLimit`]; when it is used up the evidence is too costly to check,
 //! which is neither acceptance nor rejection.
 
 mod check;
+mod check_ac;
 mod check_algebra;
 mod check_chain;
 mod check_complete;

@@ -38,7 +38,7 @@ pub use sheet::{LemmaText, ProofLine, ProofText};
 pub use store::{OpenFault, Opened, SaveFault};
 pub use subject::is_of_theory;
 pub use view::{ClaimView, LawView, RuleView, Status, SymbolView};
-pub use workers::NoOrder;
+pub use workers::{NoOrder, Obstacle};
 
 use crate::language::Printer;
 use crate::language::TheoryNames;
@@ -65,10 +65,14 @@ pub struct Session {
     undo: Vec<change::Snapshot>,
     redo: Vec<change::Snapshot>,
     library: Library,
+    /// The laws as text.
+    law_text: std::sync::Arc<str>,
     /// Changes when terms of the theory's bank may have got other ids.
     lineage: u32,
     /// Was the theory ever completed, or worked on to that end?
     completed: bool,
+    /// Has the checker rejected the rules as a complete set? Then they are not called one.
+    distrusted: bool,
 }
 
 /// How long things may take that are not told a time.
@@ -123,7 +127,8 @@ impl Session {
     }
 
     fn with(theory: Theory, path: Option<PathBuf>, library: Library) -> Session {
-        Session {
+        let mut session = Session {
+            law_text: "".into(),
             saved_text: theory.document.text(),
             theory,
             path,
@@ -137,7 +142,10 @@ impl Session {
             library,
             lineage: 0,
             completed: false,
-        }
+            distrusted: false,
+        };
+        session.law_text = session.law_text();
+        session
     }
 
     /// The theory.

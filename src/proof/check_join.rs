@@ -6,8 +6,9 @@
 //! are opened one variable at a time and only where the terms have not met yet. If some equation
 //! has variables on one side only, then also whether a variable stands for the least ground term.
 
-use rustc_hash::FxHashMap;
+use rustc_hash::{FxHashMap, FxHashSet};
 
+use super::check_ac;
 use super::check_order::Assumption;
 use super::check_rewrite::{NormalForms, Rewriting, one_replacement};
 use super::terms::{Name, Substitution, TermIndex};
@@ -53,6 +54,8 @@ pub(super) struct Joining {
     variables: FxHashMap<(Role, u32, Name), TermIndex>,
     has_ordered: bool,
     has_extra: bool,
+    /// The operators modulo whose associativity and commutativity ground terms join.
+    ac: FxHashSet<Name>,
 }
 
 /// What is assumed of a variable of the goal.
@@ -75,6 +78,7 @@ struct Case {
 impl Joining {
     pub(super) fn new(system: Rewriting) -> Self {
         let has_ordered = system.rules.iter().any(|rule| rule.ordered);
+        let ac = check_ac::operators(&system.terms, &system.rules);
         let has_extra = system.rules.iter().any(|rule| !rule.extra.is_empty());
         Joining {
             system,
@@ -83,6 +87,7 @@ impl Joining {
             variables: FxHashMap::default(),
             has_ordered,
             has_extra,
+            ac,
         }
     }
 
@@ -102,6 +107,10 @@ impl Joining {
     /// Whether `goal` joins in every case.
     pub(super) fn joins(&mut self, goal: &Goal, work: &mut Work) -> Result<Joined, Stop> {
         if goal.left == goal.right {
+            return Ok(Joined::Yes);
+        }
+        let terms = &mut self.system.terms;
+        if check_ac::equal(terms, &self.ac, goal.left, goal.right, work)? {
             return Ok(Joined::Yes);
         }
         let mut roots = vec![goal.left, goal.right];
@@ -180,6 +189,7 @@ impl Joining {
             system,
             plain,
             ascending,
+            ac,
             ..
         } = self;
         let forms = match ascending.get_mut(&case.classes) {
@@ -202,10 +212,14 @@ impl Joining {
         let left = forms.normal_form(system, left, work)?;
         let right = forms.normal_form(system, right, work)?;
         if left == right || one_replacement(system, left, right, work)? {
-            Ok(Joined::Yes)
-        } else {
-            Ok(Joined::No(left, right))
+            return Ok(Joined::Yes);
         }
+        let equal = check_ac::equal(&mut system.terms, ac, left, right, work)?;
+        Ok(if equal {
+            Joined::Yes
+        } else {
+            Joined::No(left, right)
+        })
     }
 
     /// Makes sure that there are normal forms for ascending variables of these sorts.

@@ -2,6 +2,7 @@
 
 use crate::proof::Evidence;
 use crate::rewrite::Stopped;
+use std::sync::Arc;
 use std::time::Duration;
 
 /// What was found out about a question. There is no fourth.
@@ -125,6 +126,8 @@ pub struct Answer {
     pub fault: Option<(ProgramFault, Evidence)>,
     /// Have the laws changed since?
     pub outdated: bool,
+    /// The laws that it was given under, as text.
+    pub laws: Arc<str>,
 }
 
 /// A term's normal form.

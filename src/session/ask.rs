@@ -18,11 +18,20 @@ use std::time::{Duration, Instant};
 /// How much checking one answer's evidence may take; see [`WorkLimit`].
 const CHECK_LIMIT: WorkLimit = WorkLimit(200_000_000);
 
+/// For how long rules are made before algebras are searched for as well.
+const HEAD_START: Duration = Duration::from_millis(25);
+
 /// What a rung has shown, before its evidence is checked.
 enum Shown {
     Equal(By, Option<Evidence>),
     NotEqual(By, Option<Evidence>),
     Nothing(Option<Ended>),
+}
+
+impl Shown {
+    fn is_something(&self) -> bool {
+        !matches!(self, Shown::Nothing(None))
+    }
 }
 
 /// How a question is to be settled.
@@ -115,15 +124,31 @@ impl Session {
             algebra: None,
             fault: None,
             outdated: false,
+            laws: self.law_text.clone(),
         };
         self.algebras.catch_up(&self.theory, self.lineage);
         if !matches!(means, Means::Algebra(_)) {
             self.workers.catch_up(&self.theory, self.lineage)?;
         }
-        let (shown, reach) = self.climb(question, means, budget, &mut answer, control)?;
-        let check_begun = Instant::now();
-        let remark = self.judge(shown, question, &mut answer, &control.stop);
-        answer.checking = check_begun.elapsed();
+        let means = match means {
+            Means::All if self.distrusted => Means::Algebra(algebras::LARGEST),
+            means => means,
+        };
+        let (shown, mut reach) = self.climb(question, means, budget, &mut answer, control)?;
+        let by_rules = matches!(shown, Shown::NotEqual(By::Complete, _));
+        let mut remark = self.judge(shown, question, &mut answer, &control.stop);
+        self.distrusted |= by_rules && answer.fault.is_some();
+        if by_rules && answer.verdict == Verdict::Undecided && means == Means::All {
+            // The rules are complete as far as the engine can tell, but the checker could not be
+            // convinced; an algebra may still settle the question.
+            let left = budget.map(|budget| budget.saturating_sub(begun.elapsed()));
+            let means = Means::Algebra(algebras::LARGEST);
+            let second = self.climb(question, means, left, &mut answer, control)?;
+            reach = second.1;
+            if let Shown::NotEqual(..) = second.0 {
+                remark = self.judge(second.0, question, &mut answer, &control.stop);
+            }
+        }
         if answer.by == Some(By::Complete) && answer.verdict == Verdict::NotEqual {
             answer.normal = self.normal_texts(answer.evidence.as_ref());
         }
@@ -153,11 +178,12 @@ impl Session {
             Means::All => "looking for a proof or an algebra",
         };
         let mut work = Work::new(control, doing, budget).formed_before(formed);
-        if !matches!(means, Means::Algebra(_)) {
-            let shown = self.by_rules(question.0, question.1, &mut work);
-            if !matches!(shown, Shown::Nothing(None)) {
-                return Ok((shown, None));
-            }
+        // The rules that there are cost nothing, even where only an algebra is asked for.
+        let shown = self.by_rules(question.0, question.1, &mut work);
+        if matches!(shown, Shown::Equal(..))
+            || !matches!(means, Means::Algebra(_)) && shown.is_something()
+        {
+            return Ok((shown, None));
         }
         if means != Means::Proof
             && let Some(shown) = self.by_known_algebra(question, means, answer, &work)
@@ -228,6 +254,19 @@ impl Session {
             Means::Algebra(most) => most,
             _ => algebras::LARGEST,
         };
+        if means == Means::All {
+            // What easy theories decide by their rules is not left to chance.
+            work.set_pause(Some(Instant::now() + HEAD_START));
+            let ended = self.workers.run(&self.theory, Some(question), work);
+            work.set_pause(None);
+            let ended = ended?;
+            if let Ended::Met(_) | Ended::Complete(_) = ended {
+                return Ok(Searched {
+                    ended: Some(ended),
+                    ..Searched::default()
+                });
+            }
+        }
         let hunt = self.algebras.hunt(&self.theory, question, largest);
         let halt = Arc::new(AtomicBool::new(false));
         let caught_one = Arc::new(AtomicBool::new(false));
@@ -349,8 +388,12 @@ impl Session {
         let Some(evidence) = evidence else {
             return Some("the evidence would be too large to write down and check".to_owned());
         };
-        match self.verify(&evidence, Some(question), stop) {
+        let begun = Instant::now();
+        let outcome = self.verify(&evidence, Some(question), stop);
+        answer.checking += begun.elapsed();
+        match outcome {
             proof::Outcome::Accepted => {
+                answer.fault = None;
                 answer.verdict = verdict;
                 answer.by = Some(by);
                 answer.evidence = Some(evidence);

@@ -7,6 +7,7 @@ use crate::language::{
 };
 use crate::term::TermId;
 use crate::theory::Theory;
+use std::sync::Arc;
 
 /// The state before a change.
 pub(super) struct Snapshot {
@@ -151,8 +152,23 @@ impl Session {
 
     /// Answers say whether the laws are still those that they were given under.
     fn outdate(&mut self) {
+        self.distrusted = false;
+        let now = self.law_text();
         for answer in &mut self.answers {
-            answer.outdated = true;
+            answer.outdated = *answer.laws != *now;
         }
+        self.law_text = now;
+    }
+
+    /// The laws as text, to tell whether they are the same.
+    pub(super) fn law_text(&self) -> Arc<str> {
+        let line = |law: &crate::theory::Law| {
+            format!(
+                "{}: {}\n",
+                law.name,
+                self.equation_text(law.left, "=", law.right)
+            )
+        };
+        self.theory.laws.iter().map(line).collect::<String>().into()
     }
 }

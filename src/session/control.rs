@@ -43,6 +43,8 @@ pub(super) struct Work<'a, 'c> {
     formed_before: u64,
     /// Set when the answer was found by somebody else.
     elsewhere: Option<Arc<AtomicBool>>,
+    /// When to pause although there is time left.
+    pause: Option<Instant>,
 }
 
 const TELL_EVERY: Duration = Duration::from_millis(50);
@@ -63,6 +65,7 @@ impl<'a, 'c> Work<'a, 'c> {
             told: begun,
             formed_before: 0,
             elsewhere: None,
+            pause: None,
         }
     }
 
@@ -84,12 +87,18 @@ impl<'a, 'c> Work<'a, 'c> {
         self.elsewhere = flag;
     }
 
+    /// From now on the work also pauses at this time.
+    pub(super) fn set_pause(&mut self, pause: Option<Instant>) {
+        self.pause = pause;
+    }
+
     /// Is the time used up, or is there no need to go on?
     pub(super) fn is_over(&self) -> bool {
         let set = |flag: &Arc<AtomicBool>| flag.load(Ordering::Relaxed);
         self.budget.is_some_and(|budget| self.elapsed() >= budget)
             || self.is_stopped()
             || self.elsewhere.as_ref().is_some_and(set)
+            || self.pause.is_some_and(|pause| Instant::now() >= pause)
     }
 
     /// The flag that stops the work from outside.
@@ -113,6 +122,9 @@ impl<'a, 'c> Work<'a, 'c> {
             limits = limits.until(self.begun + budget);
         }
         limits.elsewhere = self.elsewhere.clone();
+        if let Some(pause) = self.pause {
+            limits = limits.until(pause);
+        }
         if let Some(slice) = slice {
             limits = limits.until(Instant::now() + slice);
         }

@@ -96,7 +96,7 @@ impl Runner {
     }
 
     /// Has the engine nothing that the theory has not?
-    fn is_part_of(&self, theory: &Theory) -> bool {
+    pub(super) fn is_part_of(&self, theory: &Theory) -> bool {
         let same = theory
             .laws
             .iter()

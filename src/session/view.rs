@@ -113,7 +113,7 @@ impl Session {
 
     /// The active rules, oldest first. Empty before anything was completed or asked.
     pub fn rules(&self) -> Vec<RuleView> {
-        let Some(runner) = self.workers.best_ref() else {
+        let Some(runner) = self.current() else {
             return Vec::new();
         };
         let engine = &runner.engine;
@@ -134,6 +134,13 @@ impl Session {
         engine.active_rules().map(view).collect()
     }
 
+    /// The engine that answers, unless it has what the theory no longer has.
+    fn current(&self) -> Option<&super::runner::Runner> {
+        let runner = self.workers.best_ref()?;
+        let fits = self.workers.is_of(self.lineage) && runner.is_part_of(&self.theory);
+        fits.then_some(runner)
+    }
+
     fn rule_text(&self, bank: &Bank, left: TermId, sign: &str, right: TermId) -> String {
         let base = TheoryNames(&self.theory.signature);
         let names = RuleNames::new(&base, &self.theory.signature, bank, &[left, right]);
@@ -144,10 +151,7 @@ impl Session {
 
     /// The symbols, in the order of declaration.
     pub fn symbols(&self) -> Vec<SymbolView> {
-        let known = self
-            .workers
-            .best_ref()
-            .map_or(&[][..], |r| r.engine.ac_symbols());
+        let known = self.current().map_or(&[][..], |r| r.engine.ac_symbols());
         let symbols = self.theory.signature.symbols().iter().enumerate();
         let view = |(place, declaration): (usize, &crate::theory::SymbolDeclaration)| {
             let symbol = Symbol(place as u32);
@@ -180,7 +184,7 @@ impl Session {
     /// The session in numbers.
     pub fn status(&self) -> Status {
         let signature = &self.theory.signature;
-        let runner = self.workers.best_ref();
+        let runner = self.current();
         let setting = self.theory.order.as_ref().or(runner.map(|r| &r.setting));
         let engine = runner.map(|r| &r.engine);
         let oriented = |e: &crate::engine::Engine| {
@@ -219,15 +223,15 @@ impl Session {
 
     /// Are the rules, as the engine has them, complete for the laws as they are now?
     fn is_complete(&self) -> bool {
-        self.workers
-            .best_ref()
+        self.current()
             .is_some_and(|r| r.is_current(&self.theory) && r.engine.is_complete())
-            && self.workers.is_of(self.lineage)
+            && !self.distrusted
     }
 
     /// Where a rule comes from, as proof text: its own chain last, the rules that it rests on
     /// before it. Nothing if there is no rule of this number.
     pub fn why(&mut self, number: u32) -> Option<super::ProofText> {
+        self.current()?;
         let runner = self.workers.best()?;
         let id = RuleId(number.checked_sub(1)?);
         if id.index() >= runner.engine.system.rules().len() {
@@ -239,8 +243,7 @@ impl Session {
 
     /// How many rules there ever were; their numbers begin with 1.
     pub fn rule_count(&self) -> u32 {
-        self.workers
-            .best_ref()
+        self.current()
             .map_or(0, |r| r.engine.system.rules().len() as u32)
     }
 }

@@ -65,6 +65,8 @@ impl Session {
         if let Ended::Complete(_) = ended {
             let set = runner.complete_set(None).map(Evidence::Complete);
             self.accept(set, &mut completion, &control.stop);
+            self.distrusted = completion.fault.is_some();
+            completion.remark = completion.remark.take().or(self.collapse());
         }
         completion.elapsed = begun.elapsed();
         Ok(completion)
@@ -88,7 +90,7 @@ impl Session {
             .expect("there is an engine after catching up");
         let asked = runner.ask(&self.theory, term, term);
         let rewritten = runner.normal_form(&asked, 0, &mut work.limits(None));
-        let complete = runner.engine.is_complete();
+        let complete = runner.engine.is_complete() && !self.distrusted;
         let mut checked = false;
         let mut fault = None;
         let (mut found, mut steps, stopped) = match rewritten {
@@ -166,6 +168,24 @@ impl Session {
         };
         let naming = super::naming::naming(&self.theory);
         Some(Sheet::new(&self.theory, &naming, &proof.terms).proof(proof))
+    }
+
+    /// Says so if the rules make all terms of a sort equal.
+    fn collapse(&self) -> Option<String> {
+        let runner = self.workers.best_ref()?;
+        let system = &runner.engine.system;
+        let sort = runner.engine.active_rules().find_map(|id| {
+            let rule = system.rule(id);
+            let (left, right) = (rule.left, rule.right);
+            let one = system.bank.as_variable(left)?;
+            (system.bank.as_variable(right).is_some()).then_some(one.sort)
+        })?;
+        Some(if self.theory.signature.has_sorts() {
+            let sort = self.theory.signature.sort_name(sort);
+            format!("by these laws all terms of sort {sort} are equal to each other")
+        } else {
+            "by these laws all terms are equal to each other".to_owned()
+        })
     }
 
     fn accept(

@@ -10,7 +10,7 @@ use crate::engine::Outcome;
 use crate::order::{Candidate, OrderSetting, candidates};
 use crate::rewrite::Stopped;
 use crate::term::TermId;
-use crate::theory::{LawKind, Theory};
+use crate::theory::{Law, LawKind, Theory};
 use std::time::Duration;
 
 /// How a search by all engines ended.
@@ -30,11 +30,30 @@ pub(super) enum Ended {
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub enum NoOrder {
     /// No order was found in which all directed rules decrease.
-    Directed,
+    Directed {
+        /// The rule in the way, by name.
+        rule: String,
+        /// Why it is.
+        because: Obstacle,
+    },
     /// The stated order is not admissible for the symbols as they are now.
     Stated(crate::order::OrderProblem),
     /// In the stated order these directed rules, by name, do not decrease.
     Misdirected(Vec<String>),
+}
+
+/// Why a directed rule stands in the way of every order.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub enum Obstacle {
+    /// This variable stands on its right side only.
+    OpenVariable(String),
+    /// Its two sides differ in nothing but the places of their variables, so that it can be
+    /// applied again to its own result.
+    Permutation,
+    /// By itself it decreases in no order that was tried.
+    Alone,
+    /// It decreases, but not in one order with these rules.
+    With(Vec<String>),
 }
 
 /// The length of the first slice; each round's slices are twice as long.
@@ -144,7 +163,7 @@ impl Workers {
             }
         };
         if planned.is_empty() {
-            return Err(NoOrder::Directed);
+            return Err(obstacle(theory));
         }
         planned.reverse();
         Ok(planned)
@@ -295,13 +314,7 @@ pub(super) fn can_plan(theory: &Theory) -> Result<(), NoOrder> {
     if theory.laws.iter().all(|law| law.kind != LawKind::Rule) {
         return Ok(());
     }
-    Workers::plan(theory).and_then(|plan| {
-        if plan.is_empty() {
-            Err(NoOrder::Directed)
-        } else {
-            Ok(())
-        }
-    })
+    Workers::plan(theory).map(|_| ())
 }
 
 /// In a stated order, all directed rules must decrease.
@@ -319,4 +332,73 @@ pub(super) fn check_directed(theory: &Theory, setting: &OrderSetting) -> Result<
             wrong.iter().map(|&at| rules[at].name.clone()).collect(),
         )),
     }
+}
+
+/// Which directed rule stands in the way, the newest first.
+fn obstacle(theory: &Theory) -> NoOrder {
+    let rules: Vec<&Law> = theory
+        .laws
+        .iter()
+        .filter(|law| law.kind == LawKind::Rule)
+        .collect();
+    let found = |rule: &Law, because| NoOrder::Directed {
+        rule: rule.name.clone(),
+        because,
+    };
+    for rule in rules.iter().rev() {
+        if let Some(because) = obstacle_alone(theory, rule) {
+            return found(rule, because);
+        }
+    }
+    let orders = |rules: &[&Law]| {
+        let sides: Vec<_> = rules.iter().map(|law| (law.left, law.right)).collect();
+        crate::order::search(&theory.bank, &sides).is_some()
+    };
+    // Rules are taken out as long as no order suits the rest: what is left is needed.
+    let mut needed = rules.clone();
+    let mut place = 0;
+    while place < needed.len() && needed.len() <= MOST_EXPLAINED {
+        let mut rest = needed.clone();
+        rest.remove(place);
+        if orders(&rest) {
+            place += 1;
+        } else {
+            needed = rest;
+        }
+    }
+    let newest = needed.pop().expect("no rule at all is in nobody's way");
+    found(
+        newest,
+        Obstacle::With(needed.iter().map(|law| law.name.clone()).collect()),
+    )
+}
+
+/// With more directed rules than this, it is not found out which of them do not go together.
+const MOST_EXPLAINED: usize = 64;
+
+fn obstacle_alone(theory: &Theory, rule: &Law) -> Option<Obstacle> {
+    let bank = &theory.bank;
+    let left = bank.variables(rule.left);
+    let open = bank
+        .variables(rule.right)
+        .into_iter()
+        .find(|v| !left.contains(v));
+    if let Some(open) = open {
+        let name = theory.signature.variables()[open.index as usize]
+            .name
+            .clone();
+        return Some(Obstacle::OpenVariable(name));
+    }
+    if crate::order::search(bank, &[(rule.left, rule.right)]).is_some() {
+        return None;
+    }
+    let mut forth = crate::term::Substitution::default();
+    let mut back = crate::term::Substitution::default();
+    let variants = crate::term::match_term(bank, rule.left, rule.right, &mut forth)
+        && crate::term::match_term(bank, rule.right, rule.left, &mut back);
+    Some(if variants {
+        Obstacle::Permutation
+    } else {
+        Obstacle::Alone
+    })
 }

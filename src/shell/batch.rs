@@ -326,6 +326,16 @@ fn normal(shell: &mut Shell, file: &str, text: &str, options: Options) -> u8 {
             return shell.status;
         }
     };
+    // The laws alone may not rewrite far; a short completion costs little beside a new process.
+    let within = options.within.unwrap_or(shell.session.budgets().ask);
+    if shell.session.status().rules == 0 {
+        let done = shell.work(|session, control| session.complete(Some(within), control));
+        if let Err(fault) = done {
+            let problem = Problem::session(fault, &shell.session.theory().signature);
+            shell.tell(problem);
+            return shell.status;
+        }
+    }
     let timer = options
         .within
         .map(|within| Timer::start(within, shell.signals.stop()));

@@ -246,8 +246,11 @@ impl Shell {
     /// May this file be written? One that is there is replaced only if whoever sits in front says
     /// so. A script says what it means.
     pub fn may_replace(&mut self, path: &Path) -> bool {
-        let Some(editor) = self.editor.as_mut().filter(|_| path.is_file()) else {
+        if !path.is_file() {
             return true;
+        }
+        let Some(editor) = self.editor.as_mut() else {
+            return false;
         };
         let question = format!(
             "{} is there already. Replace it? yes or no: ",
@@ -255,6 +258,11 @@ impl Shell {
         );
         let answer = editor.ask(&question, &self.signals, self.screen.look());
         matches!(answer.trim().to_lowercase().as_str(), "y" | "yes")
+    }
+
+    /// Does somebody sit in front of it?
+    pub fn is_interactive(&self) -> bool {
+        self.editor.is_some()
     }
 
     /// The theory is put away because there are no more lines.

@@ -5,7 +5,7 @@ use super::screen::{Ink, Look};
 use crate::language::{Diagnostic, DropFault};
 use crate::order::OrderProblem;
 use crate::rewrite::Stopped;
-use crate::session::{ChangeFault, NoOrder, OpenFault, SaveFault, SessionFault};
+use crate::session::{ChangeFault, NoOrder, Obstacle, OpenFault, SaveFault, SessionFault};
 use crate::term::Symbol;
 use crate::theory::Signature;
 use std::path::Path;
@@ -79,10 +79,28 @@ impl Problem {
     /// Why there is no usable order.
     fn order(fault: &NoOrder, signature: &Signature) -> Problem {
         match fault {
-            NoOrder::Directed => Problem::said(
-                "no order was found in which the right side of every rule is smaller than its left side",
-                "state one with order lpo … or order kbo …, or make a law of one of the rules",
-            ),
+            NoOrder::Directed { rule, because } => {
+                let reason = match because {
+                    Obstacle::OpenVariable(variable) => format!(
+                        "{variable} stands on its right side only, so that the result could be anything"
+                    ),
+                    Obstacle::Permutation => {
+                        "it could be applied to its own result again and again".to_owned()
+                    }
+                    Obstacle::Alone => {
+                        "no order was found in which its right side is smaller than its left side"
+                            .to_owned()
+                    }
+                    Obstacle::With(names) => format!(
+                        "in no order that was found it decreases together with: {}",
+                        names.join(", ")
+                    ),
+                };
+                Problem::said(
+                    format!("rule {rule} cannot be used from left to right: {reason}"),
+                    "make a law of it, which is used in both directions, or turn it round",
+                )
+            }
             NoOrder::Misdirected(names) => Problem::said(
                 format!(
                     "in this order the right side is not smaller than the left side in: {}",

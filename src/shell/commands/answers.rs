@@ -14,10 +14,11 @@ pub const COMMAND: Command = Command {
     word: "answers",
     group: Group::Asking,
     forms: &[("answers", "all answers so far")],
-    page: "There are three: equal, with a proof; not equal, when the rules are complete and the two \
-           sides have different normal forms; undecided, with how far the search came and what to \
-           try next. An equation is equal if its two sides have the same value in everything that \
-           obeys the laws, for all values of the variables. Every proof and every complete set of \
+    page: "There are three: equal, with a proof; not equal, with two different normal forms by \
+           complete rules or with a finite algebra in which the laws hold and the sides differ; \
+           undecided, with how far the search came and what to try next. An equation is equal if \
+           its two sides have the same value in everything that obeys the laws, for all values of \
+           the variables; every sort is taken to have an element. Every proof and every complete set of \
            rules has been checked by a part of the program that has no share in finding them. \
            Answers keep their numbers; one that was given before the laws changed says so.",
     example: "open group\nx * i(x) = e\nanswers",

@@ -35,7 +35,10 @@ fn run(shell: &mut Shell, line: Line<'_>) -> Result<(), Problem> {
     };
     line.from(range.end - rest.len()).end()?;
     match shell.session.drop_named(&name, line.text.trim()) {
-        Ok(()) => Ok(()),
+        Ok(()) => {
+            shell.out(&format!("dropped {name}; undo brings it back\n"));
+            Ok(())
+        }
         Err(ChangeFault::Drop(DropFault::Unknown)) => {
             let mut fault = Fault::new(range, format!("there is no law or claim {name}"));
             if let Some(near) = nearest(&name, names.iter().map(String::as_str)) {

@@ -31,6 +31,13 @@ fn run(shell: &mut Shell, mut line: Line<'_>) -> Result<(), Problem> {
     if let Some(path) = path
         && !may_replace(shell, path)
     {
+        if !shell.is_interactive() {
+            let message = format!("there is another file {} already", path.display());
+            return Err(Problem::said(
+                message,
+                "save under another name, or remove that file first",
+            ));
+        }
         shell.out("Nothing was written.\n");
         return Ok(());
     }

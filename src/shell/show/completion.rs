@@ -27,7 +27,7 @@ pub fn completion(done: &Completion, look: Look, place: Place) -> String {
     let unoriented = done.rules.saturating_sub(done.oriented);
     if done.complete && done.ordered {
         let ordered = format!(
-            "{} used both ways, where an instance decreases; so the rules decide every equation between terms, variables standing for constants",
+            "{} used both ways, where that makes a term smaller; every equation is decided all the same",
             if unoriented == 1 {
                 "1 equation is".to_owned()
             } else {

@@ -92,6 +92,10 @@ fn cite(line: &ProofLine) -> String {
     if cite.is_empty() {
         return cite;
     }
+    // A name that begins with a sign would read as part of the term beside it.
+    if !cite.starts_with(char::is_alphanumeric) {
+        cite = format!("\"{cite}\"");
+    }
     if line.backward {
         cite += ", right to left";
     }
