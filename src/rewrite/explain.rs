@@ -78,7 +78,7 @@ impl System {
 
     /// What a rule makes of a term, to the letter: the table may have the subterms of that in
     /// normal form already.
-    fn exact(&mut self, term: TermId, by: Use) -> TermId {
+    pub fn exact(&mut self, term: TermId, by: Use) -> TermId {
         self.matcher.rebind(
             &self.bank,
             self.rules[by.rule.index()].sides(by.backward).0,

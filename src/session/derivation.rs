@@ -250,39 +250,63 @@ pub(super) fn of_ground_lemma(
     to: TermId,
     most: usize,
 ) -> Option<(Chain, Vec<(TermId, TermId)>)> {
-    let links = match engine.system.links(from, to) {
-        Some(links) => links,
-        None => vec![(to, Reason::Arguments)],
-    };
     let mut chain = Chain::new(from);
     let mut needed = Vec::new();
-    for (next, reason) in links {
-        let here = chain.end();
-        match reason {
-            Reason::Rule(_) | Reason::Canonical => {
+    let mut stack = vec![(from, to)];
+    while let Some((here, next)) = stack.pop() {
+        if here == next {
+            continue;
+        }
+        let links = engine.system.links(here, next);
+        match links.as_deref() {
+            None | Some([(_, Reason::Arguments)]) => {
+                push_arguments(&mut chain, engine, next, &mut needed)?;
+            }
+            // What a rule makes may have its subterms in normal form already: that they come to
+            // it is not the rule's doing, and is written down like all that happens to arguments.
+            Some([(_, Reason::Rule(by))]) => {
+                let made = engine.system.exact(here, *by);
+                push_use(&mut chain, engine, *by, Vec::new(), made);
+                stack.push((made, next));
+            }
+            Some([(_, Reason::Canonical)]) => {
                 chain = chain.then(of_table(engine, here, next, most)?);
             }
-            Reason::Arguments => {
-                if engine.system.bank.head(here) != engine.system.bank.head(next) {
-                    return None;
-                }
-                for place in 0..engine.system.bank.arguments(here).len() {
-                    let s = engine.system.bank.arguments(here)[place];
-                    let t = engine.system.bank.arguments(next)[place];
-                    if s == t {
-                        continue;
-                    }
-                    let at = vec![place as u32];
-                    match of_table(engine, s, t, INLINE) {
-                        Some(below) => chain.append_below(engine, &at, below),
-                        None => {
-                            needed.push((s, t));
-                            chain.push(engine, Cited::Ground(s, t), true, at, t);
-                        }
-                    }
-                }
+            Some(links) => {
+                let starts = std::iter::once(here).chain(links.iter().map(|link| link.0));
+                let parts = starts.zip(links).map(|(s, (t, _))| (s, *t));
+                stack.extend(parts.collect::<Vec<_>>().into_iter().rev());
             }
         }
     }
     Some((chain, needed))
+}
+
+/// Goes on to a term with the same head, argument by argument.
+fn push_arguments(
+    chain: &mut Chain,
+    engine: &mut Engine,
+    next: TermId,
+    needed: &mut Vec<(TermId, TermId)>,
+) -> Option<()> {
+    let here = chain.end();
+    if engine.system.bank.head(here) != engine.system.bank.head(next) {
+        return None;
+    }
+    for place in 0..engine.system.bank.arguments(here).len() {
+        let s = engine.system.bank.arguments(here)[place];
+        let t = engine.system.bank.arguments(next)[place];
+        if s == t {
+            continue;
+        }
+        let at = vec![place as u32];
+        match of_table(engine, s, t, INLINE) {
+            Some(below) => chain.append_below(engine, &at, below),
+            None => {
+                needed.push((s, t));
+                chain.push(engine, Cited::Ground(s, t), true, at, t);
+            }
+        }
+    }
+    Some(())
 }

@@ -25,9 +25,14 @@ pub fn write_atomically(
         .parent()
         .filter(|folder| !folder.as_os_str().is_empty());
     let folder = folder.unwrap_or(Path::new("."));
-    let mut file = tempfile::Builder::new()
-        .prefix(".equable-")
-        .tempfile_in(folder)?;
+    let mut builder = tempfile::Builder::new();
+    builder.prefix(".equable-");
+    // A new file may be read by those who may read other new files.
+    #[cfg(unix)]
+    let rights = std::os::unix::fs::PermissionsExt::from_mode(0o666);
+    #[cfg(unix)]
+    builder.permissions(rights);
+    let mut file = builder.tempfile_in(folder)?;
     buffered(&mut file, fill)?;
     if let Ok(known) = known {
         if known.permissions().readonly() {

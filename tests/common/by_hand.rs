@@ -23,8 +23,8 @@ pub struct Paper<'j> {
     variables: Vec<Vec<String>>,
 }
 
-/// Whether what the file says is so. A complete set with rules that are not oriented is only
-/// judged as far as its lemmas go.
+/// Whether what the file says is so. A complete set with a rule that decreases neither way is only
+/// judged as far as its lemmas and its order go.
 pub fn judge(json: &Value) -> Judged<()> {
     let mut paper = Paper::read(json)?;
     match text(&json["kind"])? {
@@ -249,12 +249,7 @@ impl<'j> Paper<'j> {
         for law in list(&self.json["laws"])? {
             absent(law, "when")?;
             let sides = [self.term(&law["left"])?, self.term(&law["right"])?];
-            let mut names: Vec<String> = sides
-                .iter()
-                .flat_map(|t| self.variables[*t].clone())
-                .collect();
-            names.sort();
-            names.dedup();
+            let names = self.of_both(sides);
             self.holds(sides, &names)?;
         }
         let claim = &self.json["claim"];
@@ -281,6 +276,15 @@ impl<'j> Paper<'j> {
         let size = self.json["sorts"][self.sort(term)?].as_u64();
         size.filter(|size| *size > 0)
             .ok_or_else(|| "no size".to_owned())
+    }
+
+    /// The variables of two terms.
+    fn of_both(&self, sides: [Id; 2]) -> Vec<String> {
+        let names = sides.iter().flat_map(|t| self.variables[*t].clone());
+        let mut names: Vec<String> = names.collect();
+        names.sort();
+        names.dedup();
+        names
     }
 
     /// Counts through all assignments.
@@ -324,33 +328,34 @@ impl<'j> Paper<'j> {
 
     fn complete(&mut self) -> Judged<()> {
         let known = self.lemmas()?;
-        let lemmas: Vec<&str> = list(&self.json["lemmas"])?
-            .iter()
-            .filter_map(|lemma| lemma["name"].as_str())
-            .collect();
         let mut rules = Vec::new();
-        let mut oriented = true;
+        let mut has_directions = true;
+        let order = Textbook::of_json(&self.json["order"], &self.operators())?;
         for rule in list(&self.json["rules"])? {
             let name = text(&rule["name"])?;
-            let proved = known.get(name).filter(|_| lemmas.contains(&name));
-            let proved = proved.ok_or("a rule without proof")?;
+            // A rule may be a law as it stands.
+            let proved = known.get(name).ok_or("a rule without proof")?;
             let sides =
                 |of: &Value| Ok::<_, String>([self.term(&of["left"])?, self.term(&of["right"])?]);
             ensure(sides(rule)? == sides(proved)?, || {
                 "a lemma of another rule".to_owned()
             })?;
-            oriented &= rule["oriented"] == true;
             let [left, right] = sides(rule)?;
-            rules.push((self.tree(left), self.tree(right)));
+            let (left, right) = (self.tree(left), self.tree(right));
+            let is_oriented = rule["oriented"] == true;
+            // What may be used both ways and decreases one way is used that way.
+            if order.greater(&left, &right) {
+                rules.push((left, right));
+            } else if is_oriented {
+                return Err(format!("{left} -> {right} goes up"));
+            } else if order.greater(&right, &left) {
+                rules.push((right, left));
+            } else {
+                has_directions = false;
+            }
         }
-        if !oriented {
+        if !has_directions {
             return Ok(());
-        }
-        let order = Textbook::of_json(&self.json["order"], &self.operators())?;
-        for (left, right) in &rules {
-            ensure(order.greater(left, right), || {
-                format!("{left} -> {right} goes up")
-            })?;
         }
         for law in list(&self.json["laws"])? {
             let (s, t) = (self.term(&law["left"])?, self.term(&law["right"])?);
@@ -472,4 +477,48 @@ fn all_the_way(term: &Tree, values: &BTreeMap<String, Tree>) -> Tree {
             .map_or_else(|| term.clone(), |value| all_the_way(value, values)),
         Tree::App(name, below) => app(name, below.iter().map(|t| all_the_way(t, values)).collect()),
     }
+}
+
+/// Whether the sides differ in an algebra of the laws with two elements. Not every equation that
+/// fails does so there; in semilattices it does.
+pub fn differ_in_two_elements(json: &Value, claim: &Value) -> Judged<()> {
+    let paper = Paper::read(json)?;
+    let (left, right) = (paper.term(&claim["left"])?, paper.term(&claim["right"])?);
+    let operators = paper.operators();
+    let cells: usize = operators.values().map(|arity| 1 << arity).sum();
+    assert!(cells <= 16, "few enough operators");
+    let mut algebra = json.clone();
+    algebra["sorts"] = serde_json::json!({ "": 2 });
+    for code in 0..1_usize << cells {
+        let mut bits = (0..cells).map(|n| code >> n & 1);
+        let tables = operators.iter().map(|(name, arity)| {
+            let row = bits.by_ref().take(1 << arity).map(Value::from);
+            (name.clone(), nested(row.collect(), *arity))
+        });
+        let tables: serde_json::Map<String, Value> = tables.collect();
+        algebra["tables"] = tables.into();
+        let paper = Paper::read(&algebra)?;
+        let mut laws = list(&json["laws"])?.iter();
+        let is_law = |law: &Value| {
+            let sides = [paper.term(&law["left"])?, paper.term(&law["right"])?];
+            paper.holds(sides, &paper.of_both(sides))
+        };
+        if laws.all(|law| is_law(law).is_ok()) {
+            let sides = [left, right];
+            if paper.holds(sides, &paper.of_both(sides)).is_err() {
+                return Ok(());
+            }
+        }
+    }
+    Err("the sides are equal in every algebra with two elements".to_owned())
+}
+
+fn nested(mut row: Vec<Value>, arity: usize) -> Value {
+    for _ in 0..arity {
+        row = row
+            .chunks(2)
+            .map(|pair| Value::Array(pair.to_vec()))
+            .collect();
+    }
+    row.swap_remove(0)
 }

@@ -195,3 +195,35 @@ fn the_command_in_the_shell() {
     let ran = place.run(&["verify", "one.json", "two words.json"]);
     assert_eq!(ran.status, 0, "{}", ran.out);
 }
+
+/// Longer than can be written in single steps, so that lemmas about subterms are needed.
+#[test]
+fn a_long_computation() {
+    let place = Place::new();
+    let names: Vec<String> = (1..=60).map(|n| format!("a{n}")).collect();
+    let text = std::fs::read_to_string(theory("list")).expect("the theory");
+    place.file(
+        "long.theory",
+        format!("{text}constant {} : Item\n", names.join(" ")),
+    );
+    let there = names.join(" :: ");
+    let back: Vec<&str> = names.iter().rev().map(String::as_str).collect();
+    let question = format!("reverse({there} :: nil) = {} :: nil", back.join(" :: "));
+    let arguments = ["ask", "long.theory", &question, "--evidence", "out"];
+    let ran = place.run(&arguments);
+    assert_eq!(ran.status, 0, "{}{}", ran.out, ran.err);
+    let written = json(&place, "out/long-question.json");
+    assert!(
+        written["lemmas"]
+            .as_array()
+            .is_some_and(|lemmas| lemmas.len() > 100)
+    );
+    by_hand::judge(&written).unwrap();
+    let ran = place.run(&[
+        "verify",
+        "out/long-question.json",
+        "--theory",
+        "long.theory",
+    ]);
+    assert_eq!(ran.status, 0, "{}", ran.out);
+}

@@ -43,7 +43,7 @@ fn run(shell: &mut Shell, mut line: Line<'_>) -> Result<(), Problem> {
     let path = Path::new(if line.end().is_ok() { name } else { rest });
     let answer = &shell.session.answers()[place];
     if answer.evidence.is_none() {
-        return Err(without(answer.number, answer.verdict, &answer.question));
+        return Err(without(answer.number, answer.verdict));
     }
     if !shell.may_replace(path) {
         shell.out("Nothing was written.\n");
@@ -65,11 +65,11 @@ fn run(shell: &mut Shell, mut line: Line<'_>) -> Result<(), Problem> {
 }
 
 /// Why there is nothing to write.
-fn without(number: u32, verdict: Verdict, question: &str) -> Problem {
+fn without(number: u32, verdict: Verdict) -> Problem {
     match verdict {
         Verdict::Undecided => Problem::said(
             format!("answer {number} is undecided, so there is no evidence"),
-            format!("prove {question} within 60s looks longer"),
+            "prove s = t within 60s, with the sides of the question, looks longer",
         ),
         _ => Problem::said(
             format!("answer {number} has no evidence that could be written"),
