@@ -20,6 +20,8 @@ const CHECK_LIMIT: WorkLimit = WorkLimit(200_000_000);
 
 /// For how long rules are made before algebras are searched for as well.
 const HEAD_START: Duration = Duration::from_millis(25);
+/// A theory that has formed more pairs than this without being complete is not easy.
+const EASY: u64 = 10_000;
 
 /// What a rung has shown, before its evidence is checked.
 enum Shown {
@@ -254,9 +256,10 @@ impl Session {
             Means::Algebra(most) => most,
             _ => algebras::LARGEST,
         };
-        if means == Means::All {
+        if means == Means::All && self.workers.formed() < EASY {
             // What easy theories decide by their rules is not left to chance.
-            work.set_pause(Some(Instant::now() + HEAD_START));
+            let most = work.budget().map_or(HEAD_START, |budget| budget / 8);
+            work.set_pause(Some(Instant::now() + HEAD_START.min(most)));
             let ended = self.workers.run(&self.theory, Some(question), work);
             work.set_pause(None);
             let ended = ended?;
