@@ -1,6 +1,7 @@
 //! `save`, `save FILE`
 
 use super::{Command, Group, Operand};
+use crate::session::Session;
 use crate::shell::desk::Shell;
 use crate::shell::line::Line;
 use crate::shell::problem::Problem;
@@ -27,7 +28,8 @@ fn run(shell: &mut Shell, mut line: Line<'_>) -> Result<(), Problem> {
     let name = line.word().map(|(name, _)| name);
     // A path with blanks is understood without quotes too, since nothing else can follow.
     let name = if line.end().is_ok() { name } else { Some(rest) };
-    let path = name.map(Path::new);
+    let path = name.map(Session::save_path);
+    let path = path.as_deref();
     if let Some(path) = path
         && !may_replace(shell, path)
     {
