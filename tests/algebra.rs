@@ -6,6 +6,8 @@ mod limits;
 mod outside;
 #[path = "algebra/random.rs"]
 mod random;
+#[path = "algebra/sat.rs"]
+mod sat;
 
 use equable::algebra::{
     Algebra, Counterexample, Limits, Outcome, Pool, PoolOutcome, Problem, Search,

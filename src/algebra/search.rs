@@ -7,11 +7,11 @@
 //! that of finite model enumeration by cells (Zhang & Zhang, IJCAI 1995: SEM), with its least
 //! number heuristic against symmetry. What differs is described in the parts.
 
-mod bijective;
+pub(super) mod bijective;
 mod decide;
-mod grid;
+pub(super) mod grid;
 mod propagate;
-mod sizes;
+pub(super) mod sizes;
 mod state;
 
 use super::limits::{Limits, StopReason};

@@ -2,13 +2,15 @@
 
 use super::naming::{Naming, naming, plain_term};
 use crate::algebra::{
-    Algebra, Counterexample, Equation, Known, Limits, Outcome, Pool, PoolOutcome, Problem, Search,
-    Signature,
+    Algebra, Counterexample, Equation, Known, Limits, Outcome, Pool, PoolOutcome, Problem,
+    SatSearch, Search, Signature,
 };
 use crate::proof::{self, AlgebraClaim, AlgebraEvidence, Terms};
 use crate::term::TermId;
 use crate::theory::Theory;
 use std::sync::Arc;
+use std::sync::atomic::Ordering;
+use std::time::{Duration, Instant};
 
 /// An algebra that the session keeps.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -33,13 +35,15 @@ pub(super) struct Algebras {
     lineage: u32,
     pool: Option<Pool>,
     /// The search for the last question, to be gone on with.
-    last: Option<((TermId, TermId), Search)>,
+    last: Option<((TermId, TermId), Search, Option<SatSearch>)>,
 }
 
 /// A search that is to be run, on any thread.
 pub(super) struct Hunt {
     pool: Option<Pool>,
     search: Search,
+    /// The other search, if the problem suits it.
+    sat: Option<SatSearch>,
     claim: Equation,
     question: (TermId, TermId),
     /// Has the pool been asked already?
@@ -126,18 +130,22 @@ impl Algebras {
         let known = self
             .last
             .take()
-            .filter(|(last, _)| *last == question && largest == LARGEST);
+            .filter(|(last, ..)| *last == question && largest == LARGEST);
         let pool_done = known.is_some();
         let claim = Equation::compile(&theory.bank, question.0, question.1);
-        let search = known.map(|(_, search)| search).unwrap_or_else(|| {
+        let known = known.map(|(_, search, sat)| (search, sat));
+        let (search, sat) = known.unwrap_or_else(|| {
             let laws = theory.laws.iter().map(|law| (law.left, law.right));
             let sorts = theory.signature.sorts().len();
-            let problem = Problem::new(&theory.bank, sorts, laws, question);
-            Search::new(Arc::new(problem), largest)
+            let problem = Arc::new(Problem::new(&theory.bank, sorts, laws, question));
+            let suits = SatSearch::suits(&problem);
+            let sat = suits.then(|| SatSearch::new(problem.clone(), largest));
+            (Search::new(problem, largest), sat)
         });
         Hunt {
             pool: self.pool.take(),
             search,
+            sat,
             claim,
             question,
             pool_done,
@@ -146,8 +154,11 @@ impl Algebras {
 
     /// Takes back what a search was given.
     pub(super) fn return_from(&mut self, caught: Caught) {
-        self.pool = caught.hunt.pool;
-        self.last = Some((caught.hunt.question, caught.hunt.search));
+        let mut hunt = caught.hunt;
+        self.pool = hunt.pool;
+        // A question that is never asked again must not hold on to the memory of the solvers.
+        hunt.sat.iter_mut().for_each(SatSearch::release);
+        self.last = Some((hunt.question, hunt.search, hunt.sat));
     }
 
     /// Keeps an algebra and numbers it, unless it is known.
@@ -166,7 +177,8 @@ impl Algebras {
 }
 
 impl Hunt {
-    /// Asks the pool, then searches, sizes upward.
+    /// Asks the pool, then searches, sizes upward. Where the problem suits the SAT solver, the
+    /// two searches take turns of growing length, the direct one first.
     pub(super) fn run(mut self, largest: u32, limits: &mut Limits) -> Caught {
         if !self.pool_done
             && let Some(pool) = &mut self.pool
@@ -176,16 +188,45 @@ impl Hunt {
             return self.caught(Some(found), false);
         }
         self.pool_done = true;
-        match self.search.run(limits) {
-            Outcome::Found(found) => self.caught(Some(found), false),
-            Outcome::Exhausted => self.caught(None, true),
-            Outcome::Stopped(_) => self.caught(None, false),
+        let mut slice = FIRST_SLICE;
+        loop {
+            let mut part = match self.sat {
+                Some(_) => shorter(limits, slice),
+                None => limits.clone(),
+            };
+            match self.search.run(&mut part) {
+                Outcome::Found(found) => return self.caught(Some(found), false),
+                Outcome::Exhausted => return self.caught(None, true),
+                Outcome::Stopped(_) => {}
+            }
+            if is_over(limits) {
+                return self.caught(None, false);
+            }
+            if let Some(sat) = &mut self.sat {
+                let mut part = shorter(limits, slice);
+                part.bytes /= 2;
+                match sat.run(&mut part) {
+                    Outcome::Found(found) => return self.caught(Some(found), false),
+                    Outcome::Exhausted if sat.given_up().is_empty() => {
+                        return self.caught(None, true);
+                    }
+                    Outcome::Exhausted => self.sat = None,
+                    Outcome::Stopped(_) => {}
+                }
+            }
+            slice = slice.saturating_mul(2);
         }
     }
 
-    fn caught(self, found: Option<Box<Counterexample>>, exhausted: bool) -> Caught {
-        let ruled_out = self.search.ruled_out_total();
-        let given_up = !self.search.given_up().is_empty();
+    fn caught(self, mut found: Option<Box<Counterexample>>, exhausted: bool) -> Caught {
+        let by_sat = self.sat.as_ref().map_or(0, SatSearch::ruled_out_total);
+        let ruled_out = self.search.ruled_out_total().max(by_sat);
+        if let Some(found) = &mut found {
+            found.smallest |= found.algebra.total() <= ruled_out + 1;
+        }
+        // What needs too much memory here may have been settled by the other search.
+        let given_up = |sizes: &[u32]| sizes.iter().sum::<u32>() > ruled_out;
+        let given_up = self.search.given_up().iter().any(|(s, _)| given_up(s));
         Caught {
             hunt: self,
             found,
@@ -194,6 +235,25 @@ impl Hunt {
             given_up,
         }
     }
+}
+
+/// How long the direct search has for itself at first. It settles most of what it settles at all
+/// within a few milliseconds, and with much less memory than a solver.
+const FIRST_SLICE: Duration = Duration::from_millis(300);
+
+/// The limits, with a deadline that is not further away than this.
+fn shorter(limits: &Limits, slice: Duration) -> Limits {
+    let mut part = limits.clone();
+    if let Some(end) = Instant::now().checked_add(slice) {
+        part.deadline = Some(part.deadline.map_or(end, |deadline| deadline.min(end)));
+    }
+    part
+}
+
+/// Has the search as a whole been stopped?
+fn is_over(limits: &Limits) -> bool {
+    let late = |deadline| Instant::now() >= deadline;
+    limits.stop.load(Ordering::Relaxed) || limits.deadline.is_some_and(late)
 }
 
 fn compiled(theory: &Theory) -> (Signature, Vec<Equation>) {

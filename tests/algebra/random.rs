@@ -7,19 +7,20 @@ use proptest::prelude::*;
 use std::sync::Arc;
 
 /// The signatures that are tried: the sorts of the arguments and of the result.
-const SIGNATURES: [&[(&[u16], u16)]; 5] = [
+pub(super) const SIGNATURES: [&[(&[u16], u16)]; 6] = [
     &[(&[0, 0], 0)],
     &[(&[0, 0], 0), (&[], 0)],
     &[(&[0], 0), (&[0], 0), (&[], 0), (&[], 0)],
     &[(&[0], 1), (&[1, 0], 0)],
     &[(&[0, 1], 1), (&[], 0), (&[1], 0)],
+    &[(&[0, 1, 0], 0), (&[0], 1)],
 ];
 
-struct Case {
-    bank: Bank,
-    laws: Vec<(TermId, TermId)>,
-    claim: (TermId, TermId),
-    sorts: usize,
+pub(super) struct Case {
+    pub(super) bank: Bank,
+    pub(super) laws: Vec<(TermId, TermId)>,
+    pub(super) claim: (TermId, TermId),
+    pub(super) sorts: usize,
 }
 
 /// A term of the sort, made from the numbers, with variables 0 to 2 of each sort.
@@ -47,7 +48,7 @@ fn term(
     bank.apply(Symbol(symbol as u32), &arguments)
 }
 
-fn case(signature: usize, laws: usize, numbers: Vec<u32>) -> Case {
+pub(super) fn case(signature: usize, laws: usize, numbers: Vec<u32>) -> Case {
     let mut bank = Bank::default();
     let mut sorts = 1;
     for (arguments, result) in SIGNATURES[signature] {
@@ -135,7 +136,7 @@ fn differ_somewhere(
 }
 
 /// Is there a counterexample of these sizes? None if there are too many tables to try.
-fn by_force(case: &Case, sizes: &[u32]) -> Option<bool> {
+pub(super) fn by_force(case: &Case, sizes: &[u32]) -> Option<bool> {
     let symbols = case.bank.symbols();
     let size = |sort: &Sort| sizes[sort.0 as usize];
     let cells = |info: &SymbolInfo| info.arguments.iter().map(size).product::<u32>() as usize;
@@ -173,7 +174,7 @@ fn by_force(case: &Case, sizes: &[u32]) -> Option<bool> {
     }
 }
 
-fn check(case: &Case, problem: &Problem, found: &Counterexample) {
+pub(super) fn check(case: &Case, problem: &Problem, found: &Counterexample) {
     let algebra = &found.algebra;
     let tables: Vec<Vec<u8>> = algebra
         .tables()

@@ -12,11 +12,11 @@ use super::state::{Conflict, State};
 use crate::term::Symbol;
 
 /// All rows of one table along one argument.
-pub(super) struct Row {
-    base: u32,
-    cells: u32,
-    stride: u32,
-    length: u32,
+pub(in crate::algebra) struct Row {
+    pub base: u32,
+    pub cells: u32,
+    pub stride: u32,
+    pub length: u32,
 }
 
 impl Row {

@@ -20,7 +20,7 @@ impl Cell {
 }
 
 /// One table among the cells.
-pub(super) struct Block {
+pub(in crate::algebra) struct Block {
     pub base: u32,
     /// How far apart cells are whose arguments at this place differ by one.
     pub strides: Box<[u32]>,
@@ -86,12 +86,12 @@ impl Program {
 }
 
 /// Everything about one vector of sizes that does not change during the search.
-pub(super) struct Grid<'a> {
+pub(in crate::algebra) struct Grid<'a> {
     pub problem: &'a Problem,
     pub sizes: Vec<u32>,
     /// One block for each symbol, then one of a single cell for each variable of the claim.
     pub blocks: Vec<Block>,
-    pub programs: Vec<Program>,
+    pub(super) programs: Vec<Program>,
     /// Rows whose cells must have different values, and for every cell those it lies in.
     pub rows: Vec<Row>,
     pub registers: usize,
@@ -107,7 +107,11 @@ const MOST_CELLS: u32 = 1 << 21;
 
 impl<'a> Grid<'a> {
     /// The layout, unless it needs more bytes than these.
-    pub(super) fn new(problem: &'a Problem, sizes: &[u32], bytes: usize) -> Option<Self> {
+    pub(in crate::algebra) fn new(
+        problem: &'a Problem,
+        sizes: &[u32],
+        bytes: usize,
+    ) -> Option<Self> {
         debug_assert!(sizes.iter().all(|size| (1..=LARGEST_SIZE).contains(size)));
         let mut blocks = Vec::new();
         let mut base: u32 = 0;
@@ -149,7 +153,7 @@ impl<'a> Grid<'a> {
         })
     }
 
-    pub(super) fn cells(&self) -> usize {
+    pub(in crate::algebra) fn cells(&self) -> usize {
         self.cells
     }
 }

@@ -5,7 +5,7 @@ use super::super::signature::Problem;
 /// Runs through all vectors of sizes, a smaller total first.
 ///
 /// A sort that nothing in the problem speaks of has one element.
-pub(super) struct Sizes {
+pub(in crate::algebra) struct Sizes {
     /// The sorts that vary.
     varying: Vec<usize>,
     sorts: usize,
@@ -18,7 +18,7 @@ pub(super) struct Sizes {
 pub(super) const LARGEST_SIZE: u32 = 64;
 
 impl Sizes {
-    pub(super) fn new(problem: &Problem, largest_total: u32) -> Self {
+    pub(in crate::algebra) fn new(problem: &Problem, largest_total: u32) -> Self {
         let sorts = problem.signature.sorts();
         let mut mentioned = vec![false; sorts];
         for (used, shape) in problem.used().iter().zip(problem.signature.symbols()) {
@@ -46,7 +46,7 @@ impl Sizes {
     }
 
     /// The total of the next vector; past all of them, one more than the largest.
-    pub(super) fn next_total(&self) -> u32 {
+    pub(in crate::algebra) fn next_total(&self) -> u32 {
         let constant = (self.sorts - self.varying.len()) as u32;
         match &self.next {
             Some(sizes) => sizes.iter().sum::<u32>() + constant,
@@ -55,7 +55,7 @@ impl Sizes {
     }
 
     /// The next vector with the sorts that do not vary put in.
-    pub(super) fn next(&mut self) -> Option<Vec<u32>> {
+    pub(in crate::algebra) fn next(&mut self) -> Option<Vec<u32>> {
         loop {
             let current = self.next.take()?;
             self.next = self.after(&current);
