@@ -34,7 +34,7 @@ pub use check::ClaimResult;
 pub use control::{Control, Progress};
 pub use file::{write_atomically, write_evidence};
 pub use library::{Library, Listed, Shelf};
-pub use sheet::{LemmaText, ProofLine, ProofText};
+pub use sheet::{LemmaText, ProofHead, ProofLine, ProofText};
 pub use store::{OpenFault, Opened, SaveFault};
 pub use subject::is_of_theory;
 pub use view::{ClaimView, LawView, RuleView, Status, SymbolView};

@@ -44,6 +44,19 @@ pub struct ProofText {
     pub lines: Vec<ProofLine>,
 }
 
+/// The beginning of a proof, and how much there is of it.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct ProofHead {
+    /// The first lines of the chain of the claim.
+    pub lines: Vec<ProofLine>,
+    /// How many lines more it has.
+    pub more: usize,
+    /// How many lemmas it rests on.
+    pub lemmas: usize,
+    /// How many steps these have together.
+    pub lemma_steps: usize,
+}
+
 /// A term in a line of a proof is cut where it is longer than this.
 const LONGEST_LINE: usize = 4_000;
 
@@ -107,6 +120,17 @@ impl<'t> Sheet<'t> {
         ProofText {
             lemmas: lemmas.collect(),
             lines: self.chain(proof.claim.left, &proof.claim.steps),
+        }
+    }
+
+    pub(super) fn head(&mut self, proof: &proof::Proof, most: usize) -> ProofHead {
+        let steps = &proof.claim.steps;
+        let shown = steps.len().min(most.saturating_sub(1));
+        ProofHead {
+            lines: self.chain(proof.claim.left, &steps[..shown]),
+            more: steps.len() - shown,
+            lemmas: proof.lemmas.len(),
+            lemma_steps: proof.lemmas.iter().map(|lemma| lemma.steps.len()).sum(),
         }
     }
 

@@ -5,7 +5,8 @@ use super::runner::Rewritten;
 use super::sheet::Sheet;
 use super::workers::Ended;
 use super::{
-    Answer, Completion, NormalForm, ProgramFault, ProofLine, ProofText, Session, SessionFault,
+    Answer, Completion, NormalForm, ProgramFault, ProofHead, ProofLine, ProofText, Session,
+    SessionFault,
 };
 use crate::language::print_order;
 use crate::proof::{self, Evidence};
@@ -159,6 +160,15 @@ impl Session {
         let chain = chain.ok_or(SessionFault::Stopped(Stopped::Memory))?;
         let mut sheet = Sheet::new(&self.theory, &runner.naming, &chain.terms);
         Ok(sheet.chain(chain.claim.left, &chain.claim.steps))
+    }
+
+    /// The beginning of the proof of an answer, if it is `equal`: costs what is shown.
+    pub fn proof_head(&self, answer: &Answer, most: usize) -> Option<ProofHead> {
+        let Some(Evidence::Proof(proof)) = &answer.evidence else {
+            return None;
+        };
+        let naming = super::naming::naming(&self.theory);
+        Some(Sheet::new(&self.theory, &naming, &proof.terms).head(proof, most))
     }
 
     /// The proof of an answer as text, if it is `equal`.

@@ -1,8 +1,8 @@
 //! Answers and normal forms.
 
-use super::proof::{LONGEST_CHAIN, chain, steps};
+use super::proof::{LONGEST_CHAIN, chain};
 use crate::session::{
-    Answer, FoundAlgebra, Frontier, NormalForm, ProgramFault, ProofText, Session, Verdict,
+    Answer, FoundAlgebra, Frontier, NormalForm, ProgramFault, ProofHead, Session, Verdict,
 };
 use crate::shell::layout::{Breaker, columns, fold, fold_hanging, heading};
 use crate::shell::problem::{OWN_FAULT, stop_text};
@@ -56,7 +56,7 @@ pub fn answer(answer: &Answer, session: &Session, look: Look, place: Place) -> S
     let mut text = heading(look, ink(answer.verdict), answer.verdict.text(), &facts);
     match answer.verdict {
         Verdict::Equal => {
-            if let Some(proof) = session.proof_text(answer) {
+            if let Some(proof) = session.proof_head(answer, LONGEST_CHAIN) {
                 text += &short_proof(&proof, answer, session, look, place);
             }
         }
@@ -78,39 +78,34 @@ pub fn answer(answer: &Answer, session: &Session, look: Look, place: Place) -> S
 }
 
 fn short_proof(
-    proof: &ProofText,
+    proof: &ProofHead,
     answer: &Answer,
     session: &Session,
     look: Look,
     place: Place,
 ) -> String {
     let breaker = Breaker::new(&session.theory().signature);
-    let shown = LONGEST_CHAIN.min(proof.lines.len());
-    let mut text = chain(&proof.lines[..shown], look, breaker);
-    let left_out = proof.lines.len() - shown;
+    let mut text = chain(&proof.lines, look, breaker);
     let all = match place {
         Place::Shell => format!("proof {} shows all", answer.number),
         Place::Batch => "the shell shows all".to_owned(),
     };
-    if left_out > 0 {
-        let more = match left_out {
+    if proof.more > 0 {
+        let more = match proof.more {
             1 => format!("… 1 more step; {all}"),
-            _ => format!("… {} more steps; {all}", number(left_out as u128)),
+            more => format!("… {} more steps; {all}", number(more as u128)),
         };
         text += &fold(&more, look.width, 4);
     }
-    if !proof.lemmas.is_empty() {
-        let inner = proof.lemmas.iter().map(|lemma| steps(&lemma.lines)).sum();
-        let lemmas = format!(
+    if proof.lemmas > 0 {
+        let mut lemmas = format!(
             "resting on {} of {}",
-            count(proof.lemmas.len(), "lemma"),
-            count(inner, "step")
+            count(proof.lemmas, "lemma"),
+            count(proof.lemma_steps, "step")
         );
-        let lemmas = if left_out > 0 {
-            lemmas
-        } else {
-            format!("{lemmas}; {all}")
-        };
+        if proof.more == 0 {
+            lemmas += &format!("; {all}");
+        }
         text += &fold(&lemmas, look.width, 4);
     }
     text
