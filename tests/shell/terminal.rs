@@ -92,6 +92,9 @@ impl Terminal {
     /// Types a line when the prompt is there.
     pub fn line(&mut self, line: &str) {
         self.prompt();
+        // As a person would: the editor drops what is typed before it is ready, which the prompt
+        // on the screen does not tell.
+        std::thread::sleep(Duration::from_millis(100));
         self.keys(line);
         self.keys("\r");
     }
