@@ -95,7 +95,7 @@ fn a_statement_goes_on_while_a_bracket_is_open() {
     terminal.see("equal        answer 1");
     terminal.line("(x *");
     terminal.until("the second statement", |screen| {
-        screen.matches("(x *").count() == 2
+        screen.matches("> (x *").count() == 2
     });
     terminal.until("its continuation", |screen| {
         screen.trim_end().ends_with('…')

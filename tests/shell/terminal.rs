@@ -92,19 +92,29 @@ impl Terminal {
     /// Types a line when the prompt is there.
     pub fn line(&mut self, line: &str) {
         self.prompt();
-        // As a person would: the editor drops what is typed before it is ready, which the prompt
-        // on the screen does not tell.
-        std::thread::sleep(Duration::from_millis(100));
-        self.keys(line);
+        // The editor drops what is typed before it is ready, which the prompt on the screen does
+        // not tell; a person would type it again.
+        for _ in 0..5 {
+            std::thread::sleep(Duration::from_millis(100));
+            self.keys(line);
+            let begun = Instant::now();
+            while self.is_at_prompt() && begun.elapsed() < Duration::from_secs(1) {
+                std::thread::sleep(Duration::from_millis(5));
+            }
+            if line.is_empty() || !self.is_at_prompt() {
+                break;
+            }
+        }
         self.keys("\r");
     }
 
     /// Waits until a prompt without anything behind it is the last line.
     pub fn prompt(&self) {
-        self.until("a prompt", |screen| {
-            let last = screen.trim_end().lines().last().unwrap_or_default();
-            last.ends_with('>')
-        });
+        self.until("a prompt", ends_with_prompt);
+    }
+
+    fn is_at_prompt(&self) -> bool {
+        ends_with_prompt(&self.contents())
     }
 
     /// What stands on the screen.
@@ -150,6 +160,11 @@ impl Terminal {
             std::thread::sleep(Duration::from_millis(5));
         }
     }
+}
+
+fn ends_with_prompt(screen: &str) -> bool {
+    let last = screen.trim_end().lines().last().unwrap_or_default();
+    last.ends_with('>')
 }
 
 impl Drop for Terminal {
