@@ -6,14 +6,17 @@
 //! rule carries the record of its derivation. This floor knows no names and no text.
 
 mod ac;
+mod connected;
 mod instance;
 mod occurrences;
 mod overlap;
 mod pair;
+mod parts;
 mod record;
 mod reduce;
 mod replay;
 mod run;
+mod strategy;
 #[cfg(test)]
 mod tests;
 mod waiting;
@@ -21,3 +24,4 @@ mod waiting;
 pub use record::{LawId, Origin, Record, RecordStep};
 pub use replay::{Peak, ReplayError};
 pub use run::{Counts, Engine, Outcome, Question};
+pub use strategy::Strategy;

@@ -11,6 +11,7 @@ mod canonical_steps;
 mod explain;
 mod ground;
 mod index;
+mod neighbours;
 mod normal;
 mod rule;
 mod system;

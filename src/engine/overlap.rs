@@ -14,18 +14,14 @@ pub(super) struct Forming {
     pairs: Vec<Recipe>,
 }
 
+/// So many terms of overlaps are kept before they are forgotten: what fits into a cache.
+const ROOM: usize = 20_000;
+
 #[derive(Clone, Copy)]
 struct Candidate {
     outer: Use,
     at: u16,
     inner: Use,
-}
-
-/// Priority of a pair: the larger side counts four times (measured against the sum of both, which
-/// solved fewer of the harder problems).
-pub(super) fn priority(large: u32, small: u32) -> u32 {
-    let (large, small) = (large.max(small), large.min(small));
-    large.saturating_mul(4).saturating_add(small)
 }
 
 impl Engine {
@@ -111,22 +107,36 @@ impl Engine {
     }
 
     /// Makes, simplifies and weighs the overlaps that were listed; those that do not join wait.
+    ///
+    /// Overlaps with one rule have many subterms in common, so that what was built for one and its
+    /// normal forms are kept for the next ones, as long as there is room.
     pub(super) fn continue_forming(&mut self, limits: &mut Limits) -> Result<(), Stopped> {
         let Some(mut forming) = self.forming.take() else {
             return Ok(());
         };
+        let mut mark = self.system.mark();
+        let mut outcome = Ok(());
         while let Some(&candidate) = forming.candidates.get(forming.next) {
             match self.form(forming.rule, candidate, limits) {
                 Ok(recipe) => forming.pairs.extend(recipe),
                 Err(stopped) => {
-                    self.forming = Some(forming);
-                    return Err(stopped);
+                    outcome = Err(stopped);
+                    break;
                 }
             }
             forming.next += 1;
+            if self.system.bank.len() > mark.terms() + ROOM {
+                self.system.rollback(mark);
+                mark = self.system.mark();
+            }
         }
-        self.waiting.push_batch(forming.rule, forming.pairs);
-        Ok(())
+        self.system.rollback(mark);
+        if outcome.is_err() {
+            self.forming = Some(forming);
+        } else {
+            self.waiting.push_batch(forming.rule, forming.pairs);
+        }
+        outcome
     }
 
     fn form(
@@ -140,15 +150,11 @@ impl Engine {
         if !self.unifies(outer, at, inner) {
             return Ok(None);
         }
-        let mark = self.system.mark();
         self.counts.formed += 1;
-        let pair = self.build(outer, at, inner);
-        let weight = match pair {
-            Some((left, right)) => self.weigh(left, right, limits),
-            None => Ok(None),
+        let Some((left, right)) = self.build(outer, at, inner) else {
+            return Ok(None);
         };
-        self.system.rollback(mark);
-        let Some(priority) = weight? else {
+        let Some(priority) = self.weigh(left, right, limits)? else {
             return Ok(None);
         };
         let own_is_inner = inner.rule == own;
@@ -180,10 +186,7 @@ impl Engine {
         if left == right || self.is_instance(left, right) || self.joins_by_ac(left, right) {
             return Ok(None);
         }
-        Ok(Some(priority(
-            self.system.bank.size(left),
-            self.system.bank.size(right),
-        )))
+        Ok(Some(self.weigher.priority(&self.system.bank, left, right)))
     }
 
     /// Unifies the inner rule's side with the place in the outer rule's side.

@@ -1,7 +1,6 @@
 //! What becomes of a pair that is chosen.
 
 use super::occurrences::path;
-use super::overlap::priority;
 use super::record::{Origin, Record, RecordStep};
 use super::run::Engine;
 use super::waiting::Choice;
@@ -65,7 +64,11 @@ impl Engine {
         let mark = self.system.mark();
         let answer = match self.sides_of(choice) {
             None => Ok(true),
-            Some((left, right)) => self.is_redundant_pair(left, right, limits),
+            Some(pair) => {
+                let connected = self.weigher.strategy.connected && self.has_unoriented();
+                let peak = connected.then(|| self.peak_of(choice)).flatten();
+                self.is_redundant_pair(pair, peak, limits)
+            }
         };
         self.system.rollback(mark);
         answer
@@ -73,16 +76,23 @@ impl Engine {
 
     fn is_redundant_pair(
         &mut self,
-        left: TermId,
-        right: TermId,
+        pair: (TermId, TermId),
+        peak: Option<TermId>,
         limits: &mut Limits,
     ) -> Result<bool, Stopped> {
-        let left = self.system.normal_form(left, limits)?;
-        let right = self.system.normal_form(right, limits)?;
+        let left = self.system.normal_form(pair.0, limits)?;
+        let right = self.system.normal_form(pair.1, limits)?;
         if left == right || self.is_instance(left, right) || self.joins_by_ac(left, right) {
             return Ok(true);
         }
-        if self.has_unoriented()
+        if let Some(peak) = peak
+            && self.is_connected(peak, pair, (left, right), limits)?
+        {
+            self.counts.connected += 1;
+            return Ok(true);
+        }
+        if self.weigher.strategy.ground
+            && self.has_unoriented()
             && self.system.ground_joins(left, right, limits)? == Joining::Joined
         {
             self.counts.ground_joined += 1;
@@ -183,12 +193,13 @@ impl Engine {
         self.unoriented += usize::from(!rule.oriented);
         self.notice_ac(id);
         self.occurrences.add(&self.system, id);
+        self.parts.add(&self.system, id);
         self.unformed.push_back(id);
     }
 
     /// The priority of a rule that is to be simplified again.
-    pub(super) fn priority_of(&self, rule: RuleId) -> u32 {
+    pub(super) fn priority_of(&mut self, rule: RuleId) -> u32 {
         let (left, right) = self.system.rule(rule).sides(false);
-        priority(self.system.bank.size(left), self.system.bank.size(right))
+        self.weigher.priority(&self.system.bank, left, right)
     }
 }

@@ -2,8 +2,8 @@
 
 use super::record::{Origin, Record};
 use super::run::Engine;
-use crate::rewrite::{Limits, RuleId, Stopped, Use};
-use crate::term::{Substitution, TermId, instantiate, match_term};
+use crate::rewrite::{Limits, RuleId, Stopped, System, Use};
+use crate::term::{Bank, Substitution, TermId, instantiate, match_term};
 use rustc_hash::FxHashSet;
 
 impl Engine {
@@ -31,18 +31,15 @@ impl Engine {
         retired.sort_unstable();
         for &id in &retired {
             self.retire(id);
-            self.waiting.push_whole(id, self.priority_of(id));
+            let priority = self.priority_of(id);
+            self.waiting.push_whole(id, priority);
         }
         let mut stale: Vec<RuleId> = stale.into_iter().filter(|s| !retired.contains(s)).collect();
         stale.sort_unstable();
         self.stale.extend(stale);
         let rule = self.system.rule(new);
         let (left, right) = (rule.left, rule.right);
-        let itself = Use {
-            rule: new,
-            backward: false,
-        };
-        if rule.oriented && self.reduces(itself, left, right) {
+        if rule.oriented && contains_instance(&self.system.bank, left, right) {
             self.stale.push(new);
         }
     }
@@ -58,70 +55,34 @@ impl Engine {
     /// The active rules, other than the new one, that it reduces, and whether in the side whose
     /// change makes the overlaps of the rule void.
     fn reducible(&mut self, by: Use, pattern: TermId) -> Vec<(RuleId, bool)> {
-        let mut found = Vec::new();
-        let ids: Vec<RuleId> = self.active_rules().filter(|id| *id != by.rule).collect();
-        for id in ids {
-            let rule = self.system.rule(id);
-            let (left, right, oriented) = (rule.left, rule.right, rule.oriented);
-            if self.reduces(by, pattern, left) || !oriented && self.reduces(by, pattern, right) {
-                found.push((id, true));
-            } else if oriented && self.reduces(by, pattern, right) {
-                found.push((id, false));
-            } else if !oriented && self.subsumes(by, left, right) {
-                found.push((id, true));
-            }
-        }
-        found
-    }
-
-    /// Does the new rule rewrite some subterm of the term?
-    fn reduces(&mut self, by: Use, pattern: TermId, term: TermId) -> bool {
-        let bank = &self.system.bank;
-        if bank.size(term) < bank.size(pattern) {
-            return false;
-        }
-        let mut seen = FxHashSet::default();
-        let mut stack = vec![term];
+        let mut parts = std::mem::take(&mut self.parts);
+        let smallest = self.system.bank.size(pattern);
         let mut substitution = Substitution::default();
-        while let Some(term) = stack.pop() {
-            let bank = &self.system.bank;
-            if bank.size(term) < bank.size(pattern) || !seen.insert(term) {
-                continue;
-            }
-            stack.extend(bank.arguments(term));
-            let could_match = match bank.as_symbol(pattern) {
-                Some(_) => bank.head(term) == bank.head(pattern),
-                None => bank.as_symbol(term).is_some(),
-            };
-            if !could_match {
-                continue;
+        let symbol = self.system.bank.as_symbol(pattern);
+        let terms = parts.find(&mut self.system, symbol, |system, term| {
+            if system.bank.size(term) < smallest {
+                return false;
             }
             substitution.reset(0);
-            if match_term(bank, pattern, term, &mut substitution)
-                && self.decreases(by, term, &mut substitution)
-            {
-                return true;
+            match_term(&system.bank, pattern, term, &mut substitution)
+                && decreases(system, by, term, &mut substitution)
+        });
+        let mut found = Vec::new();
+        for (term, owners) in terms {
+            for id in owners.into_iter().filter(|id| *id != by.rule) {
+                let rule = self.system.rule(id);
+                let void = !rule.oriented || occurs(&self.system.bank, term, rule.left);
+                found.push((id, void));
             }
         }
-        false
-    }
-
-    fn decreases(&mut self, by: Use, term: TermId, substitution: &mut Substitution) -> bool {
-        let rule = self.system.rule(by.rule);
-        if rule.oriented {
-            return true;
+        for &id in parts.unoriented(&self.system) {
+            let (left, right) = self.system.rule(id).sides(false);
+            if id != by.rule && self.subsumes(by, left, right) {
+                found.push((id, true));
+            }
         }
-        let (_, to) = rule.sides(by.backward);
-        if rule.has_extra(by.backward) {
-            // Whether the open variables have a least value is the rewriter's business: a rule
-            // that is retired without need comes back unchanged.
-            return self.system.reduces_open(term, by);
-        }
-        let mark = self.system.bank.mark();
-        let next = instantiate(&mut self.system.bank, to, substitution);
-        let less = self.system.order.greater(&self.system.bank, term, next);
-        self.system.bank.rollback(mark);
-        less
+        self.parts = parts;
+        found
     }
 
     /// Is the equation an instance of the new one?
@@ -149,6 +110,7 @@ impl Engine {
                         swapped: false,
                     };
                     let by = self.system.replace(id, normal);
+                    self.parts.add(&self.system, by);
                     self.records.push(record);
                     self.waiting.hand_over(id, by);
                     self.counts.simplified += 1;
@@ -159,4 +121,55 @@ impl Engine {
         }
         Ok(())
     }
+}
+
+fn decreases(system: &mut System, by: Use, term: TermId, substitution: &mut Substitution) -> bool {
+    let rule = system.rule(by.rule);
+    if rule.oriented {
+        return true;
+    }
+    let (_, to) = rule.sides(by.backward);
+    if rule.has_extra(by.backward) {
+        // Whether the open variables have a least value is the rewriter's business: a rule that is
+        // retired without need comes back unchanged.
+        return system.reduces_open(term, by);
+    }
+    let mark = system.bank.mark();
+    let next = instantiate(&mut system.bank, to, substitution);
+    let less = system.order.greater(&system.bank, term, next);
+    system.bank.rollback(mark);
+    less
+}
+
+/// Does the pattern match some subterm?
+fn contains_instance(bank: &Bank, pattern: TermId, whole: TermId) -> bool {
+    let mut seen = FxHashSet::default();
+    let mut stack = vec![whole];
+    let mut substitution = Substitution::default();
+    while let Some(term) = stack.pop() {
+        if bank.size(term) < bank.size(pattern) || !seen.insert(term) {
+            continue;
+        }
+        substitution.reset(0);
+        if match_term(bank, pattern, term, &mut substitution) {
+            return true;
+        }
+        stack.extend(bank.arguments(term));
+    }
+    false
+}
+
+/// Is the first term a subterm of the second?
+fn occurs(bank: &Bank, part: TermId, whole: TermId) -> bool {
+    let mut seen = FxHashSet::default();
+    let mut stack = vec![whole];
+    while let Some(term) = stack.pop() {
+        if term == part {
+            return true;
+        }
+        if bank.size(term) > bank.size(part) && seen.insert(term) {
+            stack.extend(bank.arguments(term));
+        }
+    }
+    false
 }

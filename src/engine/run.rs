@@ -2,7 +2,9 @@
 
 use super::occurrences::Occurrences;
 use super::overlap::Forming;
+use super::parts::Parts;
 use super::record::{LawId, Record};
+use super::strategy::{Strategy, Weigher};
 use super::waiting::Waiting;
 use crate::order::Order;
 use crate::rewrite::{Limits, RuleId, RuleState, Stopped, System, Use};
@@ -23,6 +25,8 @@ pub struct Counts {
     pub ac: u64,
     /// Chosen pairs that joined for every order of their variables.
     pub ground_joined: u64,
+    /// Chosen pairs that were connected below their peak.
+    pub connected: u64,
     /// Waiting pairs that went with a retired rule.
     pub orphans: u64,
     /// Rules that were retired.
@@ -58,9 +62,6 @@ pub enum Outcome {
     Stopped(Stopped),
 }
 
-/// Every this many choices the oldest pair is taken instead of the best one.
-const AGE_EVERY: u64 = 10;
-
 /// A set of laws with the rules that were derived from them.
 ///
 /// Invariants: each rule of the system has a record; each active rule's overlaps with the active
@@ -73,6 +74,8 @@ pub struct Engine {
     pub(super) records: Vec<Record>,
     pub(super) waiting: Waiting,
     pub(super) occurrences: Occurrences,
+    pub(super) parts: Parts,
+    pub(super) weigher: Weigher,
     pub(super) unifier: Unifier,
     pub(super) forming: Option<Forming>,
     pub(super) unformed: VecDeque<RuleId>,
@@ -94,6 +97,8 @@ impl Engine {
             records: Vec::new(),
             waiting: Waiting::default(),
             occurrences: Occurrences::default(),
+            parts: Parts::default(),
+            weigher: Weigher::default(),
             unifier: Unifier::default(),
             forming: None,
             unformed: VecDeque::new(),
@@ -103,6 +108,11 @@ impl Engine {
             ac_symbols: Vec::new(),
             counts: Counts::default(),
         }
+    }
+
+    /// Uses another strategy from now on. Pairs that wait keep the priority that they have.
+    pub fn set_strategy(&mut self, strategy: Strategy) {
+        self.weigher.strategy = strategy;
     }
 
     /// Adds a law between two terms of the system's bank; it is looked at in the next run.
@@ -123,6 +133,10 @@ impl Engine {
         mut progress: impl FnMut(&Engine),
     ) -> Outcome {
         let mut seen = 0;
+        if let Some(question) = question {
+            let sides = [question.left, question.right];
+            self.weigher.mention(&self.system.bank, sides);
+        }
         loop {
             // Interning a question needs no mark: its terms stay.
             let met = match question {
@@ -164,7 +178,8 @@ impl Engine {
                 self.continue_forming(limits)?;
             }
         }
-        let by_age = self.counts.chosen % AGE_EVERY == AGE_EVERY - 1;
+        let every = self.weigher.strategy.oldest_every;
+        let by_age = every > 0 && self.counts.chosen % every == every - 1;
         let taken = if by_age {
             self.waiting.pop_oldest()
         } else {

@@ -1,6 +1,7 @@
 //! What a comparison assumes about the variables: nothing, or that they are ordered.
 
 use crate::term::VariableCounts;
+use std::cell::Cell;
 
 /// What is assumed about the order of the ground terms that stand for the variables.
 ///
@@ -17,7 +18,7 @@ pub(super) trait Assumption {
     /// Is every variable counted in `b` at most some variable counted in `a`? Neither is wide.
     fn reaches(&self, a: VariableCounts, b: VariableCounts) -> bool;
 
-    /// The variables with a place in the order, greatest first.
+    /// The variables with a place in the order, greatest first. The caller relies on all of it.
     fn descending(&self) -> &[u32];
 }
 
@@ -50,14 +51,22 @@ impl Assumption for Nothing {
 ///
 /// Invariant: no variable has two places. Of a variable without a place nothing is assumed.
 /// Variables that stand for equal terms have to be made one beforehand.
+///
+/// It takes note of what comparisons made use of: see [`VariableOrder::used`].
 #[derive(Clone, Debug, Default, PartialEq, Eq)]
 pub struct VariableOrder {
     descending: Vec<u32>,
     /// The place in `descending`, by variable; `u32::MAX` for none.
     places: Vec<u32>,
+    /// Eight bits for each of the first eight places: which lower places a comparison relied on to
+    /// be lower.
+    used: Cell<u64>,
 }
 
 const NOWHERE: u32 = u32::MAX;
+
+/// So many places take part in [`VariableOrder::used`].
+const NOTED: usize = 8;
 
 impl VariableOrder {
     /// The order in which these variables, by number, come greatest first. A repeated variable
@@ -72,6 +81,7 @@ impl VariableOrder {
     pub fn set(&mut self, greatest_first: &[u32]) {
         self.descending.clear();
         self.places.clear();
+        self.used.set(0);
         for &variable in greatest_first {
             let slot = variable as usize;
             if slot >= self.places.len() {
@@ -89,6 +99,26 @@ impl VariableOrder {
         &self.descending
     }
 
+    /// What comparisons relied on so far: that the variable at the first place is above the one at
+    /// the second. Under every order that agrees with that, all comparisons that said *greater*
+    /// say so again. Not for more than eight variables.
+    pub fn used(&self) -> impl Iterator<Item = (usize, usize)> {
+        debug_assert!(self.descending.len() <= NOTED);
+        let used = self.used.get();
+        let places = self.descending.len();
+        (0..NOTED * NOTED)
+            .filter(move |bit| used >> bit & 1 == 1)
+            .map(|bit| (bit / NOTED, bit % NOTED))
+            .filter(move |(above, below)| above < below && *below < places)
+    }
+
+    fn note(&self, above: usize, below: usize) {
+        if above < NOTED && below < NOTED {
+            let bit = 1 << (above * NOTED + below);
+            self.used.set(self.used.get() | bit);
+        }
+    }
+
     fn place(&self, variable: u32) -> u32 {
         self.places
             .get(variable as usize)
@@ -104,7 +134,11 @@ impl VariableOrder {
 impl Assumption for VariableOrder {
     fn above(&self, x: u32, y: u32) -> bool {
         let (x, y) = (self.place(x), self.place(y));
-        y != NOWHERE && x < y
+        let above = y != NOWHERE && x < y;
+        if above {
+            self.note(x as usize, y as usize);
+        }
+        above
     }
 
     /// With x₁ > x₂ > … > xₙ the weights are w(xₙ) = w₀ + δₙ, w(xᵢ) = w(xᵢ₊₁) + δᵢ for arbitrary
@@ -116,10 +150,18 @@ impl Assumption for VariableOrder {
         }
         let difference = |variable| a.of(variable) as i32 - b.of(variable) as i32;
         let mut sum = 0;
-        self.descending.iter().all(|&variable| {
+        let covers = self.descending.iter().all(|&variable| {
             sum += difference(variable);
             sum >= 0
-        }) && self.unplaced().all(|variable| difference(variable) >= 0)
+        }) && self.unplaced().all(|variable| difference(variable) >= 0);
+        if covers {
+            let differ = |place: &usize| difference(self.descending[*place]) != 0;
+            let places: Vec<usize> = (0..self.descending.len()).filter(differ).collect();
+            for (rank, &above) in places.iter().enumerate() {
+                places[rank + 1..].iter().for_each(|&p| self.note(above, p));
+            }
+        }
+        covers
     }
 
     fn reaches(&self, a: VariableCounts, b: VariableCounts) -> bool {
@@ -130,10 +172,20 @@ impl Assumption for VariableOrder {
             let place = self.descending.iter().position(|&v| counts.of(v) > 0);
             place.unwrap_or(self.descending.len())
         };
-        greatest(a) <= greatest(b) && self.unplaced().all(|v| a.of(v) > 0 || b.of(v) == 0)
+        let top = greatest(a);
+        let reaches = top <= greatest(b) && self.unplaced().all(|v| a.of(v) > 0 || b.of(v) == 0);
+        if reaches {
+            for (place, &variable) in self.descending.iter().enumerate().skip(top + 1) {
+                if b.of(variable) > 0 {
+                    self.note(top, place);
+                }
+            }
+        }
+        reaches
     }
 
     fn descending(&self) -> &[u32] {
+        self.used.set(u64::MAX);
         &self.descending
     }
 }

@@ -12,7 +12,7 @@ use rustc_hash::FxHashMap;
 const WORK_LIMIT: usize = 1 << 20;
 
 /// Comparisons that stay below this many pairs are too short for a memo to pay.
-const MEMO_FROM: usize = 32;
+const MEMO_FROM: usize = 256;
 
 /// What a pair `s`, `t` waits for.
 #[derive(Clone, Copy, Debug)]

@@ -138,6 +138,24 @@ proptest! {
     }
 
     #[test]
+    fn what_was_relied_on_is_enough(
+        setting in settings(),
+        (s, t) in (open(), open()),
+        names in Just(VARIABLES.to_vec()).prop_shuffle(),
+        others in Just(VARIABLES.to_vec()).prop_shuffle(),
+    ) {
+        let mut world = World::new(&setting);
+        let (s, t) = (world.term(&s), world.term(&t));
+        let assumed = VariableOrder::new(&names);
+        if world.order.greater_assuming(&world.bank, s, t, &assumed) {
+            let place = |name: u32| others.iter().position(|&other| other == name);
+            let agrees = assumed.used().all(|(i, j)| place(names[i]) < place(names[j]));
+            let again = VariableOrder::new(&others);
+            prop_assert!(!agrees || world.order.greater_assuming(&world.bank, s, t, &again));
+        }
+    }
+
+    #[test]
     fn under_a_total_assumption_the_path_order_sees_constants(
         (s, t) in (open(), open()),
         precedence in Just((0..8).map(Symbol).collect::<Vec<_>>()).prop_shuffle(),

@@ -75,17 +75,6 @@ impl System {
         self.generation = (self.state << 1) | u32::from(self.asking);
     }
 
-    /// The term that an open variable of this sort becomes; there is none if the sort has no
-    /// ground term.
-    pub(super) fn least(&self, sort: Sort) -> Option<TermId> {
-        let least = if self.asking {
-            &self.asked_least
-        } else {
-            &self.theory_least
-        };
-        of_sort(least, sort)
-    }
-
     /// The term that an open variable of this sort becomes outside questions.
     pub fn theory_least(&self, sort: Sort) -> Option<TermId> {
         of_sort(&self.theory_least, sort)
@@ -144,7 +133,7 @@ impl System {
     }
 }
 
-fn of_sort(least: &[TermId], sort: Sort) -> Option<TermId> {
+pub(super) fn of_sort(least: &[TermId], sort: Sort) -> Option<TermId> {
     let term = least.get(usize::from(sort.0)).copied();
     term.filter(|term| term.is_some())
 }

@@ -84,7 +84,7 @@ impl System {
             self.rules[by.rule.index()].sides(by.backward).0,
             term,
         );
-        self.replacement(by)
+        self.replacement(term, by)
             .expect("what was rewritten can be rewritten again")
     }
 

@@ -9,6 +9,8 @@ use super::{Limits, Stopped, System};
 use crate::order::VariableOrder;
 use crate::term::{Substitution, TermId, Variable, instantiate};
 use rustc_hash::FxHashMap;
+use std::cmp::Ordering;
+use std::sync::OnceLock;
 
 /// Did the two terms join?
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -25,7 +27,9 @@ const MOST_VARIABLES: usize = 5;
 impl System {
     /// Do all ground instances of the two terms join? The terms that this builds are forgotten.
     ///
-    /// Costs two normal forms per preorder of the variables, until one does not join.
+    /// Costs two normal forms per preorder of the variables, until one does not join. Of a preorder
+    /// under which they join only what the comparisons made use of is kept; other preorders that
+    /// agree with that need no look, so that usually a few cover all.
     pub fn ground_joins(
         &mut self,
         s: TermId,
@@ -41,55 +45,69 @@ impl System {
         if variables.len() < 2 || variables.len() > MOST_VARIABLES {
             return Ok(Joining::Open);
         }
+        let mut covered: Vec<Facts> = Vec::new();
         for preorder in preorders(variables.len()) {
+            if covered.iter().any(|facts| preorder.facts.include(*facts)) {
+                continue;
+            }
             let mark = self.bank.mark();
-            let joined = self.joins_under(s, t, &variables, &preorder, limits);
+            let joined = self.joins_under(s, t, &variables, preorder, limits);
             self.bank.rollback(mark);
-            if !joined? {
-                return Ok(Joining::Open);
+            match joined? {
+                Some(used) => covered.push(used),
+                None => return Ok(Joining::Open),
             }
         }
         Ok(Joining::Joined)
     }
 
-    /// `preorder` has the class of each variable; class 0 is the greatest.
+    /// What of the preorder was needed for the two terms to join; nothing if they do not.
     fn joins_under(
         &mut self,
         s: TermId,
         t: TermId,
         variables: &[Variable],
-        preorder: &[usize],
+        preorder: &Preorder,
         limits: &mut Limits,
-    ) -> Result<bool, Stopped> {
-        let classes = preorder.iter().max().map_or(0, |most| most + 1);
-        let mut chosen: Vec<Vec<Variable>> = vec![Vec::new(); classes];
+    ) -> Result<Option<Facts>, Stopped> {
+        let classes = preorder.classes.iter().max().map_or(0, |most| most + 1);
+        let mut chosen: Vec<Vec<usize>> = vec![Vec::new(); classes];
         let mut substitution = Substitution::default();
-        for (variable, &class) in variables.iter().zip(preorder) {
+        for (place, (variable, &class)) in variables.iter().zip(&preorder.classes).enumerate() {
             // Variables of different sorts are never equal; they share a place in the order only.
             let same = chosen[class]
                 .iter()
-                .find(|v| v.sort == variable.sort)
-                .copied();
+                .find(|other| variables[**other].sort == variable.sort);
             match same {
-                Some(same) => {
-                    let term = self.bank.variable(same);
+                Some(&same) => {
+                    let term = self.bank.variable(variables[same]);
                     substitution.set(variable.index, term);
                 }
-                None => chosen[class].push(*variable),
+                None => chosen[class].push(place),
             }
         }
         if chosen.iter().any(|class| class.len() > 1) {
             // A tie between different sorts: covered by the preorders without it.
-            return Ok(true);
+            return Ok(Some(preorder.facts));
         }
-        let order: Vec<u32> = chosen.iter().map(|class| class[0].index).collect();
+        let order: Vec<u32> = chosen.iter().map(|c| variables[c[0]].index).collect();
         let assumed = VariableOrder::new(&order);
         let s = instantiate(&mut self.bank, s, &substitution);
         let t = instantiate(&mut self.bank, t, &substitution);
         let mut memo = FxHashMap::default();
         let s = self.normal_assuming(s, &assumed, &mut memo, limits)?;
         let t = self.normal_assuming(t, &assumed, &mut memo, limits)?;
-        Ok(s == t)
+        if s != t {
+            return Ok(None);
+        }
+        let mut used = Facts {
+            above: 0,
+            ties: preorder.facts.ties,
+        };
+        for (i, j) in assumed.used() {
+            used.above |= Facts::bit(chosen[i][0], chosen[j][0]);
+        }
+        Ok(Some(used))
     }
 
     /// The normal form when the variables are assumed to be ordered, without the table.
@@ -154,7 +172,7 @@ impl System {
         self.matcher.start(term);
         while let Some(by) = self.matcher.next(&self.index, &self.bank) {
             let mark = self.bank.mark();
-            let Some(next) = self.replacement(by) else {
+            let Some(next) = self.replacement(term, by) else {
                 continue;
             };
             if self.rules[by.rule.index()].oriented
@@ -168,24 +186,70 @@ impl System {
     }
 }
 
-/// All total preorders of `count` things, as the class of each; strict orders first, since most
-/// pairs that do not join fail on the first.
-fn preorders(count: usize) -> Vec<Vec<usize>> {
-    let mut found = Vec::new();
-    let mut classes = vec![0; count];
-    loop {
-        let most = *classes.iter().max().unwrap_or(&0);
-        if (0..=most).all(|class| classes.contains(&class)) {
-            found.push(classes.clone());
-        }
-        let Some(place) = (0..count).rev().find(|&place| classes[place] + 1 < count) else {
-            break;
-        };
-        classes[place] += 1;
-        classes[place + 1..].fill(0);
+/// What is known of the variables of a pair, by their places: which are above which, and which are
+/// equal.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+struct Facts {
+    above: u64,
+    ties: u64,
+}
+
+impl Facts {
+    fn bit(i: usize, j: usize) -> u64 {
+        1 << (i * MOST_VARIABLES + j)
     }
-    found.sort_by_key(|classes| std::cmp::Reverse(classes.iter().max().copied()));
-    found
+
+    fn include(self, other: Facts) -> bool {
+        self.above & other.above == other.above && self.ties & other.ties == other.ties
+    }
+}
+
+/// A total preorder of the variables of a pair.
+#[derive(Clone, Debug)]
+struct Preorder {
+    /// The class of each; class 0 is the greatest.
+    classes: Vec<usize>,
+    facts: Facts,
+}
+
+impl Preorder {
+    fn new(classes: Vec<usize>) -> Preorder {
+        let mut facts = Facts { above: 0, ties: 0 };
+        for (i, a) in classes.iter().enumerate() {
+            for (j, b) in classes.iter().enumerate() {
+                match a.cmp(b) {
+                    Ordering::Less => facts.above |= Facts::bit(i, j),
+                    Ordering::Equal => facts.ties |= Facts::bit(i, j),
+                    Ordering::Greater => {}
+                }
+            }
+        }
+        Preorder { classes, facts }
+    }
+}
+
+/// All total preorders of `count` things; strict orders first, since most pairs that do not join
+/// fail on the first.
+fn preorders(count: usize) -> &'static [Preorder] {
+    static ALL: [OnceLock<Vec<Preorder>>; MOST_VARIABLES + 1] =
+        [const { OnceLock::new() }; MOST_VARIABLES + 1];
+    ALL[count].get_or_init(|| {
+        let mut found = Vec::new();
+        let mut classes = vec![0; count];
+        loop {
+            let most = *classes.iter().max().unwrap_or(&0);
+            if (0..=most).all(|class| classes.contains(&class)) {
+                found.push(classes.clone());
+            }
+            let Some(place) = (0..count).rev().find(|&place| classes[place] + 1 < count) else {
+                break;
+            };
+            classes[place] += 1;
+            classes[place + 1..].fill(0);
+        }
+        found.sort_by_key(|classes| std::cmp::Reverse(classes.iter().max().copied()));
+        found.into_iter().map(Preorder::new).collect()
+    })
 }
 
 #[cfg(test)]

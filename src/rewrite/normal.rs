@@ -227,7 +227,7 @@ impl System {
                 return self.start_build(built, by);
             }
             let mark = self.bank.mark();
-            if let Some(next) = self.replacement(by) {
+            if let Some(next) = self.replacement(built, by) {
                 if self.order.greater(&self.bank, built, next) {
                     return self.rewritten(built, next, by);
                 }
@@ -253,7 +253,7 @@ impl System {
         let rule = &self.rules[by.rule.index()];
         let program = rule.program(by.backward);
         if program.operations().is_empty() {
-            let next = self.replacement(by);
+            let next = self.replacement(term, by);
             let next = next.expect("an oriented rule has no open variables");
             return self.rewritten(term, next, by);
         }

@@ -1,6 +1,6 @@
 //! Rules: equations that are used to rewrite.
 
-use crate::term::{Bank, Head, Substitution, Symbol, TermId};
+use crate::term::{Bank, Head, Substitution, Symbol, TermId, Variable};
 
 /// A rule, by its number; numbers are never reused.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, PartialOrd, Ord)]
@@ -77,7 +77,7 @@ impl Rule {
 
     /// Has the replacing side variables that the other one lacks?
     pub fn has_extra(&self, backward: bool) -> bool {
-        self.programs[usize::from(backward)].extra
+        !self.programs[usize::from(backward)].extra.is_empty()
     }
 
     /// Has one of the sides variables that the other one lacks?
@@ -109,7 +109,10 @@ pub(super) enum Operation {
 #[derive(Clone, Debug, Default)]
 pub(super) struct Program {
     operations: Box<[Operation]>,
-    extra: bool,
+    /// The variables that the side that is looked for lacks.
+    pub(super) extra: Box<[Variable]>,
+    /// How often each variable occurs, unless the counts are wide.
+    occurrences: Option<Box<[(u32, u32)]>>,
 }
 
 impl Program {
@@ -136,10 +139,41 @@ impl Program {
                 _ => append(bank, to, &mut operations),
             }
         }
+        let mut extra = Vec::new();
+        if !bank.mentions_all(from, to) {
+            let present = bank.variables(from);
+            extra = bank.variables(to);
+            extra.retain(|variable| !present.contains(variable));
+        }
+        let counts = bank.counts(to);
+        let variables = bank.variables(to);
+        let occurrence = |v: &Variable| (v.index, counts.of(v.index));
+        let occurrences = (!counts.is_wide()).then(|| variables.iter().map(occurrence).collect());
         Program {
             operations: operations.into(),
-            extra: !bank.mentions_all(from, to),
+            extra: extra.into(),
+            occurrences,
         }
+    }
+
+    /// The weight of the instance of `side`, which this is the program of, without building it;
+    /// nothing if that is not known. All its variables must have values.
+    #[inline]
+    pub(super) fn weight(
+        &self,
+        bank: &Bank,
+        side: TermId,
+        substitution: &Substitution,
+    ) -> Option<u64> {
+        let mut weight = bank.weight(side);
+        let own = u64::from(bank.variable_weight());
+        for &(variable, times) in self.occurrences.as_ref()? {
+            let value = bank.weight(substitution.get(variable));
+            // Every term weighs at least as much as a variable.
+            let more = value.saturating_sub(own).saturating_mul(u64::from(times));
+            weight = weight.saturating_add(more);
+        }
+        Some(weight)
     }
 
     /// In postorder; none for a side that is large.

@@ -1,10 +1,11 @@
 //! A set of rules with everything that rewriting by them needs.
 
+use super::asking::of_sort;
 use super::canonical::{AcLaws, Spine};
 use super::index::{Index, Matcher};
 use super::normal::{Build, Frame};
 use super::{Rule, RuleId, RuleState, Table, Use};
-use crate::order::Order;
+use crate::order::{Order, OrderKind};
 use crate::term::{Bank, Sort, Symbol, SymbolInfo, TermId};
 
 /// Rules, an index of the active ones, and the table of what they have rewritten.
@@ -237,7 +238,7 @@ impl System {
         let mut reduces = false;
         while let Some(hit) = self.matcher.next(&self.index, &self.bank) {
             if hit == by {
-                let next = self.replacement(by);
+                let next = self.replacement(term, by);
                 reduces = next.is_some_and(|next| self.order.greater(&self.bank, term, next));
                 break;
             }
@@ -246,26 +247,32 @@ impl System {
         reduces
     }
 
-    /// The instance of a rule's replacing side under the last hit's substitution.
-    pub(super) fn replacement(&mut self, by: Use) -> Option<TermId> {
+    /// The instance of a rule's replacing side under the last hit's substitution, which makes the
+    /// other side `term`; nothing if there
+    /// is none, or if the rule is not oriented and the instance does not decrease by its weight.
+    pub(super) fn replacement(&mut self, term: TermId, by: Use) -> Option<TermId> {
         let rule = &self.rules[by.rule.index()];
         let (_, to) = rule.sides(by.backward);
-        if rule.has_extra(by.backward) {
-            for variable in self.bank.variables(to) {
-                if !self.matcher.substitution.get(variable.index).is_some() {
-                    // Set for this instance only: the next hit's search clears what it has bound.
-                    let least = self.least(variable.sort)?;
-                    self.matcher.bind(variable.index, least);
-                }
+        for variable in &rule.program(by.backward).extra {
+            if !self.matcher.substitution.get(variable.index).is_some() {
+                // Set for this instance only: the next hit's search clears what it has bound.
+                let least = if self.asking {
+                    &self.asked_least
+                } else {
+                    &self.theory_least
+                };
+                let least = of_sort(least, variable.sort)?;
+                self.matcher.bind(variable.index, least);
             }
         }
-        let rule = &self.rules[by.rule.index()];
         let program = rule.program(by.backward);
-        Some(program.run(
-            &mut self.bank,
-            to,
-            &self.matcher.substitution,
-            &mut self.built,
-        ))
+        let substitution = &self.matcher.substitution;
+        if !rule.oriented && self.order.kind() == OrderKind::Kbo {
+            let weight = program.weight(&self.bank, to, substitution);
+            if weight.is_some_and(|weight| weight > self.bank.weight(term)) {
+                return None;
+            }
+        }
+        Some(program.run(&mut self.bank, to, substitution, &mut self.built))
     }
 }

@@ -245,18 +245,15 @@ impl Session {
         means: Means,
         work: &mut Work,
     ) -> Result<Searched, SessionFault> {
-        if means == Means::Proof {
-            let ended = self.workers.run(&self.theory, Some(question), work)?;
-            return Ok(Searched {
-                ended: Some(ended),
-                ..Searched::default()
-            });
-        }
         let largest = match means {
             Means::Algebra(most) => most,
             _ => algebras::LARGEST,
         };
-        if means == Means::All && self.workers.formed() < EASY {
+        let by_rules = |ended| Searched {
+            ended: Some(ended),
+            ..Searched::default()
+        };
+        if !matches!(means, Means::Algebra(_)) && self.workers.formed() < EASY {
             // What easy theories decide by their rules is not left to chance.
             let most = work.budget().map_or(HEAD_START, |budget| budget / 8);
             work.set_pause(Some(Instant::now() + HEAD_START.min(most)));
@@ -264,11 +261,12 @@ impl Session {
             work.set_pause(None);
             let ended = ended?;
             if let Ended::Met(_) | Ended::Complete(_) = ended {
-                return Ok(Searched {
-                    ended: Some(ended),
-                    ..Searched::default()
-                });
+                return Ok(by_rules(ended));
             }
+        }
+        if means == Means::Proof {
+            let ended = self.workers.run(&self.theory, Some(question), work)?;
+            return Ok(by_rules(ended));
         }
         let hunt = self.algebras.hunt(&self.theory, question, largest);
         let halt = Arc::new(AtomicBool::new(false));

@@ -87,9 +87,19 @@ impl<'a, 'c> Work<'a, 'c> {
         self.elsewhere = flag;
     }
 
+    /// The flag by which somebody else says that the answer was found.
+    pub(super) fn elsewhere(&self) -> Option<Arc<AtomicBool>> {
+        self.elsewhere.clone()
+    }
+
     /// From now on the work also pauses at this time.
     pub(super) fn set_pause(&mut self, pause: Option<Instant>) {
         self.pause = pause;
+    }
+
+    /// Does the work pause before its time is used up?
+    pub(super) fn pauses(&self) -> bool {
+        self.pause.is_some()
     }
 
     /// Is the time used up, or is there no need to go on?

@@ -1,6 +1,7 @@
 //! Evidence from what the engine knows: chains of the engine's terms become proof objects.
 
 use super::derivation::{Chain, Cited, Link, of_ground_lemma, of_rule, of_table};
+use super::goal::Goal;
 use super::naming::Naming;
 use crate::engine::{Engine, ReplayError};
 use crate::order::OrderKind;
@@ -31,6 +32,7 @@ pub(super) struct Writer<'a> {
     engine: &'a mut Engine,
     naming: &'a Naming,
     claim_variables: &'a ClaimVariables,
+    goal: Option<&'a Goal>,
     terms: Terms,
     ground: FxHashMap<TermId, TermIndex>,
     variables: FxHashMap<Name, Sort>,
@@ -51,6 +53,7 @@ impl<'a> Writer<'a> {
             engine,
             naming,
             claim_variables,
+            goal: None,
             terms: Terms::default(),
             ground: FxHashMap::default(),
             variables: FxHashMap::default(),
@@ -59,6 +62,12 @@ impl<'a> Writer<'a> {
             rules: BTreeSet::new(),
             lemmas: Vec::new(),
         }
+    }
+
+    /// Names of the engine that the theory does not have are read as what they stand for.
+    pub(super) fn aimed(mut self, goal: Option<&'a Goal>) -> Self {
+        self.goal = goal;
+        self
     }
 
     /// The proof that two ground terms are equal, which have been rewritten to the same term.
@@ -264,13 +273,20 @@ impl<'a> Writer<'a> {
         Ok(())
     }
 
+    /// The steps of a chain. One that changes nothing once names are read as what they stand for
+    /// is left out.
     fn steps(&mut self, chain: &Chain, reading: &Reading) -> Vec<Step> {
         let mut memo = FxHashMap::default();
-        chain
-            .links
-            .iter()
-            .map(|link| self.step(link, reading, &mut memo))
-            .collect()
+        let mut steps = Vec::new();
+        let mut whole = self.term(chain.from, reading, &mut memo);
+        for link in &chain.links {
+            let to = self.term(link.to, reading, &mut memo);
+            if to != whole {
+                steps.push(self.step(link, reading, &mut memo));
+                whole = to;
+            }
+        }
+        steps
     }
 
     fn step(
@@ -308,8 +324,10 @@ impl<'a> Writer<'a> {
                 with.push((name, self.term(value, reading, memo)));
             }
         }
-        if let Cited::Ground(..) = link.by {
-            with = self.identity(left, right);
+        match link.by {
+            Cited::Ground(..) => with = self.identity(left, right),
+            Cited::Rule(_) => with.extend(self.identity(left, right)),
+            Cited::Law(_) => {}
         }
         Step {
             by: self.citation(link.by),
@@ -325,9 +343,9 @@ impl<'a> Writer<'a> {
         }
     }
 
-    /// A lemma about the question's own terms is used with its variables as they are.
+    /// What a lemma says about the question's own terms is used with its variables as they are.
     fn identity(&mut self, left: TermId, right: TermId) -> Vec<(Name, TermIndex)> {
-        if self.claim_variables.is_empty() {
+        if self.claim_variables.is_empty() && self.goal.is_none() {
             return Vec::new();
         }
         let mut seen = FxHashSet::default();
@@ -339,8 +357,12 @@ impl<'a> Writer<'a> {
             }
             let bank = &self.engine.system.bank;
             stack.extend(bank.arguments(term));
-            let symbol = bank.as_symbol(term);
-            if symbol.is_some_and(|s| self.engine.system.question_rank(s).is_some()) {
+            let Some(symbol) = bank.as_symbol(term) else {
+                continue;
+            };
+            stack.extend(self.stands_for(symbol));
+            let asked = self.engine.system.question_rank(symbol).is_some();
+            if asked || self.goal.is_some_and(|g| g.variables.contains_key(&symbol)) {
                 let variable = self.ground_term(term);
                 if let proof::Node::Variable(name) = self.terms.node(variable) {
                     with.push((name, variable));
@@ -348,6 +370,11 @@ impl<'a> Writer<'a> {
             }
         }
         with
+    }
+
+    /// What a name stands for, if the symbol is one.
+    fn stands_for(&self, symbol: Symbol) -> Option<TermId> {
+        self.goal?.named.get(&symbol).copied()
     }
 
     fn citation(&mut self, by: Cited) -> Name {
@@ -414,16 +441,25 @@ impl<'a> Writer<'a> {
                 continue;
             }
             let bank = &self.engine.system.bank;
+            let head = bank.head(top);
+            let named = match head {
+                Head::Symbol(symbol) => self.stands_for(symbol),
+                Head::Variable(_) => None,
+            };
+            let needed = match &named {
+                Some(term) => std::slice::from_ref(term),
+                None => bank.arguments(top),
+            };
             let before = stack.len();
-            stack.extend(bank.arguments(top).iter().filter(|a| known(a).is_none()));
+            stack.extend(needed.iter().filter(|a| known(a).is_none()));
             if stack.len() > before {
                 continue;
             }
             arguments.clear();
-            arguments.extend(bank.arguments(top).iter().filter_map(known));
-            let head = bank.head(top);
+            arguments.extend(needed.iter().filter_map(known));
             let made = match head {
                 Head::Variable(variable) => self.variable(variable, reading),
+                Head::Symbol(_) if named.is_some() => arguments[0],
                 Head::Symbol(symbol) => self.application(symbol, &arguments),
             };
             if ground {
@@ -441,6 +477,10 @@ impl<'a> Writer<'a> {
     }
 
     fn application(&mut self, symbol: Symbol, arguments: &[TermIndex]) -> TermIndex {
+        if let Some((name, sort)) = self.goal.and_then(|g| g.variables.get(&symbol)).cloned() {
+            let name = self.variable_name(&name, sort);
+            return self.terms.variable_named(name);
+        }
         match self.engine.system.question_rank(symbol) {
             Some(rank) => {
                 let name = self.claim_variables.get(&rank).cloned();

@@ -18,6 +18,8 @@ pub(super) struct Naming {
     pub(super) laws: Vec<String>,
     /// The laws that define a symbol are listed with the laws all the same: they are the theory's.
     pub(super) typed: bool,
+    /// Names that variables of rules must not have.
+    pub(super) reserved: Vec<String>,
     /// For each symbol the sorts of its arguments and, last, its result.
     pub(super) types: Vec<Vec<Sort>>,
 }
@@ -28,7 +30,7 @@ impl Naming {
         let declared = self
             .variables
             .iter()
-            .filter(|(_, sort)| *sort == variable.sort);
+            .filter(|(name, sort)| *sort == variable.sort && !self.reserved.contains(name));
         if let Some((name, _)) = declared.clone().nth(variable.index as usize) {
             return name.clone();
         }
@@ -80,6 +82,7 @@ pub(super) fn naming(theory: &Theory) -> Naming {
         sorts: signature.sorts().to_vec(),
         laws: theory.laws.iter().map(|law| law.name.clone()).collect(),
         typed: signature.has_sorts(),
+        reserved: Vec::new(),
         types: types.collect(),
     }
 }

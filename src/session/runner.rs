@@ -1,16 +1,18 @@
 //! A theory in an engine.
 
 use super::evidence::{ClaimVariables, Writer};
+use super::goal::Goal;
 use super::naming::{Naming, naming};
 use super::shorten::shorten;
-use crate::engine::{Engine, Question};
-use crate::order::{Order, OrderProblem, OrderSetting};
+use super::workers::{NoOrder, Plan};
+use crate::engine::{Engine, Question, Strategy};
+use crate::order::{Candidate, Order, OrderSetting};
 use crate::proof;
 use crate::rewrite::{Limits, RuleId, Stopped};
-use crate::term::{Copier, Head, Sort, TermId, Variable, fold};
+use crate::term::{Copier, Head, Sort, SymbolInfo, TermId, Variable, fold};
 use crate::theory::Theory;
 use rustc_hash::FxHashMap;
-use std::rc::Rc;
+use std::sync::Arc;
 
 /// A question in an engine: ground terms, in which constants stand for the variables.
 #[derive(Clone, Debug)]
@@ -50,6 +52,13 @@ const MOST_PROVED: usize = 1_000;
 pub(super) struct Runner {
     pub(super) engine: Engine,
     pub(super) setting: OrderSetting,
+    pub(super) strategy: Strategy,
+    /// May it answer from its rules, and complete? Others look for proofs only.
+    pub(super) own: bool,
+    /// The question that it is aimed at, if it is.
+    pub(super) goal: Option<Goal>,
+    /// How many slices it had.
+    pub(super) rounds: u32,
     /// Why this order is tried.
     pub(super) why: &'static str,
     pub(super) naming: Naming,
@@ -57,7 +66,7 @@ pub(super) struct Runner {
     copier: Copier,
     symbols: usize,
     /// The last question, as sides in the theory's bank, since the last time of catching up.
-    asked: Option<((TermId, TermId), Rc<Asked>)>,
+    asked: Option<((TermId, TermId), Arc<Asked>)>,
     /// The laws that the engine has, as sides in the theory's bank.
     laws: Vec<(String, TermId, TermId)>,
 }
@@ -67,16 +76,43 @@ impl Runner {
         theory: &Theory,
         setting: OrderSetting,
         why: &'static str,
-    ) -> Result<Self, OrderProblem> {
-        let symbols = theory.bank.symbols();
-        let order = Order::new(&setting, symbols)?;
+    ) -> Result<Self, NoOrder> {
+        let plan = Plan {
+            candidate: Candidate { setting, why },
+            strategy: Strategy::default(),
+            own: true,
+            aimed: false,
+        };
+        Runner::planned(theory, plan)
+    }
+
+    /// The engine of a plan.
+    pub(super) fn planned(theory: &Theory, plan: Plan) -> Result<Self, NoOrder> {
+        let setting = plan.candidate.setting.clone();
+        Runner::over(theory, theory.bank.symbols(), setting, plan)
+    }
+
+    /// The engine of a plan over the symbols of the theory and some more, with this order.
+    pub(super) fn over(
+        theory: &Theory,
+        symbols: &[SymbolInfo],
+        setting: OrderSetting,
+        plan: Plan,
+    ) -> Result<Self, NoOrder> {
+        let order = Order::new(&setting, symbols).map_err(NoOrder::Stated)?;
+        let mut engine = Engine::new(order, symbols);
+        engine.set_strategy(plan.strategy.clone());
         let mut runner = Runner {
-            engine: Engine::new(order, symbols),
-            setting,
-            why,
+            engine,
+            setting: plan.candidate.setting,
+            strategy: plan.strategy,
+            own: plan.own,
+            goal: None,
+            rounds: 0,
+            why: plan.candidate.why,
             naming: naming(theory),
             copier: Copier::default(),
-            symbols: symbols.len(),
+            symbols: theory.bank.symbols().len(),
             asked: None,
             laws: Vec::new(),
         };
@@ -130,17 +166,27 @@ impl Runner {
 
     /// A question in the engine. The constants for its variables are in the order of the alphabet,
     /// the earlier the smaller.
-    pub(super) fn ask(&mut self, theory: &Theory, left: TermId, right: TermId) -> Rc<Asked> {
+    pub(super) fn ask(&mut self, theory: &Theory, left: TermId, right: TermId) -> Arc<Asked> {
         let sides = (left, right);
         if let Some((_, asked)) = self.asked.as_ref().filter(|(known, _)| *known == sides) {
             return asked.clone();
         }
-        let asked = Rc::new(self.ask_anew(theory, left, right));
+        let asked = Arc::new(self.ask_anew(theory, left, right));
         self.asked = Some((sides, asked.clone()));
         asked
     }
 
     fn ask_anew(&mut self, theory: &Theory, left: TermId, right: TermId) -> Asked {
+        if let Some(goal) = self.goal.as_ref().filter(|g| g.question == (left, right)) {
+            return Asked {
+                question: Question {
+                    left: goal.sides[0],
+                    right: goal.sides[1],
+                    constants: Vec::new(),
+                },
+                variables: ClaimVariables::default(),
+            };
+        }
         let mut variables = theory.bank.variables(left);
         variables.extend(theory.bank.variables(right));
         let name = |v: &Variable| theory.signature.variables()[v.index as usize].name.as_str();
@@ -202,10 +248,12 @@ impl Runner {
         let normal = normal.and_then(|s| Ok([s, system.normal_form(right, limits)?]));
         let compared = normal.map(|normal| match normal {
             [s, t] if s == t => {
+                let goal = self.goal.as_ref();
                 let writer = Writer::new(&mut self.engine, &self.naming, variables);
                 Compared::Same {
                     known,
                     proof: writer
+                        .aimed(goal)
                         .proof(left, right)
                         .map(|proof| Box::new(shorten(proof))),
                 }

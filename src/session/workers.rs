@@ -5,13 +5,14 @@
 //! questions are settled by an order that never completes, so all engines take part in a search.
 
 use super::control::Work;
+use super::plans;
+use super::race::{Course, race};
 use super::runner::Runner;
-use crate::engine::Outcome;
+use crate::engine::Strategy;
 use crate::order::{Candidate, OrderSetting, candidates};
 use crate::rewrite::Stopped;
 use crate::term::TermId;
 use crate::theory::{Law, LawKind, Theory};
-use std::time::Duration;
 
 /// How a search by all engines ended.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -56,22 +57,29 @@ pub enum Obstacle {
     With(Vec<String>),
 }
 
-/// The length of the first slice; each round's slices are twice as long.
-const FIRST_SLICE: Duration = Duration::from_millis(40);
+/// An engine that may be worth having.
+pub(super) struct Plan {
+    pub(super) candidate: Candidate,
+    pub(super) strategy: Strategy,
+    /// May it answer from its rules, and complete? Others look for proofs only.
+    pub(super) own: bool,
+    /// Is it aimed at the question?
+    pub(super) aimed: bool,
+}
 
 #[derive(Default)]
 pub(super) struct Workers {
-    runners: Vec<Runner>,
-    /// Orders that have no engine yet.
-    planned: Vec<Candidate>,
+    pub(super) runners: Vec<Runner>,
+    /// Those that have no engine yet, the next one last.
+    pub(super) planned: Vec<Plan>,
     /// The engine that answers from its rules.
     best: usize,
-    /// How many orders have been tried, those that were let go included.
-    tried: usize,
-    /// How long the next slices are.
-    slice: Option<Duration>,
+    /// How many engines have been tried, those that were let go included.
+    pub(super) tried: usize,
+    /// The question for which helpers were planned.
+    aimed_at: Option<(TermId, TermId)>,
     /// Did one complete?
-    settled: bool,
+    pub(super) settled: bool,
     /// Which ids the terms of the theory had when the engines took them in.
     lineage: u32,
     /// The order that the theory states.
@@ -93,6 +101,11 @@ impl Workers {
                 lineage,
                 ..Workers::default()
             };
+        }
+        if self.runners.iter().any(|runner| !runner.is_current(theory)) {
+            self.runners.retain(|runner| runner.goal.is_none());
+            self.aimed_at = None;
+            self.best = 0;
         }
         let laws = self
             .runners
@@ -123,10 +136,10 @@ impl Workers {
     fn plan_again(&mut self, theory: &Theory) -> Result<(), NoOrder> {
         self.settled = false;
         let mut fresh = Workers::plan(theory)?;
-        fresh.retain(|c| {
-            self.runners
-                .iter()
-                .all(|runner| runner.setting != c.setting)
+        fresh.retain(|plan| {
+            self.runners.iter().all(|runner| {
+                runner.setting != plan.candidate.setting || runner.strategy != plan.strategy
+            })
         });
         self.planned = fresh;
         Ok(())
@@ -138,18 +151,21 @@ impl Workers {
             stated: theory.order.clone(),
             ..Workers::default()
         };
-        workers.start_next(theory)?;
+        if let Some(plan) = workers.planned.pop() {
+            workers.runners.push(Runner::planned(theory, plan)?);
+            workers.tried = 1;
+        }
         Ok(workers)
     }
 
-    /// The orders to try, the first one last.
-    fn plan(theory: &Theory) -> Result<Vec<Candidate>, NoOrder> {
+    /// The engines to try, the first one last.
+    fn plan(theory: &Theory) -> Result<Vec<Plan>, NoOrder> {
         let sides = |kind: fn(LawKind) -> bool| -> Vec<(TermId, TermId)> {
             let laws = theory.laws.iter().filter(|law| kind(law.kind));
             laws.map(|law| (law.left, law.right)).collect()
         };
         let directed = sides(|kind| kind == LawKind::Rule);
-        let mut planned = match &theory.order {
+        let planned = match &theory.order {
             Some(setting) => {
                 check_directed(theory, setting)?;
                 vec![Candidate {
@@ -165,6 +181,13 @@ impl Workers {
         if planned.is_empty() {
             return Err(obstacle(theory));
         }
+        let own = planned.into_iter().map(|candidate| Plan {
+            candidate,
+            strategy: Strategy::default(),
+            own: true,
+            aimed: false,
+        });
+        let mut planned: Vec<Plan> = own.collect();
         planned.reverse();
         Ok(planned)
     }
@@ -183,16 +206,6 @@ impl Workers {
             tried: 1,
             ..Workers::default()
         }
-    }
-
-    fn start_next(&mut self, theory: &Theory) -> Result<bool, NoOrder> {
-        let Some(candidate) = self.planned.pop() else {
-            return Ok(false);
-        };
-        let runner = Runner::new(theory, candidate.setting, candidate.why);
-        self.runners.push(runner.map_err(NoOrder::Stated)?);
-        self.tried += 1;
-        Ok(true)
     }
 
     /// Have the terms of the theory the ids that they had for the engines?
@@ -225,70 +238,64 @@ impl Workers {
             .sum()
     }
 
-    /// Runs the engines in turn until one completes, the question is met, or the work is over.
+    /// Runs the engines, by turns of slices that become longer, until one completes, the question
+    /// is met, or the work is over: for a question on all cores, else on one, so that which order
+    /// is kept does not depend on the machine.
     pub(super) fn run(
         &mut self,
         theory: &Theory,
         question: Option<(TermId, TermId)>,
         work: &mut Work,
     ) -> Result<Ended, NoOrder> {
-        let mut slice = self.slice.unwrap_or(FIRST_SLICE);
-        loop {
-            let mut exhausted = true;
-            let mut place = 0;
-            loop {
-                if place == self.runners.len() && (self.settled || !self.start_next(theory)?) {
-                    break;
-                }
-                match self.run_one(theory, place, question, slice, work) {
-                    Outcome::Complete => {
-                        self.settle(place);
-                        return Ok(Ended::Complete(self.best));
-                    }
-                    Outcome::Met => return Ok(Ended::Met(place)),
-                    Outcome::Exhausted => {}
-                    Outcome::Stopped(stopped) => {
-                        exhausted &= stopped == Stopped::Memory;
-                        if work.is_over() {
-                            self.slice = Some(slice);
-                            self.choose();
-                            let stopped = if work.is_stopped() {
-                                Stopped::Interrupted
-                            } else {
-                                Stopped::Time
-                            };
-                            return Ok(Ended::Stopped(stopped));
-                        }
-                    }
-                }
-                place += 1;
+        self.aim_at(theory, question, !work.pauses());
+        let course = Course::new(self, theory, question);
+        let (ended, course) = race(course, theory, work);
+        course.give_back(self);
+        match ended? {
+            Ended::Complete(place) if self.runners[place].own => {
+                self.settle(place);
+                Ok(Ended::Complete(0))
             }
-            if exhausted {
+            ended => {
                 self.choose();
-                return Ok(Ended::Exhausted);
+                Ok(ended)
             }
-            slice *= 2;
         }
     }
 
-    fn run_one(
-        &mut self,
-        theory: &Theory,
-        place: usize,
-        question: Option<(TermId, TermId)>,
-        slice: Duration,
-        work: &mut Work,
-    ) -> Outcome {
-        let alone = self.runners.len() == 1 && (self.settled || self.planned.is_empty());
-        let mut limits = work.limits((!alone).then_some(slice));
-        let all = self.formed();
-        let runner = &mut self.runners[place];
-        let asked = question.map(|(s, t)| runner.ask(theory, s, t));
-        let others = all - runner.engine.counts().formed;
-        let question = asked.as_ref().map(|asked| &asked.question);
-        runner
-            .engine
-            .run(&mut limits, question, |engine| work.tell(engine, others))
+    /// Lets go the engines that are aimed at another question, and plans those for this one if
+    /// they are wanted.
+    fn aim_at(&mut self, theory: &Theory, question: Option<(TermId, TermId)>, wanted: bool) {
+        let fits = |runner: &Runner| {
+            let goal = runner.goal.as_ref();
+            goal.is_none_or(|goal| question.is_none_or(|question| goal.question == question))
+        };
+        let before = self.runners[..self.best.min(self.runners.len())].iter();
+        self.best -= before.filter(|runner| !fits(runner)).count();
+        self.runners.retain(fits);
+        if question.is_none() || question == self.aimed_at || !wanted || self.settled {
+            return;
+        }
+        self.aimed_at = question;
+        self.planned.retain(|plan| plan.own);
+        let known = |plan: &Plan| {
+            self.runners.iter().any(|runner| {
+                let same = runner.setting == plan.candidate.setting;
+                !plan.aimed && same && runner.strategy == plan.strategy
+            })
+        };
+        let mut helpers = plans::helpers(theory);
+        helpers.retain(|plan| !known(plan));
+        // The next one is the last one: helpers and own orders by turns.
+        let mut own = std::mem::take(&mut self.planned).into_iter().rev();
+        let mut next = Vec::new();
+        for helper in helpers {
+            next.push(helper);
+            next.extend(own.next());
+        }
+        next.extend(own);
+        next.reverse();
+        self.planned = next;
     }
 
     /// Keeps the engine that completed and lets the others go.
@@ -298,14 +305,14 @@ impl Workers {
         self.planned.clear();
         self.best = 0;
         self.settled = true;
-        self.slice = None;
     }
 
     /// The most promising engine is the one with the fewest rules: under an order that suits the
     /// laws, rules make each other redundant.
     fn choose(&mut self) {
         let rules = |place: &usize| self.runners[*place].engine.system.active();
-        self.best = (0..self.runners.len()).min_by_key(rules).unwrap_or(0);
+        let own = (0..self.runners.len()).filter(|place| self.runners[*place].own);
+        self.best = own.min_by_key(rules).unwrap_or(0);
     }
 }
 

@@ -1,0 +1,68 @@
+//! Which engines are worth having for a question, beside the one that answers from its rules.
+
+use super::workers::Plan;
+use crate::engine::Strategy;
+use crate::order::{Candidate, candidates};
+use crate::theory::Theory;
+
+/// An engine for questions: which of the orders that are worth trying, and how pairs are chosen.
+struct Helper {
+    order: usize,
+    larger: u32,
+    smaller: u32,
+    variable: u32,
+    foreign: u32,
+    connected: bool,
+    aimed: bool,
+}
+
+const fn aimed(order: usize, [larger, smaller, variable, foreign]: [u32; 4]) -> Helper {
+    Helper {
+        order,
+        larger,
+        smaller,
+        variable,
+        foreign,
+        connected: true,
+        aimed: true,
+    }
+}
+
+const fn open(order: usize, weights: [u32; 4]) -> Helper {
+    Helper {
+        aimed: false,
+        ..aimed(order, weights)
+    }
+}
+
+/// In the order in which they are tried.
+const HELPERS: [Helper; 6] = [
+    aimed(0, [2, 1, 2, 2]),
+    aimed(0, [4, 1, 1, 1]),
+    aimed(1, [2, 1, 2, 2]),
+    open(0, [1, 1, 1, 1]),
+    aimed(2, [2, 1, 2, 2]),
+    aimed(3, [4, 1, 1, 1]),
+];
+
+/// The helpers for a theory, the first one first.
+pub(super) fn helpers(theory: &Theory) -> Vec<Plan> {
+    let laws: Vec<_> = theory.laws.iter().map(|l| (l.left, l.right)).collect();
+    let orders: Vec<Candidate> = candidates(&theory.bank, &laws, &[]);
+    let plan = |helper: &Helper| {
+        Some(Plan {
+            candidate: orders.get(helper.order)?.clone(),
+            strategy: Strategy {
+                larger: helper.larger,
+                smaller: helper.smaller,
+                variable: helper.variable,
+                foreign: helper.foreign,
+                connected: helper.connected,
+                ..Strategy::default()
+            },
+            own: false,
+            aimed: helper.aimed,
+        })
+    };
+    HELPERS.iter().filter_map(plan).collect()
+}
