@@ -16,6 +16,7 @@ mod evidence;
 mod file;
 mod library;
 mod naming;
+mod patterns;
 mod runner;
 mod sheet;
 mod shorten;
