@@ -24,13 +24,14 @@ mod check_order;
 mod check_rewrite;
 mod evidence;
 mod json;
+mod measure;
 mod signature;
 mod terms;
 mod values;
 mod work;
 mod write;
 
-pub use check::{check, check_json, check_until, read_json};
+pub use check::{check, check_as_written, check_json, check_until, read_json};
 pub use evidence::{
     AlgebraClaim, AlgebraEvidence, Claim, CompleteClaim, CompleteSet, Condition, Equation,
     Evidence, Lemma, OrderKind, Proof, Rule, StatedOrder, Step, Table, Types, Way,

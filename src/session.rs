@@ -17,6 +17,7 @@ mod file;
 mod goal;
 mod library;
 mod naming;
+mod patterns;
 mod plans;
 mod race;
 mod runner;

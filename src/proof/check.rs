@@ -5,15 +5,13 @@ use super::check_chain::check_proof;
 use super::check_complete::check_complete;
 use super::evidence::Evidence;
 use super::json::from_json;
+use super::measure;
 use super::work::{Outcome, Work, WorkLimit};
 use std::sync::Arc;
 use std::sync::atomic::AtomicBool;
 
 /// What copying a term costs, in memory above all.
 const UNITS_PER_TERM: u64 = 15;
-
-/// What reading a JSON value costs, in memory above all.
-const UNITS_PER_VALUE: u64 = 12;
 
 /// Judges evidence. Does not judge whether its laws, sorts and claim are those that somebody asked
 /// about: compare [`Evidence::laws`], [`Evidence::types`] and [`Evidence::claim`] with the theory
@@ -26,6 +24,15 @@ pub fn check(evidence: &Evidence, limit: WorkLimit) -> Outcome {
 /// neither accepted nor rejected.
 pub fn check_until(evidence: &Evidence, limit: WorkLimit, stop: Arc<AtomicBool>) -> Outcome {
     judge(evidence, &mut Work::until(limit, stop))
+}
+
+/// As [`check_until`], after charging for the evidence as if it were read from its JSON form. What
+/// is accepted here, [`read_json`] and [`check`] accept from the file within the same limit.
+pub fn check_as_written(evidence: &Evidence, limit: WorkLimit, stop: Arc<AtomicBool>) -> Outcome {
+    match limit.0.checked_sub(measure::of_evidence(evidence)) {
+        Some(left) => check_until(evidence, WorkLimit(left), stop),
+        None => Outcome::TooCostly,
+    }
 }
 
 fn judge(evidence: &Evidence, work: &mut Work) -> Outcome {
@@ -47,9 +54,7 @@ fn judge(evidence: &Evidence, work: &mut Work) -> Outcome {
 ///
 /// [`Outcome::TooCostly`], or a rejection if it is not JSON of the form of any evidence.
 pub fn read_json(json: &[u8], limit: WorkLimit) -> Result<(Evidence, WorkLimit), Outcome> {
-    let opens = |byte: &&u8| matches!(byte, b'[' | b'{' | b',' | b':');
-    let values = json.iter().filter(opens).count() as u64;
-    let cost = (json.len() as u64).saturating_add(values.saturating_mul(UNITS_PER_VALUE));
+    let cost = measure::of_bytes(json);
     let left = limit.0.checked_sub(cost).ok_or(Outcome::TooCostly)?;
     Ok((from_json(json)?, WorkLimit(left)))
 }

@@ -4,6 +4,7 @@ mod chains;
 mod completeness;
 mod hostile;
 mod made;
+mod measure;
 mod mutations;
 mod orders;
 mod soundness;

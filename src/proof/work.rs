@@ -9,9 +9,14 @@ use std::sync::atomic::{AtomicBool, Ordering};
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub struct WorkLimit(pub u64);
 
+impl WorkLimit {
+    /// What a check may do where nothing else is said.
+    pub const DEFAULT: WorkLimit = WorkLimit(200_000_000);
+}
+
 impl Default for WorkLimit {
     fn default() -> Self {
-        WorkLimit(200_000_000)
+        WorkLimit::DEFAULT
     }
 }
 

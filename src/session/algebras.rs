@@ -188,33 +188,23 @@ impl Hunt {
             return self.caught(Some(found), false);
         }
         self.pool_done = true;
-        let mut slice = FIRST_SLICE;
-        loop {
-            let mut part = match self.sat {
-                Some(_) => shorter(limits, slice),
-                None => limits.clone(),
-            };
-            match self.search.run(&mut part) {
-                Outcome::Found(found) => return self.caught(Some(found), false),
-                Outcome::Exhausted => return self.caught(None, true),
-                Outcome::Stopped(_) => {}
-            }
-            if is_over(limits) {
-                return self.caught(None, false);
-            }
-            if let Some(sat) = &mut self.sat {
+        let Hunt { search, sat, .. } = &mut self;
+        let direct = |slice: Option<Duration>| {
+            let mut part = slice.map_or_else(|| limits.clone(), |slice| shorter(limits, slice));
+            Turn::of(search.run(&mut part), true)
+        };
+        let by_sat = sat.as_mut().map(|sat| {
+            |slice| {
                 let mut part = shorter(limits, slice);
                 part.bytes /= 2;
-                match sat.run(&mut part) {
-                    Outcome::Found(found) => return self.caught(Some(found), false),
-                    Outcome::Exhausted if sat.given_up().is_empty() => {
-                        return self.caught(None, true);
-                    }
-                    Outcome::Exhausted => self.sat = None,
-                    Outcome::Stopped(_) => {}
-                }
+                let outcome = sat.run(&mut part);
+                Turn::of(outcome, sat.given_up().is_empty())
             }
-            slice = slice.saturating_mul(2);
+        });
+        match take_turns(direct, by_sat, || is_over(limits)) {
+            Turn::Found(found) => self.caught(Some(found), false),
+            Turn::Exhausted => self.caught(None, true),
+            Turn::GivenUp | Turn::Stopped => self.caught(None, false),
         }
     }
 
@@ -234,6 +224,52 @@ impl Hunt {
             ruled_out,
             given_up,
         }
+    }
+}
+
+/// How one turn of a search ended.
+#[derive(Clone, Debug, PartialEq, Eq)]
+enum Turn<T> {
+    Found(T),
+    /// There is no such algebra of the sizes that were asked for.
+    Exhausted,
+    /// What is left needs too much memory.
+    GivenUp,
+    /// The turn, or the time as a whole, is over.
+    Stopped,
+}
+
+impl Turn<Box<Counterexample>> {
+    fn of(outcome: Outcome, is_thorough: bool) -> Self {
+        match outcome {
+            Outcome::Found(found) => Turn::Found(found),
+            Outcome::Exhausted if is_thorough => Turn::Exhausted,
+            Outcome::Exhausted => Turn::GivenUp,
+            Outcome::Stopped(_) => Turn::Stopped,
+        }
+    }
+}
+
+/// Lets two searches take turns, each twice as long as the one before, until one of them has
+/// settled the matter or all is over. A search without another one has a turn without end, and so
+/// has the first when the other has given up.
+fn take_turns<T>(
+    mut first: impl FnMut(Option<Duration>) -> Turn<T>,
+    mut second: Option<impl FnMut(Duration) -> Turn<T>>,
+    is_over: impl Fn() -> bool,
+) -> Turn<T> {
+    let mut slice = FIRST_SLICE;
+    loop {
+        match first(second.is_some().then_some(slice)) {
+            Turn::Stopped if !is_over() => {}
+            settled => return settled,
+        }
+        match second.as_mut().map(|second| second(slice)) {
+            Some(Turn::GivenUp) => second = None,
+            None | Some(Turn::Stopped) => {}
+            Some(settled) => return settled,
+        }
+        slice = slice.saturating_mul(2);
     }
 }
 
@@ -360,4 +396,66 @@ fn types(theory: &Theory, naming: &Naming, terms: &mut Terms) -> Option<proof::T
         operators,
         variables,
     })
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use std::cell::RefCell;
+
+    /// Plays two searches by what each of their turns comes to; says how it ended and who had
+    /// which turn, in units of the first one.
+    fn play(
+        first: &[Turn<u32>],
+        second: Option<&[Turn<u32>]>,
+        over_after: usize,
+    ) -> (Turn<u32>, Vec<(char, Option<u128>)>) {
+        let turns = RefCell::new(Vec::new());
+        let (mut first, second) = (first.iter(), second.map(<[_]>::iter));
+        let unit = FIRST_SLICE.as_millis();
+        let direct = |slice: Option<Duration>| {
+            let slice = slice.map(|slice| slice.as_millis() / unit);
+            turns.borrow_mut().push(('d', slice));
+            first.next().cloned().expect("no more turns than planned")
+        };
+        let other = second.map(|mut second| {
+            let turns = &turns;
+            move |slice: Duration| {
+                turns
+                    .borrow_mut()
+                    .push(('s', Some(slice.as_millis() / unit)));
+                second.next().cloned().expect("no more turns than planned")
+            }
+        });
+        let ended = take_turns(direct, other, || turns.borrow().len() >= over_after);
+        (ended, turns.into_inner())
+    }
+
+    #[test]
+    fn two_searches_take_turns_of_growing_length() {
+        use Turn::{Exhausted, Found, GivenUp, Stopped};
+        let stopped = vec![Stopped; 9];
+        let turn = |who, length| (who, Some(length));
+        // The other search finds it in its third turn.
+        let second = [Stopped, Stopped, Found(7)];
+        let (ended, turns) = play(&stopped, Some(&second), usize::MAX);
+        assert_eq!(ended, Found(7));
+        let both = [1, 2, 4].map(|length| [turn('d', length), turn('s', length)]);
+        assert_eq!(turns, both.concat());
+        // The direct search, in its second.
+        let (ended, turns) = play(&[Stopped, Found(5)], Some(&stopped), usize::MAX);
+        assert_eq!(ended, Found(5));
+        assert_eq!(turns, [turn('d', 1), turn('s', 1), turn('d', 2)]);
+        // When the other search gives up, the direct one has the time to itself.
+        let (ended, turns) = play(&[Stopped, Exhausted], Some(&[GivenUp]), usize::MAX);
+        assert_eq!(ended, Exhausted);
+        assert_eq!(turns, [turn('d', 1), turn('s', 1), ('d', None)]);
+        // Alone it has it from the beginning.
+        let (ended, turns) = play(&[Exhausted], None, usize::MAX);
+        assert_eq!((ended, turns), (Exhausted, vec![('d', None)]));
+        // Nobody begins another turn when all is over.
+        let (ended, turns) = play(&stopped, Some(&stopped), 3);
+        assert_eq!(ended, Stopped);
+        assert_eq!(turns.len(), 3);
+    }
 }

@@ -17,6 +17,8 @@ pub(super) enum Cited {
     Rule(RuleId),
     /// That a ground term equals its normal form, as a lemma.
     Ground(TermId, TermId),
+    /// An equation with variables numbered from 0, as a lemma.
+    Pattern(TermId, TermId),
 }
 
 /// One step: the subterm `before` at a place becomes `after`, and the whole becomes `to`.
@@ -184,7 +186,13 @@ pub(super) fn of_rule(engine: &mut Engine, rule: RuleId) -> Result<Chain, Replay
     })
 }
 
-fn push_use(chain: &mut Chain, engine: &mut Engine, by: Use, at: Vec<u32>, after: TermId) {
+pub(super) fn push_use(
+    chain: &mut Chain,
+    engine: &mut Engine,
+    by: Use,
+    at: Vec<u32>,
+    after: TermId,
+) {
     let (cite, flipped) = cited(engine, by.rule);
     chain.push(engine, cite, by.backward == flipped, at, after);
 }
@@ -232,7 +240,7 @@ pub(super) fn of_table(
     Some(chain.without_detours())
 }
 
-fn rewritten(engine: &mut Engine, term: TermId, by: Use) -> Option<TermId> {
+pub(super) fn rewritten(engine: &mut Engine, term: TermId, by: Use) -> Option<TermId> {
     let (from, to) = engine.system.rule(by.rule).sides(by.backward);
     let mut substitution = Substitution::default();
     match_term(&engine.system.bank, from, term, &mut substitution)

@@ -3,6 +3,7 @@
 use super::derivation::{Chain, Cited, Link, of_ground_lemma, of_rule, of_table};
 use super::goal::Goal;
 use super::naming::Naming;
+use super::patterns::{Outline, outline};
 use crate::engine::{Engine, ReplayError};
 use crate::order::OrderKind;
 use crate::proof;
@@ -15,6 +16,10 @@ use std::collections::BTreeSet;
 
 /// How many numbers a chain of single steps may take before it is written with lemmas.
 const FLAT: usize = 20_000;
+
+/// Where no more steps lead to the normal form, those of equal subterms counted once, patterns do
+/// not pay.
+const FEW: usize = 1_000;
 
 /// The variables of a question: the constants that stand for them, and their names.
 pub(super) type ClaimVariables = FxHashMap<(u32, Sort), String>;
@@ -41,6 +46,8 @@ pub(super) struct Writer<'a> {
     /// Rules that are cited and have to be proved.
     rules: BTreeSet<RuleId>,
     lemmas: Vec<Lemma>,
+    /// What the lemmas prove that are not rules: both sides of a question may need the same.
+    written: FxHashSet<Cited>,
 }
 
 impl<'a> Writer<'a> {
@@ -61,6 +68,7 @@ impl<'a> Writer<'a> {
             laws: BTreeSet::new(),
             rules: BTreeSet::new(),
             lemmas: Vec::new(),
+            written: FxHashSet::default(),
         }
     }
 
@@ -74,8 +82,10 @@ impl<'a> Writer<'a> {
     /// Nothing if it is too long to be written down.
     pub(super) fn proof(mut self, left: TermId, right: TermId) -> Option<proof::Proof> {
         let normal = self.engine.system.known_normal_form(left)?;
+        // Before the mark: what patterns need goes into the table, which outlives it.
+        let by_patterns = [left, right].map(|side| self.by_patterns(side, normal));
         let mark = self.engine.system.bank.mark();
-        let chain = self.meeting(left, right, normal);
+        let chain = self.meeting([left, right], normal, by_patterns);
         let steps = chain
             .as_ref()
             .map(|chain| self.steps(chain, &Reading::Theory));
@@ -177,40 +187,60 @@ impl<'a> Writer<'a> {
         })
     }
 
-    fn meeting(&mut self, left: TermId, right: TermId, normal: TermId) -> Option<Chain> {
-        let there = self.chain_to_normal(left, normal)?;
-        let back = self.chain_to_normal(right, normal)?;
+    fn meeting(
+        &mut self,
+        [left, right]: [TermId; 2],
+        normal: TermId,
+        [there, back]: [Option<Outline>; 2],
+    ) -> Option<Chain> {
+        let there = self.chain_to_normal(left, normal, there)?;
+        let back = self.chain_to_normal(right, normal, back)?;
         Some(there.then(back.reversed()).without_detours())
     }
 
-    /// The chain to the normal form, in single steps or, if that is too long, by lemmas about
-    /// subterms.
-    fn chain_to_normal(&mut self, from: TermId, to: TermId) -> Option<Chain> {
+    /// The rewriting to the normal form by patterns, if it is so long that they pay.
+    fn by_patterns(&mut self, from: TermId, to: TermId) -> Option<Outline> {
+        let system = &mut self.engine.system;
+        let steps = system.count_steps(from, to).filter(|steps| *steps > FEW)?;
+        let mark = system.bank.mark();
+        let is_long = system.explain(from, to, FLAT).is_none();
+        system.bank.rollback(mark);
+        is_long
+            .then(|| outline(self.engine, from, to, steps))
+            .flatten()
+    }
+
+    /// The chain to the normal form, in single steps or, if that is too long, by patterns or by
+    /// lemmas about subterms.
+    fn chain_to_normal(
+        &mut self,
+        from: TermId,
+        to: TermId,
+        by_patterns: Option<Outline>,
+    ) -> Option<Chain> {
+        if let Some(outline) = by_patterns {
+            return Some(self.parts(outline));
+        }
         if let Some(chain) = of_table(self.engine, from, to, FLAT) {
             return Some(chain);
         }
-        let known = FxHashSet::default();
-        self.ground_lemmas(from, to, known)
+        self.ground_lemmas(from, to)
     }
 
     /// Proves, as lemmas, that the subterms on the way equal what they were rewritten to; the
     /// chain of the whole term by these.
-    fn ground_lemmas(
-        &mut self,
-        from: TermId,
-        to: TermId,
-        mut known: FxHashSet<(TermId, TermId)>,
-    ) -> Option<Chain> {
+    fn ground_lemmas(&mut self, from: TermId, to: TermId) -> Option<Chain> {
         let mut stack = vec![(from, to)];
         while let Some(&(s, t)) = stack.last() {
-            if known.contains(&(s, t)) {
+            // The whole is no lemma, but may have been one for the other side.
+            if stack.len() > 1 && self.written.contains(&Cited::Ground(s, t)) {
                 stack.pop();
                 continue;
             }
             let (chain, needed) = of_ground_lemma(self.engine, s, t, FLAT)?;
             let open: Vec<_> = needed
                 .into_iter()
-                .filter(|pair| !known.contains(pair))
+                .filter(|(s, t)| !self.written.contains(&Cited::Ground(*s, *t)))
                 .collect();
             if !open.is_empty() {
                 stack.extend(open);
@@ -220,23 +250,48 @@ impl<'a> Writer<'a> {
             if stack.is_empty() {
                 return Some(chain);
             }
-            known.insert((s, t));
             self.ground_lemma(&chain);
         }
         Some(Chain::new(from))
     }
 
     fn ground_lemma(&mut self, chain: &Chain) {
-        let steps = self.steps(chain, &Reading::Theory);
-        let (left, right) = (self.ground_term(chain.from), self.ground_term(chain.end()));
-        let name = self.terms.name(&ground_name(chain.from, chain.end()));
+        self.lemma(
+            Cited::Ground(chain.from, chain.end()),
+            chain,
+            &Reading::Theory,
+        );
+    }
+
+    /// Writes a lemma with its chain.
+    fn lemma(&mut self, proves: Cited, chain: &Chain, reading: &Reading) {
+        if !self.written.insert(proves) {
+            return;
+        }
+        let steps = self.steps(chain, reading);
+        let mut memo = FxHashMap::default();
         let equation = Equation {
-            name,
-            left,
-            right,
+            name: self.citation(proves),
+            left: self.term(chain.from, reading, &mut memo),
+            right: self.term(chain.end(), reading, &mut memo),
             when: Vec::new(),
         };
         self.lemmas.push(Lemma { equation, steps });
+    }
+
+    /// Writes the lemmas of a rewriting by patterns.
+    fn parts(&mut self, outline: Outline) -> Chain {
+        for part in outline.parts {
+            match part.proves {
+                Cited::Pattern(left, _) => {
+                    let mut order = self.engine.system.bank.variables(left);
+                    order.sort_unstable_by_key(|variable| variable.index);
+                    self.lemma(part.proves, &part.chain, &Reading::Rule(&order));
+                }
+                proves => self.lemma(proves, &part.chain, &Reading::Theory),
+            }
+        }
+        outline.chain
     }
 
     /// Proves the cited rules, and those that their proofs cite, in the order of their numbers,
@@ -298,7 +353,7 @@ impl<'a> Writer<'a> {
         let (left, right) = match link.by {
             Cited::Law(law) => self.engine.laws()[law.0 as usize],
             Cited::Rule(rule) => self.engine.system.rule(rule).sides(false),
-            Cited::Ground(from, to) => (from, to),
+            Cited::Ground(from, to) | Cited::Pattern(from, to) => (from, to),
         };
         let (from, to) = if link.forward {
             (link.before, link.after)
@@ -326,7 +381,7 @@ impl<'a> Writer<'a> {
         }
         match link.by {
             Cited::Ground(..) => with = self.identity(left, right),
-            Cited::Rule(_) => with.extend(self.identity(left, right)),
+            Cited::Rule(_) | Cited::Pattern(..) => with.extend(self.identity(left, right)),
             Cited::Law(_) => {}
         }
         Step {
@@ -388,6 +443,7 @@ impl<'a> Writer<'a> {
                 self.terms.name(&rule_name(rule))
             }
             Cited::Ground(from, to) => self.terms.name(&ground_name(from, to)),
+            Cited::Pattern(left, right) => self.terms.name(&pattern_name(left, right)),
         }
     }
 
@@ -565,6 +621,10 @@ impl<'a> Writer<'a> {
 /// How a rule is called.
 pub(super) fn rule_name(rule: RuleId) -> String {
     format!("rule {}", rule.0 + 1)
+}
+
+fn pattern_name(left: TermId, right: TermId) -> String {
+    format!("pattern {}-{}", left.0, right.0)
 }
 
 fn ground_name(from: TermId, to: TermId) -> String {

@@ -196,11 +196,9 @@ fn the_command_in_the_shell() {
     assert_eq!(ran.status, 0, "{}", ran.out);
 }
 
-/// Longer than can be written in single steps, so that lemmas about subterms are needed.
-#[test]
-fn a_long_computation() {
-    let place = Place::new();
-    let names: Vec<String> = (1..=60).map(|n| format!("a{n}")).collect();
+/// Asks for a list of so many constants reversed, and gives its evidence as written, verified.
+fn reversed(place: &Place, elements: usize) -> String {
+    let names: Vec<String> = (1..=elements).map(|n| format!("a{n}")).collect();
     let text = std::fs::read_to_string(theory("list")).expect("the theory");
     place.file(
         "long.theory",
@@ -212,13 +210,6 @@ fn a_long_computation() {
     let arguments = ["ask", "long.theory", &question, "--evidence", "out"];
     let ran = place.run(&arguments);
     assert_eq!(ran.status, 0, "{}{}", ran.out, ran.err);
-    let written = json(&place, "out/long-question.json");
-    assert!(
-        written["lemmas"]
-            .as_array()
-            .is_some_and(|lemmas| lemmas.len() > 100)
-    );
-    by_hand::judge(&written).unwrap();
     let ran = place.run(&[
         "verify",
         "out/long-question.json",
@@ -226,4 +217,46 @@ fn a_long_computation() {
         "long.theory",
     ]);
     assert_eq!(ran.status, 0, "{}", ran.out);
+    by_hand::judge(&json(place, "out/long-question.json")).unwrap();
+    std::fs::read_to_string(place.path("out/long-question.json")).expect("it was written")
+}
+
+/// Longer than can be written in single steps, so that lemmas are needed, and used again: the
+/// number of steps in all grows with the square of the list.
+#[test]
+fn a_long_computation() {
+    let place = Place::new();
+    let short = reversed(&place, 60).len();
+    let long = reversed(&place, 240).len();
+    assert!(short < 100_000, "{short} bytes");
+    // Sixteen times the steps.
+    assert!(
+        long < 8 * short,
+        "{long} bytes, and {short} for a quarter of the elements"
+    );
+}
+
+/// Both sides are long, and need the same lemmas: each is written once.
+#[test]
+fn two_long_computations() {
+    let place = Place::new();
+    place.file(
+        "pairs.theory",
+        "variable x y\nfunction d 1\nfunction f 2\nfunction g 2\n\
+         law double: d(x) = f(x, x)\nlaw turn: f(x, y) = g(y, x)\n",
+    );
+    let doubled = format!("{}x{}", "d(".repeat(60), ")".repeat(60));
+    let question = format!("f({doubled}, x) = g(x, {doubled})");
+    let arguments = ["ask", "pairs.theory", &question, "--evidence", "out"];
+    let ran = place.run(&arguments);
+    assert_eq!(ran.status, 0, "{}{}", ran.out, ran.err);
+    let ran = place.run(&["verify", "out/pairs-question.json"]);
+    assert_eq!(ran.status, 0, "{}", ran.out);
+    // Without sharing there would be 2⁶⁰ subterms.
+    let written = json(&place, "out/pairs-question.json");
+    assert!(
+        written["terms"]
+            .as_array()
+            .is_some_and(|terms| terms.len() < 500)
+    );
 }

@@ -94,7 +94,7 @@ fn render(shell: &Shell, answer: &Answer, short: bool) -> String {
         );
     }
     text += &match (answer.verdict, shell.session.proof_text(answer)) {
-        (_, Some(proof)) if short => show::proof_short(&proof, &answer.question, look),
+        (_, Some(proof)) if short => show::proof_short(&proof, &answer.question, look, breaker),
         (_, Some(proof)) => show::proof(&proof, &answer.question, look, breaker),
         (Verdict::NotEqual, None) => show::answer(answer, &shell.session, look, show::Place::Shell),
         (Verdict::Equal, None) => fold("The proof cannot be shown as text.", look.width, 0),

@@ -1,7 +1,7 @@
 //! Chains of equalities and proofs.
 
 use crate::session::{LemmaText, ProofLine, ProofText};
-use crate::shell::layout::{Breaker, columns, fold, fold_hanging};
+use crate::shell::layout::{Breaker, columns, fold};
 use crate::shell::quantity::count;
 use crate::shell::screen::{Ink, Look};
 use std::ops::Range;
@@ -110,20 +110,17 @@ fn cite(line: &ProofLine) -> String {
 pub fn proof(proof: &ProofText, question: &str, look: Look, breaker: Breaker<'_>) -> String {
     let mut text = String::new();
     for lemma in &proof.lemmas {
-        text += &head(lemma, look);
+        text += &head(lemma, look, breaker);
         text += &chain(&lemma.lines, look, breaker);
         text.push('\n');
     }
-    text += &look.ink(
-        Ink::Strong,
-        fold_hanging(question, look.width, 0, 4).trim_end(),
-    );
+    text += &look.ink(Ink::Strong, &broken(question, look, breaker));
     text.push('\n');
     text + &chain(&proof.lines, look, breaker)
 }
 
 /// The lemmas without their chains, and how long everything is.
-pub fn proof_short(proof: &ProofText, question: &str, look: Look) -> String {
+pub fn proof_short(proof: &ProofText, question: &str, look: Look, breaker: Breaker<'_>) -> String {
     let mut text = String::new();
     for lemma in &proof.lemmas {
         let line = format!(
@@ -132,16 +129,24 @@ pub fn proof_short(proof: &ProofText, question: &str, look: Look) -> String {
             lemma.equation,
             count(steps(&lemma.lines), "step")
         );
-        text += &fold_hanging(&line, look.width, 0, 4);
+        text += &broken(&line, look, breaker);
+        text.push('\n');
     }
     let line = format!("{question}   ({})", count(steps(&proof.lines), "step"));
-    text + &fold_hanging(&line, look.width, 0, 4)
+    text + &broken(&line, look, breaker) + "\n"
 }
 
-fn head(lemma: &LemmaText, look: Look) -> String {
+fn head(lemma: &LemmaText, look: Look, breaker: Breaker<'_>) -> String {
     let line = format!("{}: {}", lemma.name, lemma.equation);
-    let line = fold_hanging(&line, look.width, 0, 4);
-    format!("{}\n", look.ink(Ink::Strong, line.trim_end()))
+    format!("{}\n", look.ink(Ink::Strong, &broken(&line, look, breaker)))
+}
+
+/// An equation with what is said about it, in lines that fit, broken behind operators.
+fn broken(text: &str, look: Look, breaker: Breaker<'_>) -> String {
+    const INDENT: usize = 4;
+    let pieces = breaker.pieces(text, look.width, look.width.saturating_sub(INDENT));
+    let lines: Vec<&str> = pieces.into_iter().map(|piece| &text[piece]).collect();
+    lines.join(&format!("\n{}", " ".repeat(INDENT)))
 }
 
 #[cfg(test)]
