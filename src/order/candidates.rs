@@ -13,7 +13,7 @@ use crate::term::{Bank, Symbol};
 /// At most so many orders are proposed.
 const CANDIDATE_LIMIT: usize = 8;
 
-/// A search for parameters looks at no more laws than this, and at no more symbols.
+/// A search for parameters looks at no more laws than this, and at no more symbols of theirs.
 const LAW_LIMIT: usize = 64;
 const SYMBOL_LIMIT: usize = 256;
 
@@ -112,7 +112,7 @@ pub fn candidates(bank: &Bank, laws: &[Law], directed: &[Law]) -> Vec<Candidate>
 pub fn search(bank: &Bank, directed: &[Law]) -> Option<OrderSetting> {
     let otherwise = Shape::new(bank, directed).by_arity;
     let by_path = || {
-        let start = start(bank)?;
+        let start = Precedence::over(bank, directed, SYMBOL_LIMIT)?;
         let precedence = extend_for(bank, &start, directed, PATIENT)?;
         Some(lpo(precedence.extend(&otherwise)))
     };
@@ -191,11 +191,6 @@ fn heavy_variables(bank: &Bank, precedence: &[Symbol]) -> Option<OrderSetting> {
     Some(kbo(precedence, weights, 2))
 }
 
-fn start(bank: &Bank) -> Option<Precedence> {
-    let symbols = bank.symbols().len();
-    (symbols <= SYMBOL_LIMIT).then(|| Precedence::new(symbols))
-}
-
 /// A lexicographic path order under which all directed laws decrease, and as many of the others
 /// as will, one after the other, from left to right if possible, else from right to left.
 fn lpo_for(
@@ -204,8 +199,10 @@ fn lpo_for(
     laws: &[Law],
     otherwise: &[Symbol],
 ) -> Option<OrderSetting> {
-    let mut precedence = extend_for(bank, &start(bank)?, directed, PATIENT)?;
-    for &(left, right) in laws.iter().take(LAW_LIMIT) {
+    let looked_at = &laws[..laws.len().min(LAW_LIMIT)];
+    let start = Precedence::over(bank, directed.iter().chain(looked_at), SYMBOL_LIMIT)?;
+    let mut precedence = extend_for(bank, &start, directed, PATIENT)?;
+    for &(left, right) in looked_at {
         let better = extend_for(bank, &precedence, &[(left, right)], BRIEF)
             .or_else(|| extend_for(bank, &precedence, &[(right, left)], BRIEF));
         precedence = better.unwrap_or(precedence);

@@ -1,5 +1,6 @@
 //! Looking for a precedence under which laws decrease in the lexicographic path order.
 
+use super::shape::{Law, parts as parts_of};
 use crate::term::{Bank, Head, Symbol, TermId};
 
 /// A law is searched for only if its pairs of subterms are at most this many.
@@ -13,19 +14,51 @@ pub(super) const BRIEF: usize = 1 << 17;
 /// A strict partial order of symbols, transitively closed.
 #[derive(Clone, Debug)]
 pub(super) struct Precedence {
-    symbols: usize,
+    /// The symbols that may be related.
+    symbols: Vec<Symbol>,
+    /// By symbol: its place in `symbols`, if it has one.
+    places: Vec<Option<u32>>,
     /// Row by row: is the symbol of the row above that of the column?
     above: Vec<bool>,
 }
 
 impl Precedence {
-    pub(super) fn new(symbols: usize) -> Self {
-        let above = vec![false; symbols * symbols];
-        Precedence { symbols, above }
+    /// Nothing is known of the symbols that occur in these laws; none if they are more than `most`.
+    pub(super) fn over<'a>(
+        bank: &Bank,
+        laws: impl IntoIterator<Item = &'a Law>,
+        most: usize,
+    ) -> Option<Self> {
+        let parts = parts_of(bank, laws).into_iter();
+        let mut symbols: Vec<Symbol> = parts.filter_map(|term| bank.as_symbol(term)).collect();
+        symbols.sort_unstable();
+        symbols.dedup();
+        (symbols.len() <= most).then(|| Precedence::new(symbols))
+    }
+
+    fn new(symbols: Vec<Symbol>) -> Self {
+        let slots = symbols.iter().map(|s| s.index() + 1).max().unwrap_or(0);
+        let mut places = vec![None; slots];
+        for (place, symbol) in symbols.iter().enumerate() {
+            places[symbol.index()] = Some(place as u32);
+        }
+        Precedence {
+            above: vec![false; symbols.len() * symbols.len()],
+            symbols,
+            places,
+        }
+    }
+
+    fn place(&self, symbol: Symbol) -> Option<usize> {
+        let place = self.places.get(symbol.index()).copied().flatten()?;
+        Some(place as usize)
     }
 
     fn above(&self, f: Symbol, g: Symbol) -> bool {
-        self.above[f.index() * self.symbols + g.index()]
+        match (self.place(f), self.place(g)) {
+            (Some(f), Some(g)) => self.above[f * self.symbols.len() + g],
+            _ => false,
+        }
     }
 
     /// Puts `f` above `g`; false, with nothing done, if it cannot be.
@@ -36,12 +69,19 @@ impl Precedence {
         if self.above(f, g) {
             return true;
         }
-        let all = || (0..self.symbols as u32).map(Symbol);
-        let uppers: Vec<_> = all().filter(|&a| a == f || self.above(a, f)).collect();
-        let lowers: Vec<_> = all().filter(|&b| b == g || self.above(g, b)).collect();
+        let (Some(row), Some(column)) = (self.place(f), self.place(g)) else {
+            return false;
+        };
+        let count = self.symbols.len();
+        let uppers: Vec<_> = (0..count)
+            .filter(|&a| a == row || self.above[a * count + row])
+            .collect();
+        let lowers: Vec<_> = (0..count)
+            .filter(|&b| b == column || self.above[column * count + b])
+            .collect();
         for upper in &uppers {
             for lower in &lowers {
-                self.above[upper.index() * self.symbols + lower.index()] = true;
+                self.above[upper * count + lower] = true;
             }
         }
         true

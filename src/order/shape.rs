@@ -77,9 +77,9 @@ impl Shape {
 }
 
 /// The distinct subterms of some laws.
-fn parts(bank: &Bank, laws: &[Law]) -> Vec<TermId> {
+pub(super) fn parts<'a>(bank: &Bank, laws: impl IntoIterator<Item = &'a Law>) -> Vec<TermId> {
     let mut seen = FxHashSet::default();
-    let mut stack: Vec<_> = laws.iter().flat_map(|&(l, r)| [l, r]).collect();
+    let mut stack: Vec<_> = laws.into_iter().flat_map(|&(l, r)| [l, r]).collect();
     let mut parts = Vec::new();
     while let Some(term) = stack.pop() {
         if seen.insert(term) {

@@ -161,7 +161,8 @@ fn precedence(
     weights: &[u32],
 ) -> Result<Precedence, usize> {
     let copy = Reweighed::new(bank, laws, 1, |symbol| weights[symbol.index()]);
-    let mut precedence = Precedence::new(weights.len());
+    let precedence = Precedence::over(bank, laws, usize::MAX);
+    let mut precedence = precedence.expect("there is no bound");
     for (index, &law) in copy.laws.iter().enumerate() {
         let possible = match need(&copy.bank, law) {
             Need::Nothing => true,

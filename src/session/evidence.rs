@@ -5,7 +5,6 @@ use super::goal::Goal;
 use super::naming::Naming;
 use super::patterns::{Outline, outline};
 use crate::engine::{Engine, ReplayError};
-use crate::order::OrderKind;
 use crate::proof;
 use crate::proof::{Equation, Lemma, Name, Step, TermIndex, Terms, Way};
 use crate::rewrite::RuleId;
@@ -13,6 +12,8 @@ use crate::term::{Head, Sort, Symbol, TermId, Variable, match_term};
 use crate::term::{Substitution, renumber};
 use rustc_hash::{FxHashMap, FxHashSet};
 use std::collections::BTreeSet;
+
+mod stated;
 
 /// How many numbers a chain of single steps may take before it is written with lemmas.
 const FLAT: usize = 20_000;
@@ -569,52 +570,6 @@ impl<'a> Writer<'a> {
         let name = self.terms.name(name);
         self.variables.insert(name, sort);
         name
-    }
-
-    fn types(&mut self) -> Option<proof::Types> {
-        if !self.naming.typed {
-            return None;
-        }
-        let mut types = proof::Types::default();
-        for symbol in &self.operators {
-            let name = self.terms.name(&self.naming.symbols[symbol.index()]);
-            let sorts = self.naming.types[symbol.index()].iter();
-            let sorts = sorts.map(|s| self.terms.name(&self.naming.sorts[usize::from(s.0)]));
-            types.operators.push((name, sorts.collect()));
-        }
-        for (name, sort) in &self.variables {
-            let sort = self.terms.name(&self.naming.sorts[usize::from(sort.0)]);
-            types.variables.push((*name, sort));
-        }
-        types.variables.sort_unstable();
-        Some(types)
-    }
-
-    fn order(&mut self) -> proof::StatedOrder {
-        let order = &self.engine.system.order;
-        let theory = |s: &Symbol| s.index() < self.naming.symbols.len();
-        let precedence: Vec<Symbol> = order.precedence().into_iter().filter(theory).collect();
-        let kbo = order.kind() == OrderKind::Kbo;
-        let weight = |s: &Symbol| u64::from(order.weight(*s));
-        let weights: Vec<u64> = precedence.iter().map(weight).collect();
-        let names: Vec<Name> = precedence
-            .iter()
-            .map(|s| self.terms.name(&self.naming.symbols[s.index()]))
-            .collect();
-        proof::StatedOrder {
-            kind: if kbo {
-                proof::OrderKind::KnuthBendix
-            } else {
-                proof::OrderKind::LexicographicPath
-            },
-            weights: if kbo {
-                names.iter().copied().zip(weights).collect()
-            } else {
-                Vec::new()
-            },
-            precedence: names,
-            variable: u64::from(order.variable_weight()),
-        }
     }
 }
 

@@ -133,3 +133,53 @@ fn light(setting: &OrderSetting, added: impl Iterator<Item = Symbol>) -> OrderSe
     }
     setting
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::engine::{Outcome, Strategy};
+    use crate::order::candidates;
+    use crate::proof::{self, Evidence, WorkLimit};
+    use crate::rewrite::Limits;
+    use crate::session::runner::Compared;
+    use crate::session::subject::is_about;
+    use crate::session::{Library, Session};
+
+    /// The claims of these theories, proved by an engine that is aimed at them.
+    #[test]
+    fn what_an_aimed_engine_proves_follows_from_the_laws_alone() {
+        for (name, least) in [("group", 4), ("lattice", 3), ("natural", 1), ("list", 1)] {
+            let session = Session::open(name, Library::default()).expect("it opens");
+            let theory = session.session.theory();
+            let proved = theory.claims.iter().filter(|claim| {
+                let question = (claim.left, claim.right);
+                let aim = Aim::new(theory, question).expect("it has subterms");
+                let laws: Vec<_> = theory.laws.iter().map(|l| (l.left, l.right)).collect();
+                let plan = Plan {
+                    candidate: candidates(&theory.bank, &laws, &[])[0].clone(),
+                    strategy: Strategy::default(),
+                    own: false,
+                    aimed: true,
+                };
+                let mut runner = Runner::aimed(theory, plan, &aim).expect("the order fits");
+                let asked = runner.ask(theory, claim.left, claim.right);
+                let mut limits = Limits::none();
+                limits.terms = 20_000;
+                let engine = &mut runner.engine;
+                if engine.run(&mut limits, Some(&asked.question), |_| ()) != Outcome::Met {
+                    return false;
+                }
+                let Ok(Compared::Same { proof, .. }) = runner.compare(&asked, &mut Limits::none())
+                else {
+                    return false;
+                };
+                let evidence = Evidence::Proof(*proof.expect("it is short"));
+                assert_eq!(is_about(theory, &evidence, Some(question)), Ok(()));
+                let outcome = proof::check(&evidence, WorkLimit::DEFAULT);
+                assert!(matches!(outcome, proof::Outcome::Accepted), "{outcome:?}");
+                true
+            });
+            assert!(proved.count() >= least, "{name}");
+        }
+    }
+}
