@@ -137,13 +137,15 @@ fn light(setting: &OrderSetting, added: impl Iterator<Item = Symbol>) -> OrderSe
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::engine::{Outcome, Strategy};
+    use crate::engine::{Engine, Outcome, Strategy};
     use crate::order::candidates;
     use crate::proof::{self, Evidence, WorkLimit};
     use crate::rewrite::Limits;
     use crate::session::runner::Compared;
     use crate::session::subject::is_about;
     use crate::session::{Library, Session};
+    use std::sync::Arc;
+    use std::sync::atomic::{AtomicBool, Ordering};
 
     /// The claims of these theories, proved by an engine that is aimed at them.
     #[test]
@@ -163,10 +165,13 @@ mod tests {
                 };
                 let mut runner = Runner::aimed(theory, plan, &aim).expect("the order fits");
                 let asked = runner.ask(theory, claim.left, claim.right);
-                let mut limits = Limits::none();
-                limits.terms = 20_000;
-                let engine = &mut runner.engine;
-                if engine.run(&mut limits, Some(&asked.question), |_| ()) != Outcome::Met {
+                let stop = Arc::new(AtomicBool::new(false));
+                let mut limits = Limits::new(stop.clone());
+                let enough = |engine: &Engine| {
+                    stop.store(engine.counts().chosen >= 300, Ordering::Relaxed);
+                };
+                let asking = Some(&asked.question);
+                if runner.engine.run(&mut limits, asking, enough) != Outcome::Met {
                     return false;
                 }
                 let Ok(Compared::Same { proof, .. }) = runner.compare(&asked, &mut Limits::none())
