@@ -25,10 +25,10 @@ use std::time::Duration;
 /// Does it, and gives the exit status.
 pub fn run(arguments: Arguments) -> u8 {
     let screen = Screen::new(arguments.plain);
+    let session = Session::new(None, places::library(arguments.library.as_deref()));
     match arguments.task {
-        None => enter_shell(arguments.file.as_deref(), screen),
+        None => enter_shell(session, arguments.file.as_deref(), screen),
         Some(task) => {
-            let session = Session::new(None, places::library());
             let mut shell = Shell::new(session, screen, Signals::batch());
             let status = match task {
                 Task::Run { script } => run_script(&mut shell, &script),
@@ -124,8 +124,7 @@ fn eprintln_quietly(text: &str) {
 }
 
 /// The shell, for somebody in front or for a pipe.
-fn enter_shell(file: Option<&str>, screen: Screen) -> u8 {
-    let session = Session::new(None, places::library());
+fn enter_shell(session: Session, file: Option<&str>, screen: Screen) -> u8 {
     let is_interactive = std::io::stdin().is_terminal() && std::io::stdout().is_terminal();
     if is_interactive {
         return editor::run(session, screen, file);
@@ -189,7 +188,7 @@ fn run_lines(shell: &mut Shell, source: &mut dyn lines::Lines) -> u8 {
 
 /// Opens a theory; tells what is wrong with it.
 fn open_into(shell: &mut Shell, file: &str) -> bool {
-    match Session::open(file, places::library()) {
+    match places::open(file, shell.session.library().clone()) {
         Ok(opened) => {
             open::enter(shell, opened);
             true
@@ -203,7 +202,7 @@ fn open_into(shell: &mut Shell, file: &str) -> bool {
 
 /// The same without a word about what is in it.
 fn open_quietly(shell: &mut Shell, file: &str) -> bool {
-    match Session::open(file, places::library()) {
+    match places::open(file, shell.session.library().clone()) {
         Ok(opened) => {
             shell.session = opened.session;
             if !opened.refused.is_empty() {

@@ -11,6 +11,7 @@ mod drop;
 mod evaluate;
 mod evidence;
 mod help;
+mod import;
 mod laws;
 mod new;
 pub mod open;
@@ -58,6 +59,7 @@ pub const ALL: &[&Command] = &[
     &status::COMMAND,
     &new::COMMAND,
     &open::COMMAND,
+    &import::COMMAND,
     &theories::COMMAND,
     &save::COMMAND,
     &help::COMMAND,

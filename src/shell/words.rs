@@ -42,7 +42,6 @@ const LATER: &[(&str, &str)] = &[
         "use takes in another theory; its laws can then be asked about",
     ),
     ("atlas", ""),
-    ("import", "open FILE opens a theory"),
     ("export", "save FILE writes the theory as text"),
     (
         "journal",
