@@ -10,7 +10,7 @@
 //! theories then reads, so that what was imported can be saved and opened again:
 //!
 //! - an equation that is no goal becomes a law, named as in the file;
-//! - the conjecture becomes a claim; so does the opposite of an inequation, whatever its role,
+//! - the conjecture becomes a claim, with its existential variables as unknowns; so does the opposite of an inequation, whatever its role,
 //!   since the clauses contradict each other exactly if the laws imply it. With several
 //!   inequations any one of the opposites would do, which no single claim says; they are refused.
 //!

@@ -9,12 +9,21 @@ use rustc_hash::FxHashMap;
 pub(super) struct Statement {
     /// Its name in the file.
     pub name: String,
-    /// A law, or a claim?
-    pub is_claim: bool,
+    /// What it becomes.
+    pub purpose: Purpose,
     /// The left side.
     pub left: Term,
     /// The right side.
     pub right: Term,
+}
+
+/// What becomes of a formula.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub(super) enum Purpose {
+    /// A law.
+    Law,
+    /// A claim, in which values are asked for these variables.
+    Claim(Vec<Word>),
 }
 
 /// So many names stand in one declaration.
@@ -32,16 +41,23 @@ pub(super) fn text(title: &str, terms: &Terms, statements: &[Statement]) -> Stri
         text += &format!("theory {}\n", quote_law(&title));
     }
     book.declare(&mut text);
-    for is_claim in [false, true] {
-        let word = if is_claim { "claim" } else { "law" };
-        for statement in statements.iter().filter(|s| s.is_claim == is_claim) {
-            let name = book.laws.take(&statement.name);
-            text += &format!("{word} {}: ", quote_law(&name));
-            book.term(statement.left.clone(), &mut text);
-            text += " = ";
-            book.term(statement.right.clone(), &mut text);
-            text.push('\n');
+    let is_claim = |statement: &&Statement| statement.purpose != Purpose::Law;
+    let laws = statements.iter().filter(|s| !is_claim(s));
+    for statement in laws.chain(statements.iter().filter(is_claim)) {
+        let name = quote_law(&book.laws.take(&statement.name));
+        match &statement.purpose {
+            Purpose::Law => text += &format!("law {name}: "),
+            Purpose::Claim(unknowns) if unknowns.is_empty() => text += &format!("claim {name}: "),
+            Purpose::Claim(unknowns) => {
+                let unknowns = unknowns.iter().map(|word| book.variables[word].as_str());
+                let unknowns = unknowns.collect::<Vec<_>>().join(" ");
+                text += &format!("claim {name}: find {unknowns}: ");
+            }
         }
+        book.term(statement.left.clone(), &mut text);
+        text += " = ";
+        book.term(statement.right.clone(), &mut text);
+        text.push('\n');
     }
     text
 }

@@ -1,6 +1,6 @@
 //! Statements, files, and what they are taken for.
 
-use super::build::{self, Statement};
+use super::build::{self, Purpose, Statement};
 use super::formula::{Formula, Terms, expect};
 use super::token::{Kind, Lexer};
 use crate::language::{Diagnostic, Fault, Source, decode};
@@ -241,21 +241,35 @@ impl Reading {
                     .help("state the equation, and expect that it does not follow"),
             );
         }
+        // Each value may depend on what is quantified outside of it.
         let some = goal.bound.iter().position(|bound| !bound.universal);
-        if some.is_some() {
-            return Err(
-                Fault::new(goal.span, "this asks for values, which is not supported")
-                    .label("a conjecture with unknowns")
-                    .help("guess the values and state the equation with them"),
-            );
+        let inner = some.map_or(&[][..], |some| &goal.bound[some..]);
+        if inner.iter().any(|bound| bound.universal) {
+            return Err(Fault::new(
+                goal.span,
+                "this asks for a value that suits all values of another variable",
+            )
+            .label("? stands before !")
+            .help("put a new function of the variables before it in place of the inner variable, such as f(Y) for X in ?[Y]: ![X]:"));
         }
-        self.push(name, true, goal);
+        let unknowns = inner.iter().map(|bound| bound.variable).collect();
+        self.statements.push(Statement {
+            name,
+            purpose: Purpose::Claim(unknowns),
+            left: goal.left,
+            right: goal.right,
+        });
         Ok(())
     }
 
     fn law(&mut self, name: String, formula: Formula) -> Result<(), Fault> {
         if formula.is_law() {
-            self.push(name, false, formula);
+            self.statements.push(Statement {
+                name,
+                purpose: Purpose::Law,
+                left: formula.left,
+                right: formula.right,
+            });
             return Ok(());
         }
         Err(Fault::new(
@@ -264,15 +278,6 @@ impl Reading {
         )
         .label("some variable is quantified existentially")
         .help("state the equation for a new constant, or for a function of the other variables"))
-    }
-
-    fn push(&mut self, name: String, is_claim: bool, formula: Formula) {
-        self.statements.push(Statement {
-            name,
-            is_claim,
-            left: formula.left,
-            right: formula.right,
-        });
     }
 
     /// `include('path').` or `include('path', [name, …]).`

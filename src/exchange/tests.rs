@@ -82,7 +82,6 @@ fn quantified_formulas_too() {
         "fof(low, axiom, ![X,Y]: (![Z]: f(X,Z) = f(Y,Z))).\n\
          fof(odd, axiom, ~ ?[X]: ~ (g(X) = c)).\n\
          fof(goal, conjecture, ![X]: f(X,c) = c).\n\
-         fof(other, negated_conjecture, ~ ![X]: (g(X) = X)).\n\
          fof(known, negated_conjecture, g(c) = c).\n",
     );
     let lines: Vec<&str> = made.lines().skip(5).collect();
@@ -93,8 +92,33 @@ fn quantified_formulas_too() {
             "law odd: g(X) = c",
             "law known: g(c) = c",
             "claim goal: f(X, c) = c",
-            "claim other: g(X) = X",
         ]
+    );
+}
+
+#[test]
+fn a_negated_conjecture_is_turned_round() {
+    let made = text("fof(other, negated_conjecture, ~ ![X]: (g(X) = X)).\n");
+    assert!(made.ends_with("claim other: g(X) = X\n"), "{made}");
+}
+
+#[test]
+fn a_goal_with_unknowns_asks_for_values() {
+    let made = text("cnf(goal, negated_conjecture, f(X,c,Y) != f(Y,X,c)).\n");
+    assert!(
+        made.ends_with("claim goal: find X Y: f(X, c, Y) = f(Y, X, c)\n"),
+        "{made}"
+    );
+    let made = text("fof(goal, conjecture, ![X,Z]: ?[Y]: f(X,c,Y) = f(Y,X,c)).\n");
+    assert!(
+        made.ends_with("claim goal: find Y: f(X, c, Y) = f(Y, X, c)\n"),
+        "{made}"
+    );
+    let made = text("fof(goal, axiom, ~ ?[X]: f(X) = c).\n");
+    assert!(made.ends_with("claim goal: find X: f(X) = c\n"), "{made}");
+    assert_eq!(
+        fault("fof(goal, conjecture, ?[Y]: ![X]: f(X,Y) = X).\n"),
+        "1:23: this asks for a value that suits all values of another variable"
     );
 }
 

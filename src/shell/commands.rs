@@ -10,6 +10,7 @@ mod complete;
 mod drop;
 mod evaluate;
 mod evidence;
+mod find;
 mod help;
 mod import;
 mod laws;
@@ -37,6 +38,7 @@ use super::problem::Problem;
 /// All commands, by group, in the order in which help lists them.
 pub const ALL: &[&Command] = &[
     &trace::COMMAND,
+    &find::COMMAND,
     &prove::COMMAND,
     &separate::COMMAND,
     &proof::COMMAND,

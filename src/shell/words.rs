@@ -15,7 +15,6 @@ const LATER: &[(&str, &str)] = &[
         "apply",
         "trace T shows the steps from a term to its normal form",
     ),
-    ("find", "guess the values and ask the equation with them"),
     (
         "closed",
         "an equation that follows from the laws holds on closed terms too",

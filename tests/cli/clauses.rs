@@ -88,3 +88,37 @@ fn import_says_what_it_puts_away_and_what_it_cannot_read() {
         assert!(ran.err.contains("Help"), "{line}: {}", ran.err);
     }
 }
+
+#[test]
+fn a_goal_with_unknowns_is_a_claim_that_asks_for_values() {
+    let place = Place::new();
+    place.file("tides.ax", AXIOMS);
+    place.file(
+        "tides.p",
+        "include('tides.ax').\ncnf(goal, negated_conjecture, merge(gauge,X) != harbour).\n",
+    );
+    let ran = place.run(&["check", "--json", "--evidence", "out", "tides.p"], "");
+    assert_eq!(ran.status, 0, "{}{}", ran.out, ran.err);
+    let answer: serde_json::Value = serde_json::from_str(&ran.out).expect("JSON");
+    assert_eq!(answer["question"], "find X: merge(gauge, X) = harbour");
+    assert_eq!(answer["verdict"], "equal");
+    assert!(answer["values"]["X"].is_string(), "{answer}");
+    let path = answer["evidence"].as_str().expect("a path");
+    let ran = place.run(&["verify", path, "--theory", "tides.p"], "");
+    assert_eq!(ran.status, 0, "{}{}", ran.out, ran.err);
+
+    let ask = |question: &str| place.run(&["ask", "tides.p", question, "--within", "20s"], "");
+    let ran = ask("find X: merge(X, Y) = Z");
+    assert_eq!(ran.status, 0, "{}{}", ran.out, ran.err);
+    assert!(ran.out.contains("    X = "), "{}", ran.out);
+    let ran = ask("find X: merge(X, X) = Y");
+    assert_eq!(ran.status, 1, "{}{}", ran.out, ran.err);
+    assert!(
+        ran.out.contains("differ for all values of X"),
+        "{}",
+        ran.out
+    );
+    let ran = ask("find X: merge(X, X) = Y within 3s");
+    assert_eq!(ran.status, 3, "{}{}", ran.out, ran.err);
+    assert!(ran.err.contains("question:1:"), "{}", ran.err);
+}
