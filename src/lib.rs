@@ -17,4 +17,6 @@ pub mod theory;
 
 pub mod session;
 
+pub mod exchange;
+
 pub mod shell;

@@ -13,7 +13,9 @@ mod control;
 mod derivation;
 mod derived;
 mod evidence;
+mod extension;
 mod file;
+mod find;
 mod goal;
 mod library;
 mod naming;
@@ -26,6 +28,7 @@ mod shorten;
 mod store;
 mod subject;
 mod view;
+mod witness;
 mod work;
 mod workers;
 

@@ -2,6 +2,7 @@
 
 mod cli {
     pub mod bad_input;
+    pub mod clauses;
     pub mod help;
     pub mod json;
     pub mod program;

@@ -186,7 +186,30 @@ impl Engine {
         if left == right || self.is_instance(left, right) || self.joins_by_ac(left, right) {
             return Ok(None);
         }
-        Ok(Some(self.weigher.priority(&self.system.bank, left, right)))
+        Ok(Some(self.weight_of(left, right)))
+    }
+
+    /// The priority of a pair with these sides.
+    fn weight_of(&mut self, left: TermId, right: TermId) -> u32 {
+        let bank = &self.system.bank;
+        if let Some(equality) = self.equality {
+            let whole = [left, right]
+                .into_iter()
+                .find(|side| bank.as_symbol(*side) == Some(equality));
+            if let Some(&[s, t]) = whole.map(|whole| bank.arguments(whole)) {
+                let scoped = |term| Scoped {
+                    term,
+                    side: Side::Left,
+                };
+                self.unifier.reset();
+                return if self.unifier.unify(bank, scoped(s), scoped(t)) {
+                    0
+                } else {
+                    self.weigher.priority(bank, s, t)
+                };
+            }
+        }
+        self.weigher.priority(bank, left, right)
     }
 
     /// Unifies the inner rule's side with the place in the outer rule's side.

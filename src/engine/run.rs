@@ -86,6 +86,8 @@ pub struct Engine {
     pub(super) ac_parts: FxHashMap<Symbol, [Option<Use>; 2]>,
     pub(super) ac_symbols: Vec<Symbol>,
     pub(super) counts: Counts,
+    /// The equality of a question with unknowns.
+    pub(super) equality: Option<Symbol>,
 }
 
 impl Engine {
@@ -107,12 +109,19 @@ impl Engine {
             ac_parts: FxHashMap::default(),
             ac_symbols: Vec::new(),
             counts: Counts::default(),
+            equality: None,
         }
     }
 
     /// Uses another strategy from now on. Pairs that wait keep the priority that they have.
     pub fn set_strategy(&mut self, strategy: Strategy) {
         self.weigher.strategy = strategy;
+    }
+
+    /// From now on this symbol of two arguments is an equality: pairs eq(s, t) = c wait as s = t
+    /// would, and are chosen at once where s and t unify.
+    pub fn set_equality(&mut self, equality: Symbol) {
+        self.equality = Some(equality);
     }
 
     /// Adds a law between two terms of the system's bank; it is looked at in the next run.

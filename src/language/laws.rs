@@ -2,6 +2,7 @@
 
 use super::declare::{Change, Statement, end};
 use super::diagnostic::Fault;
+use super::find;
 use super::lexer::{Kind, Lexer};
 use super::symbols::taken;
 use super::term::{TermReader, shown};
@@ -27,21 +28,40 @@ pub(crate) fn law(
     Ok(name.map(Change::Law).into_iter().collect())
 }
 
-/// `claim flip: i(x * y) = i(y) * i(x)`, `claim x * y != y * x`
+/// `claim flip: i(x * y) = i(y) * i(x)`, `claim x * y != y * x`, `claim back: find x: x * y = e`
 pub(crate) fn claim(at: &mut Statement<'_, '_, '_>, rest: usize) -> Result<Vec<Change>, Fault> {
     let name = name(at, rest)?;
-    let sides = sides(at, name.behind, "claim")?;
+    let (unknowns, start) = unknowns(at, name.behind)?;
+    let sides = sides(
+        at,
+        start,
+        if start > name.behind { "find" } else { "claim" },
+    )?;
+    let both = (sides.left, sides.right);
+    find::check(&at.theory.bank, &at.theory.signature, &unknowns, both)?;
     if let Some((name, span)) = &name.named {
         check_name(at, name, span)?;
     }
     at.theory.push_claim(Claim {
         name: name.named.map(|(name, _)| name),
+        unknowns: unknowns.into_iter().map(|(index, _)| index).collect(),
         left: sides.left,
         right: sides.right,
         expected: sides.expected,
         line: at.context.line,
     });
     Ok(vec![Change::Claim(at.theory.claims.len() - 1)])
+}
+
+/// The unknowns of `find x y: s = t`, if a claim is such a question, and where its sides begin.
+fn unknowns(at: &Statement<'_, '_, '_>, start: usize) -> Result<(find::Unknowns, usize), Fault> {
+    let mut lexer = at.lexer();
+    lexer.back_to(start);
+    if lexer.next()?.kind != Kind::Reserved("find") {
+        return Ok((find::Unknowns::new(), start));
+    }
+    let unknowns = find::list(&mut lexer)?;
+    Ok((unknowns, lexer.at()))
 }
 
 /// `define square(x) = x * x`
@@ -252,8 +272,11 @@ fn sign(reader: &mut TermReader<'_, '_, '_>, word: &str) -> Result<Expected, Fau
     let token = reader.lexer.next()?;
     let wanted = if word == "rule" { "->" } else { "=" };
     let fault = match (token.kind, word) {
-        (Kind::Equal, "law" | "claim") | (Kind::Arrow, "rule") => return Ok(Expected::Equal),
+        (Kind::Equal, "law" | "claim" | "find") | (Kind::Arrow, "rule") => {
+            return Ok(Expected::Equal);
+        }
         (Kind::NotEqual, "claim") => return Ok(Expected::NotEqual),
+        (_, "find") => find::no_equation(token.span),
         (Kind::Arrow, _) => Fault::new(token.span, "an arrow stands in rules only")
             .help("write = here, or rule as the first word"),
         (Kind::Equal, _) => Fault::new(token.span, "a rule has an arrow between its sides")

@@ -56,6 +56,9 @@ pub struct AlgebraText {
     pub with: Vec<(String, u32)>,
     /// The two sides, and their values.
     pub sides: [(String, u32); 2],
+    /// The unknowns, for all values of which the sides differ; where there are some, the values of
+    /// the sides mean nothing.
+    pub unknowns: Vec<String>,
 }
 
 /// So many rows of values are shown at most.
@@ -169,6 +172,9 @@ impl Session {
                 .with
                 .iter()
                 .map(|(v, n)| (terms.text(*v).to_owned(), *n))
+                .collect(),
+            unknowns: (claim.unknowns.iter())
+                .map(|name| terms.text(*name).to_owned())
                 .collect(),
             sides: [
                 (sheet.text(claim.left), values[0]),

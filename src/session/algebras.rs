@@ -6,7 +6,7 @@ use crate::algebra::{
     SatSearch, Search, Signature,
 };
 use crate::proof::{self, AlgebraClaim, AlgebraEvidence, Terms};
-use crate::term::TermId;
+use crate::term::{Symbol, TermId, Variable};
 use crate::theory::Theory;
 use std::sync::Arc;
 use std::sync::atomic::Ordering;
@@ -177,6 +177,11 @@ impl Algebras {
 }
 
 impl Hunt {
+    /// A search in a theory that no algebra is known of.
+    pub(super) fn new(theory: &Theory, question: (TermId, TermId)) -> Hunt {
+        Algebras::default().hunt(theory, question, LARGEST)
+    }
+
     /// Asks the pool, then searches, sizes upward. Where the problem suits the SAT solver, the
     /// two searches take turns of growing length, the direct one first.
     pub(super) fn run(mut self, largest: u32, limits: &mut Limits) -> Caught {
@@ -299,6 +304,38 @@ fn compiled(theory: &Theory) -> (Signature, Vec<Equation>) {
         .collect();
     let sorts = theory.signature.sorts().len();
     (Signature::new(&theory.bank, sorts), equations)
+}
+
+/// The part that the theory knows of an algebra of an extension by a sort and symbols behind its
+/// own, in which constants stand for the variables `fixed` of the question; the other variables of
+/// the question have no values of meaning.
+pub(super) fn part(
+    theory: &Theory,
+    (left, right): (TermId, TermId),
+    fixed: &[(Variable, Symbol)],
+    example: &Counterexample,
+) -> Option<Counterexample> {
+    let whole = &example.algebra;
+    let sorts = theory.signature.sorts().len();
+    let signature = Signature::new(&theory.bank, sorts);
+    let tables = &whole.tables()[..signature.symbols().len()];
+    let values = tables.iter().map(|table| table.values().to_vec()).collect();
+    let algebra = Algebra::new(&signature, whole.sizes()[..sorts].to_vec(), values).ok()?;
+    let claim = Equation::compile(&theory.bank, left, right);
+    let value = |variable: &Variable| {
+        let (_, constant) = fixed.iter().find(|(known, _)| known == variable)?;
+        whole.tables()[constant.index()].get(&[])
+    };
+    Some(Counterexample {
+        algebra,
+        assignment: claim
+            .variables()
+            .iter()
+            .map(|v| value(v).unwrap_or(0))
+            .collect(),
+        values: [0, 0],
+        smallest: example.smallest,
+    })
 }
 
 /// The evidence that two terms of the theory differ in an algebra.

@@ -110,6 +110,8 @@ pub struct Answer {
     pub verdict: Verdict,
     /// How it was settled.
     pub by: Option<By>,
+    /// The values that were found for the unknowns, by name, printed; empty for other questions.
+    pub values: Vec<(String, String)>,
     /// The evidence, accepted by the checker.
     pub evidence: Option<Evidence>,
     /// For how long it took, checking included.
@@ -128,6 +130,28 @@ pub struct Answer {
     pub outdated: bool,
     /// The laws that it was given under, as text.
     pub laws: Arc<str>,
+}
+
+impl Answer {
+    /// A question that is not settled.
+    pub(super) fn open(number: u32, question: String, laws: Arc<str>) -> Answer {
+        Answer {
+            number,
+            question,
+            verdict: Verdict::Undecided,
+            by: None,
+            values: Vec::new(),
+            evidence: None,
+            elapsed: Duration::ZERO,
+            checking: Duration::ZERO,
+            frontier: None,
+            normal: None,
+            algebra: None,
+            fault: None,
+            outdated: false,
+            laws,
+        }
+    }
 }
 
 /// A term's normal form.

@@ -17,7 +17,7 @@ use std::time::{Duration, Instant};
 
 /// How much checking one answer's evidence may take, reading it from a file included: what is
 /// allowed to whoever checks the file.
-const CHECK_LIMIT: WorkLimit = WorkLimit::DEFAULT;
+pub(super) const CHECK_LIMIT: WorkLimit = WorkLimit::DEFAULT;
 
 /// For how long rules are made before algebras are searched for as well.
 const HEAD_START: Duration = Duration::from_millis(25);
@@ -114,21 +114,11 @@ impl Session {
     ) -> Result<&Answer, SessionFault> {
         let begun = Instant::now();
         let question = (left, right);
-        let mut answer = Answer {
-            number: self.next_answer(),
-            question: self.equation_text(left, "=", right),
-            verdict: Verdict::Undecided,
-            by: None,
-            evidence: None,
-            elapsed: Duration::ZERO,
-            checking: Duration::ZERO,
-            frontier: None,
-            normal: None,
-            algebra: None,
-            fault: None,
-            outdated: false,
-            laws: self.law_text.clone(),
-        };
+        let mut answer = Answer::open(
+            self.next_answer(),
+            self.equation_text(left, "=", right),
+            self.law_text.clone(),
+        );
         self.algebras.catch_up(&self.theory, self.lineage);
         if !matches!(means, Means::Algebra(_)) {
             self.workers.catch_up(&self.theory, self.lineage)?;

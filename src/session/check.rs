@@ -46,14 +46,13 @@ impl Session {
             if control.stop.load(Ordering::Relaxed) {
                 break;
             }
-            let answer = self.ask(claim.left, claim.right, within, control)?.clone();
-            let sign = match claim.expected {
-                Expected::Equal => "=",
-                Expected::NotEqual => "!=",
+            let answer = match self.find_of(&claim) {
+                Some(find) => self.find(&find, within, control)?.clone(),
+                None => self.ask(claim.left, claim.right, within, control)?.clone(),
             };
             let result = ClaimResult {
                 number: place + 1,
-                text: self.equation_text(claim.left, sign, claim.right),
+                text: self.claim_text(&claim),
                 name: claim.name,
                 expected: claim.expected,
                 answer,

@@ -64,6 +64,9 @@ pub struct Library {
     pub working: Option<PathBuf>,
     /// The user's theory folder.
     pub user: Option<PathBuf>,
+    /// The folder in which the paths begin that files in clause syntax include; without one they
+    /// are looked for beside the file and above it.
+    pub clauses: Option<PathBuf>,
 }
 
 /// Which place a theory is in.

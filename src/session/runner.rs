@@ -102,6 +102,9 @@ impl Runner {
         let order = Order::new(&setting, symbols).map_err(NoOrder::Stated)?;
         let mut engine = Engine::new(order, symbols);
         engine.set_strategy(plan.strategy.clone());
+        if let Some(equality) = theory.signature.equality() {
+            engine.set_equality(equality);
+        }
         let mut runner = Runner {
             engine,
             setting: plan.candidate.setting,

@@ -109,7 +109,13 @@ fn rebuilt(
 }
 
 /// Appends the chain of a lemma, as the step uses it, to another chain that has come to `whole`.
-fn splice(terms: &mut Terms, whole: TermIndex, step: &Step, lemma: &Lemma, chain: &mut Vec<Step>) {
+pub(super) fn splice(
+    terms: &mut Terms,
+    whole: TermIndex,
+    step: &Step,
+    lemma: &Lemma,
+    chain: &mut Vec<Step>,
+) {
     let with: FxHashMap<Name, TermIndex> = step.with.iter().copied().collect();
     let mut known = FxHashMap::default();
     let starts = std::iter::once(lemma.equation.left).chain(lemma.steps.iter().map(|s| s.to));
@@ -194,7 +200,7 @@ fn replaced(terms: &mut Terms, whole: TermIndex, at: &[u32], by: TermIndex) -> T
 }
 
 /// Leaves out what lies between two visits to the same term.
-fn without_detours(left: TermIndex, chain: Vec<Step>) -> Vec<Step> {
+pub(super) fn without_detours(left: TermIndex, chain: Vec<Step>) -> Vec<Step> {
     let mut kept: Vec<Step> = Vec::with_capacity(chain.len());
     let mut place_of = FxHashMap::from_iter([(left, 0)]);
     for step in chain {

@@ -80,6 +80,19 @@ impl Session {
         })
     }
 
+    /// Begins with a theory that is there as text and has no file of its own; `source` is what
+    /// messages call it.
+    pub fn read(source: &str, text: &str, library: Library) -> Result<Opened, Vec<Diagnostic>> {
+        let theory = read_theory(source, text, &library)?;
+        let mut session = Session::with(theory, None, library);
+        let (derived, refused) = session.take_derived();
+        Ok(Opened {
+            session,
+            derived,
+            refused,
+        })
+    }
+
     /// Verifies the derived rules of the file by deriving each again, and begins with them.
     fn take_derived(&mut self) -> (usize, Vec<Diagnostic>) {
         let mut refused = self.theory.refusals();

@@ -6,10 +6,11 @@
 
 use super::naming::Naming;
 use super::naming::naming;
+use crate::language::Find;
 use crate::proof::{Equation, Evidence, Name, Node, TermIndex, Terms, Types};
 use crate::term::{Head, TermId};
 use crate::theory::Theory;
-use rustc_hash::FxHashSet;
+use rustc_hash::{FxHashMap, FxHashSet};
 
 /// Are the laws and sorts of evidence those of the theory? Where not, says how they differ.
 ///
@@ -41,6 +42,47 @@ pub(super) fn is_about(
             Ok(())
         }
         _ => Err("its claim is not the question".to_owned()),
+    }
+}
+
+/// Compares the laws, the sorts, the unknowns and the claim with a question with unknowns; where
+/// they differ, says how.
+pub(super) fn is_about_find(
+    theory: &Theory,
+    evidence: &Evidence,
+    find: &Find,
+) -> Result<(), String> {
+    let naming = naming(theory);
+    let subject = Subject::new(theory, &naming, evidence);
+    subject.belongs(evidence)?;
+    let mut values = FxHashMap::default();
+    let named: Vec<Name> = match evidence {
+        Evidence::Proof(proof) => {
+            if !proof.claim.when.is_empty() {
+                return Err("its claim has conditions, which the question has not".to_owned());
+            }
+            values = proof.claim.witness.iter().copied().collect();
+            proof.claim.witness.iter().map(|(name, _)| *name).collect()
+        }
+        Evidence::Algebra(algebra) => algebra.claim.unknowns.clone(),
+        Evidence::Complete(_) => Vec::new(),
+    };
+    let unknown = |index: &u32| naming.variables[*index as usize].0.as_str();
+    let wanted: FxHashSet<&str> = find.unknowns.iter().map(unknown).collect();
+    let stated: FxHashSet<&str> = named.iter().map(|name| subject.terms.text(*name)).collect();
+    if wanted != stated || named.len() != wanted.len() {
+        return Err("its unknowns are not those of the question".to_owned());
+    }
+    let values = (values.iter()).map(|(name, value)| (subject.terms.text(*name), *value));
+    let values: FxHashMap<&str, TermIndex> = values.collect();
+    match evidence.claim() {
+        Some((s, t))
+            if subject.same_with(find.left, s, &values)
+                && subject.same_with(find.right, t, &values) =>
+        {
+            Ok(())
+        }
+        _ => Err("its claim is not the question with the values put in".to_owned()),
     }
 }
 
@@ -155,6 +197,16 @@ impl<'a> Subject<'a> {
 
     /// Is the plain term the theory's term, with the names of the theory?
     fn same(&self, term: TermId, plain: TermIndex) -> bool {
+        self.same_with(term, plain, &FxHashMap::default())
+    }
+
+    /// The same, with these terms in place of variables.
+    fn same_with(
+        &self,
+        term: TermId,
+        plain: TermIndex,
+        values: &FxHashMap<&str, TermIndex>,
+    ) -> bool {
         let bank = &self.theory.bank;
         let mut seen = FxHashSet::default();
         let mut stack = vec![(term, plain)];
@@ -162,7 +214,13 @@ impl<'a> Subject<'a> {
             if !seen.insert((term, plain)) {
                 continue;
             }
+            let value = bank.as_variable(term).and_then(|variable| {
+                let name = &self.naming.variables[variable.index as usize].0;
+                values.get(name.as_str())
+            });
             let same = match (bank.head(term), self.terms.node(plain)) {
+                // Equal terms of evidence have equal indices.
+                _ if value.is_some() => value == Some(&plain),
                 (Head::Variable(variable), Node::Variable(name)) => {
                     let known = &self.naming.variables[variable.index as usize].0;
                     known == self.terms.text(name)

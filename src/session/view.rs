@@ -51,7 +51,7 @@ pub struct SymbolView {
 pub struct ClaimView {
     /// Its name.
     pub name: Option<String>,
-    /// The claim, with `=` or `!=`.
+    /// The claim, with `=` or `!=`, or `find x: s = t`.
     pub text: String,
     /// What it expects.
     pub expected: Expected,
@@ -166,19 +166,24 @@ impl Session {
 
     /// The claims.
     pub fn claims(&self) -> Vec<ClaimView> {
-        let view = |claim: &crate::theory::Claim| {
-            let sign = if claim.expected == Expected::Equal {
-                "="
-            } else {
-                "!="
-            };
-            ClaimView {
-                name: claim.name.clone(),
-                text: self.equation_text(claim.left, sign, claim.right),
-                expected: claim.expected,
-            }
+        let view = |claim: &crate::theory::Claim| ClaimView {
+            name: claim.name.clone(),
+            text: self.claim_text(claim),
+            expected: claim.expected,
         };
         self.theory.claims.iter().map(view).collect()
+    }
+
+    /// A claim as it is typed, without its name.
+    pub(super) fn claim_text(&self, claim: &crate::theory::Claim) -> String {
+        let sign = match claim.expected {
+            Expected::Equal => "=",
+            Expected::NotEqual => "!=",
+        };
+        match self.find_of(claim) {
+            Some(find) => self.find_text(&find),
+            None => self.equation_text(claim.left, sign, claim.right),
+        }
     }
 
     /// The session in numbers.

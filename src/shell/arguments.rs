@@ -7,7 +7,7 @@ use std::time::Duration;
 
 const AFTER: &str = "\
 FILE is a file, or the name of a theory: it is looked for in the working folder, in your theory
-folder and among the theories inside the program. A theory whose name is a command of this list is
+folder and among the theories inside the program. Files in clause syntax (.p, .ax) are imported. A theory whose name is a command of this list is
 opened with ./NAME.
 
 Exit status: 0 everything as asked or claimed, 1 something is not, 2 something is undecided,
@@ -25,6 +25,10 @@ pub struct Arguments {
     pub task: Option<Task>,
     /// The theory to open in the shell.
     pub file: Option<String>,
+    /// The folder in which the paths begin that files in clause syntax include; otherwise the
+    /// environment variable EQUABLE_LIBRARY, or the folder of the file and those above it.
+    #[arg(long, global = true, value_name = "FOLDER")]
+    pub library: Option<PathBuf>,
     /// Without colours and without the line that shows progress.
     #[arg(long, global = true)]
     pub plain: bool,

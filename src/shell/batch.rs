@@ -6,15 +6,16 @@ use super::desk::Shell;
 use super::editor;
 use super::evidence::Folder;
 use super::json::Kept;
+use super::line::Line;
 use super::lines::{self, Piped};
 use super::problem::{Problem, plain_error};
 use super::quantity::count;
 use super::screen::Screen;
 use super::signals::Signals;
 use super::{json, line, places, show, status, verify};
-use crate::language::{Diagnostic, Fault, Question, Source};
+use crate::language::{Diagnostic, Fault, Question, Source, first_word};
 use crate::proof::Evidence;
-use crate::session::{ClaimResult, Session, Verdict};
+use crate::session::{Answer, ClaimResult, Session, Verdict};
 use crate::theory::Expected;
 use std::io::{ErrorKind, IsTerminal};
 use std::path::Path;
@@ -25,10 +26,10 @@ use std::time::Duration;
 /// Does it, and gives the exit status.
 pub fn run(arguments: Arguments) -> u8 {
     let screen = Screen::new(arguments.plain);
+    let session = Session::new(None, places::library(arguments.library.as_deref()));
     match arguments.task {
-        None => enter_shell(arguments.file.as_deref(), screen),
+        None => enter_shell(session, arguments.file.as_deref(), screen),
         Some(task) => {
-            let session = Session::new(None, places::library());
             let mut shell = Shell::new(session, screen, Signals::batch());
             let status = match task {
                 Task::Run { script } => run_script(&mut shell, &script),
@@ -124,8 +125,7 @@ fn eprintln_quietly(text: &str) {
 }
 
 /// The shell, for somebody in front or for a pipe.
-fn enter_shell(file: Option<&str>, screen: Screen) -> u8 {
-    let session = Session::new(None, places::library());
+fn enter_shell(session: Session, file: Option<&str>, screen: Screen) -> u8 {
     let is_interactive = std::io::stdin().is_terminal() && std::io::stdout().is_terminal();
     if is_interactive {
         return editor::run(session, screen, file);
@@ -189,7 +189,7 @@ fn run_lines(shell: &mut Shell, source: &mut dyn lines::Lines) -> u8 {
 
 /// Opens a theory; tells what is wrong with it.
 fn open_into(shell: &mut Shell, file: &str) -> bool {
-    match Session::open(file, places::library()) {
+    match places::open(file, shell.session.library().clone()) {
         Ok(opened) => {
             open::enter(shell, opened);
             true
@@ -203,7 +203,7 @@ fn open_into(shell: &mut Shell, file: &str) -> bool {
 
 /// The same without a word about what is in it.
 fn open_quietly(shell: &mut Shell, file: &str) -> bool {
-    match Session::open(file, places::library()) {
+    match places::open(file, shell.session.library().clone()) {
         Ok(opened) => {
             shell.session = opened.session;
             if !opened.refused.is_empty() {
@@ -262,6 +262,9 @@ fn ask(
     if !open_quietly(shell, file) {
         return shell.status;
     }
+    if first_word(text) == Some("find") {
+        return find(shell, file, text, options, folder);
+    }
     let (left, right, wanted) = match question(shell, text) {
         None => return shell.status,
         Some(Question::Equation(left, right)) => (left, right, Expected::Equal),
@@ -285,15 +288,65 @@ fn ask(
     let Some(answer) = shell.session.answers().last().cloned() else {
         return status::PROGRAM;
     };
+    let sign = if wanted == Expected::Equal { "=" } else { "!=" };
+    let question = shell.session.equation_text(left, sign, right);
+    tell_answer(shell, file, &question, wanted, &answer, options, folder)
+}
+
+/// A question with unknowns.
+fn find(
+    shell: &mut Shell,
+    file: &str,
+    text: &str,
+    options: Options,
+    folder: &mut Option<Folder>,
+) -> u8 {
+    let text = text.trim();
+    let read = shell.session.parse_find(text, "find".len());
+    let read = read.map_err(|fault| Problem::Text(vec![fault]));
+    let read = read.and_then(|(find, end)| Line::new(text, end, true).end().map(|()| find));
+    let find = match read {
+        Ok(find) => find,
+        Err(Problem::Text(mut faults)) => {
+            faults
+                .iter_mut()
+                .for_each(|fault| fault.source = "question".to_owned());
+            return told(shell, Problem::Text(faults));
+        }
+        Err(problem) => return told(shell, problem),
+    };
+    let budget = options.within.unwrap_or(shell.session.budgets().ask);
+    let asked = shell.work(|session, control| session.find(&find, budget, control).cloned());
+    match asked {
+        Ok(answer) => {
+            let question = answer.question.clone();
+            let wanted = Expected::Equal;
+            tell_answer(shell, file, &question, wanted, &answer, options, folder)
+        }
+        Err(fault) => {
+            let problem = Problem::session(fault, &shell.session.theory().signature);
+            told(shell, problem)
+        }
+    }
+}
+
+/// Shows an answer; gives the exit status.
+fn tell_answer(
+    shell: &mut Shell,
+    file: &str,
+    question: &str,
+    wanted: Expected,
+    answer: &Answer,
+    options: Options,
+    folder: &mut Option<Folder>,
+) -> u8 {
     let path = keep(shell, folder, (file, "question"), answer.evidence.as_ref());
     let text = if let Some(form) = options.json {
         let kept = Kept::new(form, answer.evidence.as_ref(), path);
-        let sign = if wanted == Expected::Equal { "=" } else { "!=" };
-        let question = shell.session.equation_text(left, sign, right);
-        format!("{}\n", json::ask(file, &question, wanted, &answer, kept))
+        format!("{}\n", json::ask(file, question, wanted, answer, kept))
     } else {
         let place = show::Place::Batch;
-        show::answer(&answer, &shell.session, shell.look(), place) + &evidence_in(path)
+        show::answer(answer, &shell.session, shell.look(), place) + &evidence_in(path)
     };
     shell.out(&text);
     if let Some((fault, evidence)) = &answer.fault {

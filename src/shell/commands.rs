@@ -10,7 +10,9 @@ mod complete;
 mod drop;
 mod evaluate;
 mod evidence;
+mod find;
 mod help;
+mod import;
 mod laws;
 mod new;
 pub mod open;
@@ -36,6 +38,7 @@ use super::problem::Problem;
 /// All commands, by group, in the order in which help lists them.
 pub const ALL: &[&Command] = &[
     &trace::COMMAND,
+    &find::COMMAND,
     &prove::COMMAND,
     &separate::COMMAND,
     &proof::COMMAND,
@@ -58,6 +61,7 @@ pub const ALL: &[&Command] = &[
     &status::COMMAND,
     &new::COMMAND,
     &open::COMMAND,
+    &import::COMMAND,
     &theories::COMMAND,
     &save::COMMAND,
     &help::COMMAND,

@@ -43,7 +43,7 @@ pub fn run(session: Session, mut screen: Screen, file: Option<&str>) -> u8 {
     shell.editor = Some(editor);
     greet(&mut shell);
     if let Some(file) = file {
-        match Session::open(file, places::library()) {
+        match places::open(file, shell.session.library().clone()) {
             Ok(opened) => open::enter(&mut shell, opened),
             Err(fault) => {
                 shell.tell(Problem::open(fault));

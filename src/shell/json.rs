@@ -87,6 +87,11 @@ fn object(
         "seconds": seconds(answer.elapsed),
     });
     kept.put_into(&mut made);
+    if let (false, Some(object)) = (answer.values.is_empty(), made.as_object_mut()) {
+        let values = answer.values.iter();
+        let values = values.map(|(name, value)| (name.clone(), json!(value)));
+        object.insert("values".to_owned(), Value::Object(values.collect()));
+    }
     if let (Some([left, right]), Some(object)) = (&answer.normal, made.as_object_mut()) {
         object.insert("normal".to_owned(), json!([left, right]));
     }

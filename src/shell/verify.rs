@@ -17,7 +17,7 @@ use std::time::Instant;
 /// Checks every file, each by itself, and gives the exit status: the worst of 0 accepted, 2 too
 /// costly to check, 1 rejected, 3 unreadable.
 pub fn run(shell: &mut Shell, files: &[String], theory: Option<&str>, as_json: bool) -> u8 {
-    let theory = match theory.map(|name| Session::open(name, places::library())) {
+    let theory = match theory.map(|name| places::open(name, shell.session.library().clone())) {
         None => None,
         Some(Ok(opened)) => Some(opened.session),
         Some(Err(fault)) => {

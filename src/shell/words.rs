@@ -15,7 +15,6 @@ const LATER: &[(&str, &str)] = &[
         "apply",
         "trace T shows the steps from a term to its normal form",
     ),
-    ("find", "guess the values and ask the equation with them"),
     (
         "closed",
         "an equation that follows from the laws holds on closed terms too",
@@ -42,7 +41,6 @@ const LATER: &[(&str, &str)] = &[
         "use takes in another theory; its laws can then be asked about",
     ),
     ("atlas", ""),
-    ("import", "open FILE opens a theory"),
     ("export", "save FILE writes the theory as text"),
     (
         "journal",

@@ -56,6 +56,9 @@ pub enum Expected {
 /// What should, or should not, follow from the laws.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub struct Claim {
+    /// Variables for which there should be values, by their numbers in the signature; the other
+    /// variables are universally quantified, and each value may depend on all of them.
+    pub unknowns: Vec<u32>,
     /// Its name, if it has one.
     pub name: Option<String>,
     /// The left side, in the bank of the theory.

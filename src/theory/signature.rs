@@ -94,6 +94,8 @@ pub struct Signature {
     longest: usize,
     has_hash: bool,
     has_implicit: bool,
+    /// The equality by which a question with unknowns is asked.
+    equality: Option<Symbol>,
 }
 
 impl Default for Signature {
@@ -106,6 +108,7 @@ impl Default for Signature {
             longest: 0,
             has_hash: false,
             has_implicit: false,
+            equality: None,
         }
     }
 }
@@ -195,6 +198,26 @@ impl Signature {
             self.sorts[0] = name.to_owned();
             return Ok(Sort(0));
         }
+        if self.sorts.len() >= Sort::LIMIT {
+            return Err(SignatureFull);
+        }
+        self.sorts.push(name.to_owned());
+        Ok(Sort(self.sorts.len() as u16 - 1))
+    }
+
+    /// The symbol that was added as the equality by which a question with unknowns is asked.
+    pub(crate) fn equality(&self) -> Option<Symbol> {
+        self.equality
+    }
+
+    /// Says which symbol is the equality by which a question with unknowns is asked.
+    pub(crate) fn set_equality(&mut self, equality: Symbol) {
+        self.equality = Some(equality);
+    }
+
+    /// Adds a sort beside those there are, the unnamed one included. Its name must be one that no
+    /// text can have.
+    pub(crate) fn add_inner_sort(&mut self, name: &str) -> Result<Sort, SignatureFull> {
         if self.sorts.len() >= Sort::LIMIT {
             return Err(SignatureFull);
         }

@@ -32,6 +32,9 @@ pub fn judge(json: &Value) -> Judged<()> {
             let claim = &json["claim"];
             let equations = paper.lemmas()?;
             absent(claim, "when")?;
+            if let Some(witness) = claim.get("witness") {
+                paper.witness(claim, witness)?;
+            }
             paper.chain(claim, &claim["steps"], &equations)
         }
         "algebra" => paper.algebra(),
@@ -254,13 +257,15 @@ impl<'j> Paper<'j> {
         }
         let claim = &self.json["claim"];
         absent(claim, "when")?;
-        absent(claim, "unknowns")?;
         let mut at = BTreeMap::new();
         for (name, element) in claim["with"].as_object().ok_or("no with")? {
             let variable = self.known.get(&(name.clone(), None)).copied();
             let size = self.size(variable.ok_or("no such variable")?)?;
             let element = element.as_u64().filter(|element| *element < size);
             at.insert(name.clone(), element.ok_or("no such element")?);
+        }
+        if let Some(unknowns) = claim.get("unknowns") {
+            return self.differ(claim, list(unknowns)?, at);
         }
         let left = self.value(self.term(&claim["left"])?, &at)?;
         let right = self.value(self.term(&claim["right"])?, &at)?;
@@ -269,6 +274,51 @@ impl<'j> Paper<'j> {
         ensure(list(&claim["values"])?[..] == stated, || {
             "other values".to_owned()
         })
+    }
+
+    /// Has every unknown a value, and does none occur in the claim any more?
+    fn witness(&self, claim: &Value, witness: &Value) -> Judged<()> {
+        let values = witness.as_object().ok_or("no witness")?;
+        let mut terms = vec![self.term(&claim["left"])?, self.term(&claim["right"])?];
+        for value in values.values() {
+            terms.push(self.term(value)?);
+        }
+        let occurs = |name: &String| terms.iter().any(|t| self.variables[*t].contains(name));
+        match values.keys().find(|name| occurs(name)) {
+            None => Ok(()),
+            Some(name) => Err(format!("{name} still occurs")),
+        }
+    }
+
+    /// Do the sides differ for all values of the unknowns?
+    fn differ(
+        &self,
+        claim: &Value,
+        unknowns: &[Value],
+        mut at: BTreeMap<String, u64>,
+    ) -> Judged<()> {
+        absent(claim, "values")?;
+        let sides = [self.term(&claim["left"])?, self.term(&claim["right"])?];
+        let mut sizes = Vec::new();
+        for unknown in unknowns {
+            let name = text(unknown)?.to_owned();
+            ensure(!at.contains_key(&name), || {
+                "a value of an unknown".to_owned()
+            })?;
+            let variable = self.known.get(&(name.clone(), None)).copied();
+            sizes.push((name, self.size(variable.ok_or("no such unknown")?)?));
+        }
+        let all: u64 = sizes.iter().map(|(_, size)| size).product();
+        for number in 0..all {
+            let mut rest = number;
+            for (name, size) in &sizes {
+                at.insert(name.clone(), rest % size);
+                rest /= size;
+            }
+            let same = self.value(sides[0], &at)? == self.value(sides[1], &at)?;
+            ensure(!same, || format!("the sides agree: {at:?}"))?;
+        }
+        Ok(())
     }
 
     /// How many elements the sort of a term has.

@@ -2,10 +2,11 @@
 
 use super::{Command, Group, Operand};
 use crate::language::Fault;
-use crate::session::{Opened, Session};
+use crate::session::Opened;
 use crate::shell::desk::Shell;
 use crate::shell::layout::{fold, fold_hanging};
 use crate::shell::line::Line;
+use crate::shell::places;
 use crate::shell::problem::Problem;
 use crate::shell::quantity::count;
 
@@ -38,7 +39,7 @@ fn run(shell: &mut Shell, mut line: Line<'_>) -> Result<(), Problem> {
     // A path with blanks is understood without quotes too, since nothing else can follow.
     let name = if line.end().is_ok() { name } else { rest };
     let library = shell.session.library().clone();
-    let opened = Session::open(name, library).map_err(Problem::open)?;
+    let opened = places::open(name, library).map_err(Problem::open)?;
     if !shell.may_put_away() {
         return Ok(());
     }

@@ -103,8 +103,14 @@ fn render(shell: &Shell, answer: &Answer, short: bool) -> String {
                 .frontier
                 .as_ref()
                 .map_or(0, |frontier| frontier.rules);
+            // A question with unknowns begins with the word for it.
+            let word = if answer.question.starts_with("find ") {
+                ""
+            } else {
+                "prove "
+            };
             let text = format!(
-                "Answer {} is undecided after {}: there is no proof to show. prove {} within 60s looks longer.",
+                "Answer {} is undecided after {}: there is no proof to show. {word}{} within 60s looks longer.",
                 answer.number,
                 count(tried, "rule"),
                 answer.question

@@ -128,7 +128,7 @@ impl Helper {
     fn takes_files(text: &str) -> bool {
         let first = text.split_whitespace().next();
         let has_operand = text.trim_start().contains(char::is_whitespace);
-        has_operand && matches!(first, Some("open" | "save" | "use"))
+        has_operand && matches!(first, Some("open" | "save" | "use" | "import"))
     }
 }
 

@@ -122,6 +122,7 @@ pub const DECLARATION_PAGES: &[Page] = &[
         forms: &[
             ("claim comm: x * y = y * x", "what should follow"),
             ("claim x * y != y * x", "what should not"),
+            ("claim find w: x * w = y", "there should be values"),
         ],
         page: "A claim is not used to find anything out. check verifies all claims, here and on the \
                command line.",

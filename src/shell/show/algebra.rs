@@ -19,7 +19,12 @@ pub fn text(found: &AlgebraText, look: Look) -> String {
         .map(|(v, value)| format!("{v} = {value}"))
         .collect();
     let [(left, s), (right, t)] = &found.sides;
-    let differ = format!("{left} = {s} and {right} = {t}");
+    let differ = if found.unknowns.is_empty() {
+        format!("{left} = {s} and {right} = {t}")
+    } else {
+        let unknowns = found.unknowns.join(", ");
+        format!("{left} and {right} differ for all values of {unknowns}")
+    };
     let line = if with.is_empty() {
         differ
     } else {

@@ -56,6 +56,7 @@ pub fn answer(answer: &Answer, session: &Session, look: Look, place: Place) -> S
     let mut text = heading(look, ink(answer.verdict), answer.verdict.text(), &facts);
     match answer.verdict {
         Verdict::Equal => {
+            text += &values(answer, session, look);
             if let Some(proof) = session.proof_head(answer, LONGEST_CHAIN) {
                 text += &short_proof(&proof, answer, session, look, place);
             }
@@ -72,6 +73,25 @@ pub fn answer(answer: &Answer, session: &Session, look: Look, place: Place) -> S
             if let Some(frontier) = &answer.frontier {
                 text += &self::frontier(frontier, look, place);
             }
+        }
+    }
+    text
+}
+
+/// The values that were found for unknowns, one line each.
+fn values(answer: &Answer, session: &Session, look: Look) -> String {
+    let breaker = Breaker::new(&session.theory().signature);
+    let mut text = String::new();
+    for (unknown, value) in &answer.values {
+        let label = format!("    {unknown} = ");
+        let room = look.width.saturating_sub(columns(&label));
+        for (place, piece) in breaker.pieces(value, room, room).into_iter().enumerate() {
+            let label = if place == 0 {
+                label.clone()
+            } else {
+                " ".repeat(columns(&label))
+            };
+            text += &format!("{label}{}\n", &value[piece]);
         }
     }
     text
