@@ -11,6 +11,10 @@ pub enum StopReason {
     Flag,
     /// The deadline has passed.
     Deadline,
+    /// The steps that this part of the search may take are used up.
+    Steps,
+    /// This part of the search needs more memory than it may have.
+    Memory,
 }
 
 /// The bounds of a search.
@@ -27,6 +31,7 @@ pub struct Limits {
     pub bytes: usize,
     steps: u64,
     next: u64,
+    most: u64,
 }
 
 /// How many elementary steps (table look-ups and the like) pass between two looks at the clock.
@@ -41,6 +46,7 @@ impl Limits {
             bytes: 512 << 20,
             steps: 0,
             next: 0,
+            most: u64::MAX,
         }
     }
 
@@ -57,7 +63,20 @@ impl Limits {
             return Ok(());
         }
         self.next = self.steps + STRIDE;
+        if self.steps > self.most {
+            return Err(StopReason::Steps);
+        }
         self.look()
+    }
+
+    /// Lets what follows take so many steps, roughly; none: as many as it needs.
+    pub(super) fn allow(&mut self, steps: Option<u64>) {
+        self.most = steps.map_or(u64::MAX, |steps| self.steps.saturating_add(steps));
+    }
+
+    /// How many steps have been counted.
+    pub fn steps(&self) -> u64 {
+        self.steps
     }
 
     /// Looks at the flag and the clock.
