@@ -9,6 +9,7 @@
 use super::equation::{Equation, Step};
 use super::limits::{Limits, StopReason};
 use super::tables::{Algebra, Table};
+use crate::term::Variable;
 
 /// An assignment under which the sides of an equation differ.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -28,12 +29,17 @@ pub struct Evaluator {
     arrays: Vec<u8>,
     /// Does the register have an array?
     many: Vec<bool>,
+    /// The registers under the assignments that are tried first.
+    lanes: Vec<[u8; LANES]>,
     looked_up: u64,
 }
 
 /// The most assignments in a block, and the most bytes of all arrays.
 const LONGEST_BLOCK: usize = 2048;
 const MOST_BYTES: usize = 1 << 18;
+
+/// Longer equations are not tried under scattered assignments, so that limits are heeded.
+const LONGEST_PROBE: usize = 1000;
 
 impl Evaluator {
     /// Does the equation hold under every assignment?
@@ -64,11 +70,16 @@ impl Evaluator {
         if equation.left() == equation.right() {
             return Ok(None);
         }
-        let ranges = ranges(algebra, equation);
-        let probed = probe(algebra, equation, &ranges);
-        if probed.is_some() {
-            return Ok(probed);
+        if let Some(lane) = self.probe(algebra, equation) {
+            let size = |variable: &Variable| algebra.size(variable.sort);
+            let sizes = equation.variables().iter().map(size).enumerate();
+            let assignment: Vec<u32> = sizes
+                .map(|(place, range)| spread(place, lane, range))
+                .collect();
+            let values = algebra.evaluate(equation, &assignment);
+            return Ok(Some(Refutation { assignment, values }));
         }
+        let ranges = ranges(algebra, equation);
         let outer = self.prepare(equation, &ranges);
         let length: usize = ranges[outer..]
             .iter()
@@ -98,6 +109,43 @@ impl Evaluator {
                 return Ok(None);
             }
         }
+    }
+
+    /// Tries a few scattered assignments side by side: most algebras refute most equations under
+    /// most assignments. Gives the first lane in which the sides differ.
+    fn probe(&mut self, algebra: &Algebra, equation: &Equation) -> Option<usize> {
+        if equation.registers() > LONGEST_PROBE {
+            return None;
+        }
+        self.lanes.clear();
+        for (place, variable) in equation.variables().iter().enumerate() {
+            let range = algebra.size(variable.sort);
+            let value = |lane| spread(place, lane, range) as u8;
+            self.lanes.push(std::array::from_fn(value));
+        }
+        for &step in equation.steps() {
+            let table = algebra.table(step.symbol);
+            let value = match (equation.arguments(step), table.quick()) {
+                (&[a], Some(quick)) => {
+                    let a = &self.lanes[a as usize];
+                    std::array::from_fn(|lane| quick[usize::from(a[lane])])
+                }
+                (&[a, b], Some(quick)) => {
+                    let (a, b) = (&self.lanes[a as usize], &self.lanes[b as usize]);
+                    std::array::from_fn(|lane| quick[usize::from(a[lane] << 4 | b[lane])])
+                }
+                (arguments, _) => std::array::from_fn(|lane| {
+                    let registers = arguments
+                        .iter()
+                        .map(|&from| self.lanes[from as usize][lane]);
+                    table.values()[cell(table, registers)]
+                }),
+            };
+            self.lanes.push(value);
+        }
+        self.looked_up += (LANES * equation.steps().len()) as u64;
+        let (left, right) = (self.lanes[equation.left()], self.lanes[equation.right()]);
+        (left != right).then(|| (0..LANES).find(|&lane| left[lane] != right[lane]))?
     }
 
     /// Sizes the buffers, and tells how many variables are outside the blocks.
@@ -208,29 +256,17 @@ impl Evaluator {
 }
 
 fn ranges(algebra: &Algebra, equation: &Equation) -> Vec<u32> {
-    let size = |variable: &crate::term::Variable| algebra.size(variable.sort);
+    let size = |variable: &Variable| algebra.size(variable.sort);
     equation.variables().iter().map(size).collect()
 }
 
-/// Tries a few scattered assignments, where there are many: most algebras refute most equations
-/// under most assignments.
-fn probe(algebra: &Algebra, equation: &Equation, ranges: &[u32]) -> Option<Refutation> {
-    const FEW: u64 = 32;
-    let product = ranges
-        .iter()
-        .fold(1u64, |all, &range| all.saturating_mul(u64::from(range)));
-    if product <= FEW || equation.registers() > 1000 {
-        return None;
-    }
-    for offset in 0..3u32 {
-        let spread = |(place, range): (usize, &u32)| (place as u32 * (offset + 1) + offset) % range;
-        let assignment: Vec<u32> = ranges.iter().enumerate().map(spread).collect();
-        let values = algebra.evaluate(equation, &assignment);
-        if values[0] != values[1] {
-            return Some(Refutation { assignment, values });
-        }
-    }
-    None
+/// How many assignments are tried before all others, side by side.
+const LANES: usize = 8;
+
+/// Scattered values: different ones for neighbouring variables, and for a variable in the lanes.
+#[inline]
+fn spread(place: usize, lane: usize, range: u32) -> u32 {
+    (place * (lane + 1) + lane) as u32 % range
 }
 
 /// The next assignment, the last variable turning fastest; false after the last one.

@@ -10,6 +10,7 @@
 pub(super) mod bijective;
 mod decide;
 pub(super) mod grid;
+mod program;
 mod propagate;
 pub(super) mod sizes;
 mod state;
@@ -78,6 +79,10 @@ struct Attempt {
 
 /// How many failures one try may meet in the first round; each round allows three times as many.
 const FIRST_FAILURES: u64 = 300;
+
+/// How many elementary steps it may take, growing alike: a size with a great many instances of the
+/// laws must not keep the search from the others.
+const FIRST_STEPS: u64 = 3_000_000;
 
 /// How many times more failures the weighted order may meet than the other: on lattices it is the
 /// better one by far, on some problems with few failures the other is.
@@ -235,11 +240,17 @@ fn attempt_once(
         return Ok(Run::TooLarge);
     };
     attempt.failures.resize(grid.cells(), 0);
-    let failures = FIRST_FAILURES.saturating_mul(3u64.saturating_pow(round - 1));
+    let growth = 3u64.saturating_pow(round - 1);
     let mut tree = Tree::new(&grid, std::mem::take(&mut attempt.failures));
-    let result = run_both(&mut tree, failures, limits);
+    limits.allow(Some(FIRST_STEPS.saturating_mul(growth)));
+    let result = run_both(&mut tree, FIRST_FAILURES.saturating_mul(growth), limits);
+    limits.allow(None);
     attempt.failures = tree.into_failures();
-    result
+    match result {
+        Err(StopReason::Steps) => Ok(Run::Unsettled),
+        Err(StopReason::Memory) => Ok(Run::TooLarge),
+        result => result,
+    }
 }
 
 fn run_both(tree: &mut Tree<'_>, failures: u64, limits: &mut Limits) -> Result<Run, StopReason> {

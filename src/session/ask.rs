@@ -21,6 +21,9 @@ pub(super) const CHECK_LIMIT: WorkLimit = WorkLimit::DEFAULT;
 
 /// For how long rules are made before algebras are searched for as well.
 const HEAD_START: Duration = Duration::from_millis(25);
+/// For how long the search for an algebra has a core for itself: most that are found at all are
+/// found by then.
+const ALGEBRAS_FIRST: Duration = Duration::from_secs(2);
 /// A theory that has formed more pairs than this without being complete is not easy.
 const EASY: u64 = 10_000;
 
@@ -263,6 +266,9 @@ impl Session {
         let halt = Arc::new(AtomicBool::new(false));
         let caught_one = Arc::new(AtomicBool::new(false));
         let mut limits = work.algebra_limits(halt.clone());
+        if means == Means::All {
+            limits.share_from(Instant::now() + ALGEBRAS_FIRST);
+        }
         let (ended, caught) = std::thread::scope(|scope| {
             let done = caught_one.clone();
             let hunter = scope.spawn(move || {

@@ -3,7 +3,7 @@
 use super::super::limits::{Limits, StopReason};
 use super::super::tables::{Algebra, Counterexample};
 use super::grid::{Block, Cell, Grid};
-use super::propagate::{examine_all, propagate};
+use super::propagate::{Examiner, Halt};
 use super::state::{Conflict, OPEN, Point, State};
 
 /// Which open cell is decided next. Each order settles problems that the other does not.
@@ -22,7 +22,7 @@ pub(super) enum Run {
     Found(Box<Counterexample>),
     /// There is none of this size.
     None,
-    /// The failures that were allowed are used up.
+    /// The failures or steps that were allowed are used up.
     Unsettled,
     /// The size needs more memory than it may have.
     TooLarge,
@@ -49,7 +49,7 @@ struct Level {
 pub(super) struct Tree<'a> {
     grid: &'a Grid<'a>,
     state: State,
-    registers: Vec<u8>,
+    examiner: Examiner,
     named: Vec<u32>,
     levels: Vec<Level>,
     /// The state after the first propagation.
@@ -62,7 +62,7 @@ impl<'a> Tree<'a> {
         Tree {
             root: state.point(),
             state,
-            registers: vec![OPEN; grid.registers],
+            examiner: Examiner::new(grid),
             named: vec![0; grid.sizes.len()],
             levels: Vec::new(),
             grid,
@@ -75,9 +75,11 @@ impl<'a> Tree<'a> {
 
     /// Propagates what holds without any decision. False if no algebra has these sizes.
     pub(super) fn begin(&mut self, limits: &mut Limits) -> Result<bool, StopReason> {
-        let done = examine_all(self.grid, &mut self.state, &mut self.registers, limits)?;
+        let done = self
+            .examiner
+            .examine_all(self.grid, &mut self.state, limits);
         self.root = self.state.point();
-        Ok(done.is_ok())
+        Ok(settled(done)?.is_ok())
     }
 
     /// Takes all decisions back, refuted ones too; failures are remembered.
@@ -109,9 +111,6 @@ impl<'a> Tree<'a> {
                 let Some(level) = self.levels.pop() else {
                     return Ok(Run::None);
                 };
-                if self.state.bytes() > limits.bytes {
-                    return Ok(Run::TooLarge);
-                }
                 if failed > failures {
                     return Ok(Run::Unsettled);
                 }
@@ -148,7 +147,7 @@ impl<'a> Tree<'a> {
         if self.state.restrict(cell, 1 << value).is_err() {
             return Ok(Err(Conflict));
         }
-        propagate(self.grid, &mut self.state, &mut self.registers, limits)
+        settled(self.examiner.propagate(self.grid, &mut self.state, limits))
     }
 
     /// Takes back a decision that failed and strikes what it refutes.
@@ -162,7 +161,7 @@ impl<'a> Tree<'a> {
         if self.state.restrict(level.cell, !level.refuted).is_err() {
             return Ok(Err(Conflict));
         }
-        propagate(self.grid, &mut self.state, &mut self.registers, limits)
+        settled(self.examiner.propagate(self.grid, &mut self.state, limits))
     }
 
     fn block(&self, cell: Cell) -> (usize, &Block) {
@@ -254,6 +253,15 @@ impl<'a> Tree<'a> {
             assignment,
             smallest: false,
         }
+    }
+}
+
+/// Tells conflicts from being stopped.
+fn settled(done: Result<(), Halt>) -> Result<Result<(), Conflict>, StopReason> {
+    match done {
+        Ok(()) => Ok(Ok(())),
+        Err(Halt::Conflict) => Ok(Err(Conflict)),
+        Err(Halt::Stopped(reason)) => Err(reason),
     }
 }
 

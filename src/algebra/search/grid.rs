@@ -1,8 +1,8 @@
 //! The layout of all cells for one vector of sizes.
 
-use super::super::equation::Equation;
-use super::super::signature::{Problem, Signature};
+use super::super::signature::Problem;
 use super::bijective::{Row, rows};
+use super::program::Program;
 use super::sizes::LARGEST_SIZE;
 use crate::term::Sort;
 
@@ -30,61 +30,6 @@ pub(in crate::algebra) struct Block {
     pub used: bool,
 }
 
-/// A look-up, on registers.
-#[derive(Clone, Copy)]
-pub(super) enum Look {
-    One {
-        base: u32,
-        stride: u32,
-        from: u32,
-    },
-    Two {
-        base: u32,
-        stride: u32,
-        from: u32,
-        other: u32,
-    },
-    /// Base, and a range of [`Program::places`].
-    Many {
-        base: u32,
-        first: u32,
-        last: u32,
-    },
-}
-
-/// An equation with the places of its cells. The first registers hold the variables.
-pub(super) struct Program {
-    /// How many values each variable takes.
-    pub ranges: Box<[u32]>,
-    /// How many bits its values take in a packed instance.
-    pub bits: Box<[u32]>,
-    pub looks: Vec<Look>,
-    /// Pairs of a register and a stride.
-    pub places: Vec<(u32, u32)>,
-    /// Does another look-up use the register?
-    pub inner: Vec<bool>,
-    pub left: usize,
-    pub right: usize,
-    /// Must the sides differ, not be equal?
-    pub differ: bool,
-    pub instances: u32,
-}
-
-impl Program {
-    /// The instance of this number, with some bits for each variable, so that its values, which
-    /// are read far more often than anything else, are read without division.
-    pub(super) fn pack(&self, number: u32) -> u32 {
-        let (mut rest, mut shift, mut packed) = (number, 0, 0);
-        for (&range, &bits) in self.ranges.iter().zip(&self.bits) {
-            // A variable with a single value has no bits, and may come after all of them are used.
-            packed |= (rest % range).checked_shl(shift).unwrap_or(0);
-            rest /= range;
-            shift += bits;
-        }
-        packed
-    }
-}
-
 /// Everything about one vector of sizes that does not change during the search.
 pub(in crate::algebra) struct Grid<'a> {
     pub problem: &'a Problem,
@@ -98,9 +43,10 @@ pub(in crate::algebra) struct Grid<'a> {
     cells: usize,
 }
 
-/// What a cell, and what a watch costs in bytes, roughly.
+/// What a cell costs, and what an instance that is watched, in bytes, roughly. In the end, when
+/// nearly everything is known, every instance may be watched by itself.
 const CELL_BYTES: usize = 64;
-const INSTANCE_BYTES: usize = 48;
+const INSTANCE_BYTES: usize = 24;
 
 /// More cells are never decided in a reasonable time; their tables would only take memory.
 const MOST_CELLS: u32 = 1 << 21;
@@ -127,16 +73,14 @@ impl<'a> Grid<'a> {
         }
         let mut programs = Vec::new();
         for law in &problem.laws {
-            programs.push(law_program(law, &blocks, sizes)?);
+            programs.push(Program::law(law, &blocks, sizes)?);
         }
-        programs.push(claim_program(&problem.claim, &blocks, &problem.signature));
-        let instances: usize = programs
-            .iter()
-            .map(|program| program.instances as usize)
-            .sum();
+        programs.push(Program::claim(&problem.claim, &blocks, &problem.signature));
         if base > MOST_CELLS {
             return None;
         }
+        let counts = programs.iter().map(Program::instances);
+        let instances = counts.fold(0, usize::saturating_add);
         let cost = (base as usize).checked_mul(CELL_BYTES)?;
         if cost.checked_add(instances.checked_mul(INSTANCE_BYTES)?)? > bytes {
             return None;
@@ -179,93 +123,4 @@ fn block(
         cells,
         used,
     })
-}
-
-fn law_program(law: &Equation, blocks: &[Block], sizes: &[u32]) -> Option<Program> {
-    let ranges: Box<[u32]> = law
-        .variables()
-        .iter()
-        .map(|variable| sizes[variable.sort.0 as usize])
-        .collect();
-    let instances = ranges
-        .iter()
-        .try_fold(1u32, |product, &range| product.checked_mul(range))?;
-    let bits: Box<[u32]> = ranges
-        .iter()
-        .map(|range| u32::BITS - (range - 1).leading_zeros())
-        .collect();
-    if bits.iter().sum::<u32>() > u32::BITS {
-        return None;
-    }
-    let mut program = Program {
-        ranges,
-        bits,
-        looks: Vec::with_capacity(law.steps().len()),
-        places: Vec::new(),
-        inner: vec![false; law.registers()],
-        left: law.left(),
-        right: law.right(),
-        differ: false,
-        instances,
-    };
-    add_looks(&mut program, law, blocks);
-    Some(program)
-}
-
-/// The variables of the claim are constants: their registers are look-ups without arguments.
-fn claim_program(claim: &Equation, blocks: &[Block], signature: &Signature) -> Program {
-    let mut program = Program {
-        ranges: Box::new([]),
-        bits: Box::new([]),
-        looks: Vec::with_capacity(claim.registers()),
-        places: Vec::new(),
-        inner: vec![false; claim.registers()],
-        left: claim.left(),
-        right: claim.right(),
-        differ: true,
-        instances: 1,
-    };
-    for number in 0..claim.variables().len() {
-        program.looks.push(Look::Many {
-            base: blocks[signature.symbols().len() + number].base,
-            first: 0,
-            last: 0,
-        });
-    }
-    add_looks(&mut program, claim, blocks);
-    program
-}
-
-fn add_looks(program: &mut Program, equation: &Equation, blocks: &[Block]) {
-    for &step in equation.steps() {
-        let block = &blocks[step.symbol.index()];
-        let arguments = equation.arguments(step);
-        for &from in arguments {
-            program.inner[from as usize] = true;
-        }
-        let look = match (arguments, &*block.strides) {
-            (&[from], &[stride]) => Look::One {
-                base: block.base,
-                stride,
-                from,
-            },
-            (&[from, other], &[stride, 1]) => Look::Two {
-                base: block.base,
-                stride,
-                from,
-                other,
-            },
-            _ => {
-                let first = program.places.len() as u32;
-                let places = arguments.iter().copied().zip(block.strides.iter().copied());
-                program.places.extend(places);
-                Look::Many {
-                    base: block.base,
-                    first,
-                    last: program.places.len() as u32,
-                }
-            }
-        };
-        program.looks.push(look);
-    }
 }

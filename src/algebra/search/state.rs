@@ -1,20 +1,40 @@
 //! Domains, the trail, and the watches.
 
 use super::grid::{Cell, Grid};
+use super::program::Tier;
 
 /// No value yet.
 pub(super) const OPEN: u8 = u8::MAX;
 
-/// An instance of a program that waits for a cell to get its value.
+/// All instances of a program in which the variables of the first stages have these values.
 #[derive(Clone, Copy)]
-pub(super) struct Watch {
+pub(super) struct Instance {
     pub program: u32,
-    pub instance: u32,
+    /// How many variables have values.
+    pub stage: u8,
+    /// Their values; the bits of the others are 0.
+    pub packed: u32,
+}
+
+/// An instance that waits for a cell to get its value.
+#[derive(Clone, Copy)]
+struct Watch {
+    instance: Instance,
+    tier: Tier,
     cell: Cell,
     next: u32,
 }
 
 const END: u32 = u32::MAX;
+
+/// What propagation has to look at.
+pub(super) enum Due {
+    /// A cell that got its value.
+    Cell(Cell),
+    /// An instance that waited for this cell.
+    Instance(Instance, Cell),
+    Nothing,
+}
 
 /// The state of the search that backtracking restores.
 ///
@@ -29,12 +49,17 @@ pub(super) struct State {
     pub value: Vec<u8>,
     /// Cells with the domains that they had before.
     trail: Vec<(Cell, u64)>,
-    heads: Vec<u32>,
+    /// For each cell and tier the last watch.
+    heads: Vec<[u32; Tier::COUNT]>,
     watches: Vec<Watch>,
     /// How many watches each cell has.
     pub watchers: Vec<u32>,
-    /// Cells that got their value and whose watches have not been looked at.
-    pub queue: Vec<Cell>,
+    /// Cells that got their value and whose watches have not all been looked at.
+    queue: Vec<Cell>,
+    /// How many cells of the queue have been looked at in each tier.
+    due: [usize; Tier::COUNT],
+    /// The next watch of the last of these.
+    at: [u32; Tier::COUNT],
     /// How often each cell's domain became empty.
     pub failures: Vec<u32>,
 }
@@ -63,10 +88,12 @@ impl State {
             domain,
             value,
             trail: Vec::new(),
-            heads: vec![END; cells],
+            heads: vec![[END; Tier::COUNT]; cells],
             watches: Vec::new(),
             watchers: vec![0; cells],
             queue: Vec::new(),
+            due: [0; Tier::COUNT],
+            at: [END; Tier::COUNT],
             failures,
         }
     }
@@ -79,14 +106,14 @@ impl State {
     }
 
     pub(super) fn undo(&mut self, point: Point) {
-        self.queue.clear();
+        self.forget_queue();
         for &(cell, domain) in self.trail[point.trail..].iter().rev() {
             self.domain[cell.index()] = domain;
             self.value[cell.index()] = only(domain);
         }
         self.trail.truncate(point.trail);
         for watch in self.watches[point.watches..].iter().rev() {
-            self.heads[watch.cell.index()] = watch.next;
+            self.heads[watch.cell.index()][watch.tier.index()] = watch.next;
             self.watchers[watch.cell.index()] -= 1;
         }
         self.watches.truncate(point.watches);
@@ -123,28 +150,48 @@ impl State {
 
     /// Lets an instance wait for a cell that has no value.
     #[inline]
-    pub(super) fn watch(&mut self, cell: Cell, program: u32, instance: u32) {
-        let head = &mut self.heads[cell.index()];
+    pub(super) fn watch(&mut self, cell: Cell, instance: Instance, tier: Tier) {
+        let head = &mut self.heads[cell.index()][tier.index()];
         let next = std::mem::replace(head, self.watches.len() as u32);
         self.watches.push(Watch {
-            program,
             instance,
             cell,
+            tier,
             next,
         });
         self.watchers[cell.index()] += 1;
     }
 
-    /// The first watch of a cell, to be followed by [`State::after`].
-    pub(super) fn first_watch(&self, cell: Cell) -> Option<u32> {
-        Some(self.heads[cell.index()]).filter(|&place| place != END)
+    /// What is to be looked at next. What costs little comes first, even where a cell has watches
+    /// left that cost more: most contradictions are found before those are needed.
+    #[inline]
+    pub(super) fn next_due(&mut self) -> Due {
+        for tier in 0..Tier::COUNT {
+            loop {
+                let place = self.at[tier];
+                if place != END {
+                    let watch = self.watches[place as usize];
+                    self.at[tier] = watch.next;
+                    return Due::Instance(watch.instance, watch.cell);
+                }
+                let Some(&cell) = self.queue.get(self.due[tier]) else {
+                    break;
+                };
+                self.due[tier] += 1;
+                self.at[tier] = self.heads[cell.index()][tier];
+                if tier == 0 {
+                    return Due::Cell(cell);
+                }
+            }
+        }
+        self.forget_queue();
+        Due::Nothing
     }
 
-    /// A watch, and the place of the next one of the same cell.
-    #[inline]
-    pub(super) fn after(&self, place: u32) -> (Watch, Option<u32>) {
-        let watch = self.watches[place as usize];
-        (watch, Some(watch.next).filter(|&place| place != END))
+    fn forget_queue(&mut self) {
+        self.queue.clear();
+        self.due = [0; Tier::COUNT];
+        self.at = [END; Tier::COUNT];
     }
 
     /// How many bytes the watches and the trail take.
