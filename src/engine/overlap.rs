@@ -1,7 +1,8 @@
 //! Overlaps of a new rule with the active ones.
 
-use super::occurrences::{path, subterms};
+use super::occurrences::{Occurrence, path, subterms};
 use super::run::Engine;
+use super::strategy::Strategy;
 use super::waiting::{INNER_BACKWARD, OUTER_BACKWARD, OUTER_IS_PARTNER, Recipe};
 use crate::rewrite::{Limits, RuleId, Stopped, Use};
 use crate::term::{Scoped, Side, TermId};
@@ -21,6 +22,8 @@ const ROOM: usize = 20_000;
 struct Candidate {
     outer: Use,
     at: u16,
+    /// The subterm at that place.
+    place: TermId,
     inner: Use,
 }
 
@@ -49,11 +52,12 @@ impl Engine {
 
     fn as_inner(&mut self, inner: Use, side: TermId, candidates: &mut Vec<Candidate>) {
         let system = &self.system;
-        let mut offer = |by: Use, at: u16| {
+        let mut offer = |Occurrence { by, at, term }: Occurrence| {
             if let Some(rule) = system.current(by.rule) {
                 candidates.push(Candidate {
                     outer: Use { rule, ..by },
                     at,
+                    place: term,
                     inner,
                 });
             }
@@ -61,10 +65,7 @@ impl Engine {
         match system.bank.as_symbol(side) {
             Some(symbol) => {
                 self.occurrences.clean(system, symbol);
-                self.occurrences
-                    .of(symbol)
-                    .iter()
-                    .for_each(|o| offer(o.by, o.at));
+                self.occurrences.of(symbol).iter().for_each(|o| offer(*o));
             }
             None => {
                 let sort = system.bank.sort(side);
@@ -72,7 +73,7 @@ impl Engine {
                     .occurrences
                     .all()
                     .filter(|o| system.bank.sort(o.term) == sort);
-                same.for_each(|o| offer(o.by, o.at));
+                same.for_each(|o| offer(*o));
             }
         }
     }
@@ -88,6 +89,7 @@ impl Engine {
                     candidates.push(Candidate {
                         outer,
                         at,
+                        place: term,
                         inner: Use { rule, ..by },
                     });
                 }
@@ -146,16 +148,27 @@ impl Engine {
         limits: &mut Limits,
     ) -> Result<Option<Recipe>, Stopped> {
         limits.poll(self.system.bank.len())?;
-        let Candidate { outer, at, inner } = candidate;
-        if !self.unifies(outer, at, inner) {
+        let Candidate {
+            outer,
+            at,
+            place,
+            inner,
+        } = candidate;
+        if !self.unify(outer, at, place, inner) {
             return Ok(None);
         }
         self.counts.formed += 1;
-        let Some((left, right)) = self.build(outer, at, inner) else {
-            return Ok(None);
-        };
-        let Some(priority) = self.weigh(left, right, limits)? else {
-            return Ok(None);
+        let priority = match self.is_far(outer, place, inner) {
+            Some(priority) => priority,
+            None => {
+                let Some((left, right)) = self.build(outer, at, inner) else {
+                    return Ok(None);
+                };
+                let Some(priority) = self.weigh(left, right, limits)? else {
+                    return Ok(None);
+                };
+                priority
+            }
         };
         let own_is_inner = inner.rule == own;
         let partner = if own_is_inner { outer.rule } else { inner.rule };
@@ -212,17 +225,53 @@ impl Engine {
         self.weigher.priority(bank, left, right)
     }
 
+    /// The priority of the pair that was just unified, as it stands, if that is so bad that the
+    /// pair will wait for long; then it is neither built nor simplified before it is chosen.
+    fn is_far(&mut self, outer: Use, place: TermId, inner: Use) -> Option<u32> {
+        let Strategy {
+            eager, variable, ..
+        } = self.weigher.strategy;
+        if eager == 0 || self.horizon == 0 {
+            return None;
+        }
+        let (side, outer_right) = self.system.rule(outer.rule).sides(outer.backward);
+        let (_, inner_right) = self.system.rule(inner.rule).sides(inner.backward);
+        let Engine {
+            unifier,
+            weigher,
+            system,
+            ..
+        } = self;
+        let bank = &system.bank;
+        let mut weigh = |term, side| {
+            let scoped = Scoped { term, side };
+            let weigh = &mut |term| weigher.weight_of_lasting(bank, term);
+            unifier.weight(bank, scoped, variable, weigh)
+        };
+        let whole = weigh(side, Side::Left)?;
+        let redex = weigh(place, Side::Left)?;
+        let made = weigh(inner_right, Side::Right)?;
+        let right = weigh(outer_right, Side::Left)?;
+        let left = whole.saturating_sub(redex).saturating_add(made);
+        let priority = weigher.of_weights(left, right);
+        (priority > self.horizon.saturating_mul(eager)).then_some(priority)
+    }
+
     /// Unifies the inner rule's side with the place in the outer rule's side.
     pub(super) fn unifies(&mut self, outer: Use, at: u16, inner: Use) -> bool {
         let (side, _) = self.system.rule(outer.rule).sides(outer.backward);
+        let mut here = side;
+        for &step in &path(&self.system, side, at) {
+            here = self.system.bank.arguments(here)[step as usize];
+        }
+        self.unify(outer, at, here, inner)
+    }
+
+    fn unify(&mut self, outer: Use, at: u16, here: TermId, inner: Use) -> bool {
         let (inner_side, _) = self.system.rule(inner.rule).sides(inner.backward);
         // A rule at its own root is trivial, unless it leaves variables open.
         if outer == inner && at == 0 && !self.system.rule(outer.rule).has_extra(outer.backward) {
             return false;
-        }
-        let mut here = side;
-        for &step in &path(&self.system, side, at) {
-            here = self.system.bank.arguments(here)[step as usize];
         }
         self.unifier.reset();
         let place = Scoped {

@@ -76,6 +76,8 @@ pub struct Engine {
     pub(super) occurrences: Occurrences,
     pub(super) parts: Parts,
     pub(super) weigher: Weigher,
+    /// The priority of the pair that was last chosen for it.
+    pub(super) horizon: u32,
     pub(super) unifier: Unifier,
     pub(super) forming: Option<Forming>,
     pub(super) unformed: VecDeque<RuleId>,
@@ -101,6 +103,7 @@ impl Engine {
             occurrences: Occurrences::default(),
             parts: Parts::default(),
             weigher: Weigher::default(),
+            horizon: 0,
             unifier: Unifier::default(),
             forming: None,
             unformed: VecDeque::new(),
@@ -115,7 +118,7 @@ impl Engine {
 
     /// Uses another strategy from now on. Pairs that wait keep the priority that they have.
     pub fn set_strategy(&mut self, strategy: Strategy) {
-        self.weigher.strategy = strategy;
+        self.weigher = Weigher::new(strategy);
     }
 
     /// From now on this symbol of two arguments is an equality: pairs eq(s, t) = c wait as s = t
@@ -203,6 +206,9 @@ impl Engine {
             }));
         };
         self.counts.chosen += 1;
+        if !by_age {
+            self.horizon = self.horizon.max(taken.priority());
+        }
         match self.waiting.choice(&self.system, taken) {
             None => self.counts.orphans += 1,
             Some(choice) => {

@@ -1,6 +1,7 @@
 //! How the loop chooses among the waiting pairs, and which criteria delete.
 
 use crate::term::{Bank, Head, Symbol, TermId};
+use rustc_hash::FxHashMap;
 
 /// How pairs are weighed and which criteria are used.
 ///
@@ -16,6 +17,9 @@ pub struct Strategy {
     pub variable: u32,
     /// What a symbol weighs that the question does not mention.
     pub foreign: u32,
+    /// A pair that weighs more than this many times what was chosen last is not simplified when it
+    /// is formed, only when it is chosen; 0: all are.
+    pub eager: u32,
     /// Every this many choices the oldest pair is taken instead of the best one.
     pub oldest_every: u64,
     /// Delete pairs that are connected below their peak (Bachmair & Dershowitz 1988)?
@@ -33,10 +37,18 @@ impl Default for Strategy {
             smaller: 1,
             variable: 1,
             foreign: 1,
+            eager: 4,
             oldest_every: 10,
             connected: false,
             ground: true,
         }
+    }
+}
+
+impl Strategy {
+    /// Does a term weigh as much as its size?
+    fn is_plain(&self) -> bool {
+        (self.variable, self.foreign) == (1, 1)
     }
 }
 
@@ -49,15 +61,25 @@ pub(super) struct Weigher {
     pub(super) strategy: Strategy,
     /// By symbol: does the question mention it? Empty if there is no question.
     mentioned: Vec<bool>,
+    /// What lasting terms weigh, unless that is their size.
+    lasting: FxHashMap<TermId, u32>,
     stack: Vec<TermId>,
 }
 
 impl Weigher {
+    pub(super) fn new(strategy: Strategy) -> Self {
+        Weigher {
+            strategy,
+            ..Weigher::default()
+        }
+    }
+
     /// The symbols of a question's sides.
     pub(super) fn mention(&mut self, bank: &Bank, sides: [TermId; 2]) {
         if self.strategy.foreign == 1 {
             return;
         }
+        self.lasting.clear();
         self.mentioned.clear();
         self.mentioned.resize(bank.symbols().len(), false);
         let mut seen = rustc_hash::FxHashSet::default();
@@ -73,8 +95,26 @@ impl Weigher {
     /// The priority of a pair: smaller is better.
     pub(super) fn priority(&mut self, bank: &Bank, left: TermId, right: TermId) -> u32 {
         let (a, b) = (self.weight(bank, left), self.weight(bank, right));
+        self.of_weights(a, b)
+    }
+
+    /// The priority of a pair whose sides weigh so much.
+    pub(super) fn of_weights(&self, a: u32, b: u32) -> u32 {
         let larger = a.max(b).saturating_mul(self.strategy.larger);
         larger.saturating_add(a.min(b).saturating_mul(self.strategy.smaller))
+    }
+
+    /// What a lasting term weighs.
+    pub(super) fn weight_of_lasting(&mut self, bank: &Bank, term: TermId) -> u32 {
+        if self.strategy.is_plain() {
+            return bank.size(term);
+        }
+        if let Some(&known) = self.lasting.get(&term) {
+            return known;
+        }
+        let weight = self.weight(bank, term);
+        self.lasting.insert(term, weight);
+        weight
     }
 
     fn weight(&mut self, bank: &Bank, term: TermId) -> u32 {
@@ -82,7 +122,7 @@ impl Weigher {
             variable, foreign, ..
         } = self.strategy;
         let size = bank.size(term);
-        if (variable, foreign) == (1, 1) || size > MOST_WEIGHED {
+        if self.strategy.is_plain() || size > MOST_WEIGHED {
             return size;
         }
         let mut weight = 0;

@@ -50,6 +50,12 @@ pub(super) struct Taken {
     recipe: Recipe,
 }
 
+impl Taken {
+    pub(super) fn priority(&self) -> u32 {
+        self.recipe.priority
+    }
+}
+
 /// All waiting pairs.
 ///
 /// Pairs lie in batches, one for each rule that was added; a heap has the best priority of each

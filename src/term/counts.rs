@@ -61,6 +61,21 @@ impl VariableCounts {
         present(other.0) & !present(self.0) == 0
     }
 
+    /// The variables that occur, by number, with their occurrences; not for wide counts.
+    pub fn occurring(self) -> impl Iterator<Item = (u32, u32)> {
+        debug_assert!(!self.is_wide());
+        let mut left = self.0;
+        std::iter::from_fn(move || {
+            if left == 0 {
+                return None;
+            }
+            let index = left.trailing_zeros() / 8;
+            let times = (left >> (8 * index)) as u32 & 0xff;
+            left &= !(0xff << (8 * index));
+            Some((index, times))
+        })
+    }
+
     /// The occurrences of the variable with this number; not for wide counts.
     pub fn of(self, index: u32) -> u32 {
         debug_assert!(!self.is_wide());
@@ -98,6 +113,10 @@ mod tests {
             for (index, &count) in a.iter().enumerate() {
                 prop_assert_eq!(x.of(index as u32), u32::from(count));
             }
+            let occurring: Vec<_> = x.occurring().collect();
+            let counted = a.iter().enumerate().filter(|(_, n)| **n > 0);
+            let counted: Vec<_> = counted.map(|(i, n)| (i as u32, u32::from(*n))).collect();
+            prop_assert_eq!(occurring, counted);
         }
     }
 }

@@ -37,6 +37,9 @@ pub struct Unifier {
     bound: Vec<usize>,
     names: Vec<u32>,
     named: Vec<usize>,
+    /// By slot, what the value of the variable weighs; `u32::MAX` for not known.
+    weights: Vec<u32>,
+    weighed: Vec<usize>,
     stack: Vec<(Scoped, Scoped)>,
     visited: Vec<Scoped>,
     frames: Vec<(Scoped, u32)>,
@@ -48,6 +51,9 @@ impl Unifier {
     pub fn reset(&mut self) {
         for slot in self.bound.drain(..) {
             self.bindings[slot] = None;
+        }
+        for slot in self.weighed.drain(..) {
+            self.weights[slot] = u32::MAX;
         }
         for slot in self.named.drain(..) {
             self.names[slot] = u32::MAX;
@@ -117,6 +123,45 @@ impl Unifier {
             self.frames.pop();
         }
         self.built.pop().expect("the root leaves one term")
+    }
+
+    /// What the term with the bindings put in weighs, without building it; nothing if it, or a
+    /// term that it is made of, has too many variables. `weigh` weighs a term as it stands, in
+    /// which a variable weighs `variable`.
+    ///
+    /// Costs a visit per variable and binding; what a variable came to is kept until
+    /// [`Unifier::reset`].
+    pub fn weight(
+        &mut self,
+        bank: &Bank,
+        term: Scoped,
+        variable: u32,
+        weigh: &mut impl FnMut(TermId) -> u32,
+    ) -> Option<u32> {
+        let counts = bank.counts(term.term);
+        if counts.is_wide() {
+            return None;
+        }
+        let mut sum = weigh(term.term);
+        // The recursion goes from variable to variable, of which there are at most thirty-two.
+        for (index, times) in counts.occurring() {
+            let slot = 2 * index as usize + term.side as usize;
+            let Some(Some(bound)) = self.bindings.get(slot).copied() else {
+                continue;
+            };
+            if slot >= self.weights.len() {
+                self.weights.resize(slot + 1, u32::MAX);
+            }
+            if self.weights[slot] == u32::MAX {
+                let value = self.weight(bank, bound, variable, weigh)?;
+                self.weights[slot] = value.min(u32::MAX - 1);
+                self.weighed.push(slot);
+            }
+            let more =
+                (self.weights[slot] - variable.min(self.weights[slot])).saturating_mul(times);
+            sum = sum.saturating_add(more);
+        }
+        Some(sum)
     }
 
     /// Builds an argument at once, or frames it.
@@ -234,6 +279,8 @@ mod tests {
         let mut unifier = Unifier::default();
         // x on the right is another x: f(x, y) = x' unifies, and so does f(x, x) with f(x', y').
         assert!(unifier.unify(&bank, left, right));
+        let size = unifier.weight(&bank, right, 1, &mut |term| bank.size(term));
+        assert_eq!(size, Some(3));
         assert_eq!(unifier.build(&mut bank, right), fxy);
         unifier.reset();
         assert!(unifier.unify(
