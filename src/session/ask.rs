@@ -487,7 +487,7 @@ impl Session {
         if !complete && !matches!(means, Means::Algebra(_)) {
             next.push(format!("complete within {longer}s"));
         }
-        if short && matches!(means, Means::Algebra(_)) {
+        if short && !complete && means != Means::Proof {
             next.push(format!("prove {question} within {longer}s"));
         }
         if short && let Some(Reach { ruled_out, .. }) = reach {

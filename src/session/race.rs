@@ -105,6 +105,7 @@ impl Course {
             }
             None => {
                 let plan = self.planned.pop().expect("it is not empty");
+                self.tried += usize::from(plan.own);
                 let made = match &self.aim {
                     Some(aim) if plan.aimed => Runner::aimed(theory, plan, aim),
                     _ => Runner::planned(theory, plan),
@@ -122,7 +123,6 @@ impl Course {
                         return None;
                     }
                 }
-                self.tried += 1;
                 self.slots.len() - 1
             }
         };
@@ -131,6 +131,12 @@ impl Course {
         slot.busy = true;
         let runner = slot.runner.take().expect("it is free");
         let slice = FIRST_SLICE * 2u32.saturating_pow(slot.rounds.min(20));
+        // Those that are aimed at the question settle most of what is settled.
+        let slice = if runner.goal.is_some() {
+            2 * slice
+        } else {
+            slice
+        };
         Some(Some((place, runner, (!alone).then_some(slice))))
     }
 
