@@ -4,6 +4,8 @@ mod common;
 
 #[path = "outside/arithmetic.rs"]
 mod arithmetic;
+#[path = "outside/classics.rs"]
+mod classics;
 #[path = "outside/complete_sets.rs"]
 mod complete_sets;
 #[path = "outside/finite_groups.rs"]

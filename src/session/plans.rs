@@ -35,17 +35,19 @@ const fn open(order: usize, weights: [u32; 4]) -> Helper {
     }
 }
 
-/// In the order in which they are tried.
-const HELPERS: [Helper; 9] = [
-    aimed(0, [4, 1, 3, 1]),
-    aimed(1, [4, 1, 3, 1]),
-    aimed(2, [4, 1, 3, 1]),
+/// In the order in which they are tried: a greedy cover of what each settled of 133 published
+/// problems within a second or two of CPU time.
+const HELPERS: [Helper; 10] = [
+    aimed(0, [4, 1, 5, 1]),
+    aimed(1, [4, 1, 3, 2]),
+    aimed(2, [4, 1, 3, 2]),
     aimed(0, [4, 1, 2, 1]),
+    aimed(0, [4, 1, 3, 2]),
     open(0, [1, 1, 1, 1]),
     aimed(3, [4, 1, 3, 1]),
     open(0, [2, 1, 2, 2]),
+    aimed(2, [4, 1, 5, 1]),
     aimed(4, [4, 1, 3, 1]),
-    aimed(1, [4, 1, 5, 1]),
 ];
 
 /// The helpers for a theory, the first one first.
