@@ -144,8 +144,7 @@ impl Course {
     fn put(&mut self, place: usize, mut runner: Runner, outcome: Outcome, used: bool) {
         let ended = match outcome {
             Outcome::Met => Some(Ended::Met(place)),
-            // Deleting what is only connected below a peak is sound, but not what is verified.
-            Outcome::Complete if !runner.strategy.connected && runner.goal.is_none() => {
+            Outcome::Complete if runner.own && runner.goal.is_none() => {
                 Some(Ended::Complete(place))
             }
             _ => None,
