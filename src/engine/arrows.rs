@@ -108,7 +108,7 @@ const REWRITING: u8 = Technique::Rewriting.bit();
 
 /// What may be set, by arrow.
 const OPTIONAL: [u8; 6] = [
-    PAIR | REWRITING,
+    PAIR,
     PAIR,
     Technique::Instance.bit(),
     0,
@@ -116,8 +116,10 @@ const OPTIONAL: [u8; 6] = [
     REWRITING | Technique::Orphans.bit(),
 ];
 
-/// What is always on, by arrow: a rule is made of sides in normal form only.
-const ALWAYS: [u8; 6] = [0, REWRITING, 0, 0, 0, 0];
+/// What is always on, by arrow. Pairs are weighed, and rules made, in normal form only; and sides
+/// that are equal modulo associativity and commutativity may be deleted only then, since the pair
+/// could lead to the exchange law.
+const ALWAYS: [u8; 6] = [REWRITING, REWRITING, 0, 0, 0, 0];
 
 /// The table: for each arrow the set of techniques that run on it.
 ///
