@@ -194,7 +194,10 @@ fn show(now: &Simplifying, look: Look) -> String {
     }
     if now.worked > Duration::ZERO {
         let time = show_duration(now.worked);
-        let note = format!("Shares are of the {time} that the engines have worked.");
+        let note = format!(
+            "Deleted or simplified, of those that it was tried on; then the share of the {time} \
+             that the engines have worked."
+        );
         text += &fold(&note, look.width, 0);
     }
     if !now.stated && now.helpers {
