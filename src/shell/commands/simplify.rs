@@ -37,7 +37,9 @@ pub const COMMAND: Command = Command {
            kept in which nothing below the place of the inner rule can be rewritten (Kapur, Musser \
            and Narendran 1988). orphans: a rule that the pair comes from is retired. Waiting pairs \
            are rewritten from time to time, the best ones, to be weighed again.\n\
-           No setting makes an answer wrong; some find it sooner. Left to itself the program \
+           plain is rewriting alone, usual what the program does by itself, strong every criterion \
+           when a pair is chosen and equal siblings once, everything all that can be on, which \
+           often costs more than it saves. No setting makes an answer wrong; some find it sooner. Left to itself the program \
            uses the table called usual where it looks for a complete set of rules.",
     example: "open group\ncomplete\nsimplify\nsimplify chosen prime on\nsimplify strong\nsimplify auto",
     operand: Operand::Words,
