@@ -1,8 +1,7 @@
 //! Pairs that are connected below their peak.
 
 use super::run::Engine;
-use super::waiting::Choice;
-use crate::rewrite::{Limits, Stopped};
+use crate::rewrite::{Limits, Stopped, Use};
 use crate::term::{Scoped, Side, TermId};
 use rustc_hash::FxHashSet;
 use std::collections::VecDeque;
@@ -48,17 +47,11 @@ impl Engine {
         Ok(false)
     }
 
-    /// The term that both rules of an overlap rewrite, after [`Engine::sides_of`] of the same
-    /// overlap.
-    pub(super) fn peak_of(&mut self, choice: &Choice) -> Option<TermId> {
-        let Choice::Overlap { outer, .. } = *choice else {
-            return None;
-        };
+    /// The term that both rules of an overlap rewrite, while the unifier has it.
+    pub(super) fn peak_of(&mut self, outer: Use) -> TermId {
         let (term, _) = self.system.rule(outer.rule).sides(outer.backward);
         let side = Side::Left;
-        Some(
-            self.unifier
-                .build(&mut self.system.bank, Scoped { term, side }),
-        )
+        self.unifier
+            .build(&mut self.system.bank, Scoped { term, side })
     }
 }

@@ -1,9 +1,12 @@
 //! Overlaps of a new rule with the active ones.
 
+use super::arrows::{Arrow, Technique};
+use super::judge::Overlapping;
 use super::occurrences::{Occurrence, path, subterms};
 use super::run::Engine;
+use super::siblings::Siblings;
 use super::strategy::Strategy;
-use super::waiting::{INNER_BACKWARD, OUTER_BACKWARD, OUTER_IS_PARTNER, Recipe};
+use super::waiting::{HEIR, INNER_BACKWARD, OUTER_BACKWARD, OUTER_IS_PARTNER, Recipe};
 use crate::rewrite::{Limits, RuleId, Stopped, Use};
 use crate::term::{Scoped, Side, TermId};
 
@@ -13,6 +16,7 @@ pub(super) struct Forming {
     candidates: Vec<Candidate>,
     next: usize,
     pairs: Vec<Recipe>,
+    siblings: Siblings,
 }
 
 /// So many terms of overlaps are kept before they are forgotten: what fits into a cache.
@@ -42,11 +46,28 @@ impl Engine {
             self.as_inner(own, side, &mut candidates);
             self.as_outer(own, side, &mut candidates);
         }
+        self.form_all(rule, candidates);
+    }
+
+    /// Lists where an active rule overlaps, as the inner one, with all active rules. Done for each
+    /// rule, this lists every overlap.
+    pub(super) fn start_forming_again(&mut self, rule: RuleId) {
+        let mut candidates = Vec::new();
+        let both = !self.system.rule(rule).oriented;
+        for backward in [false, true].into_iter().take(1 + usize::from(both)) {
+            let (side, _) = self.system.rule(rule).sides(backward);
+            self.as_inner(Use { rule, backward }, side, &mut candidates);
+        }
+        self.form_all(rule, candidates);
+    }
+
+    fn form_all(&mut self, rule: RuleId, candidates: Vec<Candidate>) {
         self.forming = Some(Forming {
             rule,
             candidates,
             next: 0,
             pairs: Vec::new(),
+            siblings: Siblings::default(),
         });
     }
 
@@ -119,34 +140,35 @@ impl Engine {
         let mut mark = self.system.mark();
         let mut outcome = Ok(());
         while let Some(&candidate) = forming.candidates.get(forming.next) {
-            match self.form(forming.rule, candidate, limits) {
-                Ok(recipe) => forming.pairs.extend(recipe),
-                Err(stopped) => {
-                    outcome = Err(stopped);
-                    break;
-                }
+            if let Err(stopped) = self.form(&mut forming, candidate, limits) {
+                outcome = Err(stopped);
+                break;
             }
             forming.next += 1;
             if self.system.bank.len() > mark.terms() + ROOM {
                 self.system.rollback(mark);
                 mark = self.system.mark();
+                forming.siblings.forget();
             }
         }
         self.system.rollback(mark);
+        forming.siblings.forget();
         if outcome.is_err() {
             self.forming = Some(forming);
         } else {
             self.waiting.push_batch(forming.rule, forming.pairs);
+            self.counts.trimmed += self.waiting.trim() as u64;
         }
         outcome
     }
 
+    /// Makes one overlap; its pair is added to the others unless it is deleted.
     fn form(
         &mut self,
-        own: RuleId,
+        forming: &mut Forming,
         candidate: Candidate,
         limits: &mut Limits,
-    ) -> Result<Option<Recipe>, Stopped> {
+    ) -> Result<(), Stopped> {
         limits.poll(self.system.bank.len())?;
         let Candidate {
             outer,
@@ -155,55 +177,68 @@ impl Engine {
             inner,
         } = candidate;
         if !self.unify(outer, at, place, inner) {
-            return Ok(None);
+            return Ok(());
         }
         self.counts.formed += 1;
+        let own_is_inner = inner.rule == forming.rule;
+        let partner = if own_is_inner { outer.rule } else { inner.rule };
         let priority = match self.is_far(outer, place, inner) {
             Some(priority) => priority,
             None => {
-                let Some((left, right)) = self.build(outer, at, inner) else {
-                    return Ok(None);
+                let Some(pair) = self.build(outer, at, inner) else {
+                    return Ok(());
                 };
-                let Some(priority) = self.weigh(left, right, limits)? else {
-                    return Ok(None);
+                let overlap = Some(Overlapping { outer, inner });
+                let Some((left, right)) = self.judge(Arrow::Formed, pair, overlap, limits)? else {
+                    return Ok(());
                 };
-                priority
+                if self.arrows.has(Arrow::Siblings, Technique::Instance)
+                    && self.has_sibling(forming, partner, left, right)
+                {
+                    return Ok(());
+                }
+                self.weight_of(left, right)
             }
         };
-        let own_is_inner = inner.rule == own;
-        let partner = if own_is_inner { outer.rule } else { inner.rule };
         let flag = |on: bool, bit: u16| if on { bit } else { 0 };
-        let flags = flag(own_is_inner && partner != own, OUTER_IS_PARTNER)
+        let flags = flag(own_is_inner && partner != forming.rule, OUTER_IS_PARTNER)
             | flag(outer.backward, OUTER_BACKWARD)
             | flag(inner.backward, INNER_BACKWARD);
-        Ok(Some(Recipe {
+        forming.pairs.push(Recipe {
             priority,
             partner: partner.0,
             at,
             flags,
-        }))
+        });
+        Ok(())
     }
 
-    /// The priority of a pair that does not join.
-    fn weigh(
+    /// Is there an equal pair of the same new rule already? If it comes from another partner, it
+    /// has to be kept even when that partner is retired, since it stands for this one too.
+    fn has_sibling(
         &mut self,
+        forming: &mut Forming,
+        partner: RuleId,
         left: TermId,
         right: TermId,
-        limits: &mut Limits,
-    ) -> Result<Option<u32>, Stopped> {
-        if left == right {
-            return Ok(None);
+    ) -> bool {
+        let (arrow, technique) = (Arrow::Siblings, Technique::Instance);
+        let begun = self.tallies.begin(arrow, technique);
+        let number = forming.pairs.len() as u32;
+        let bank = &self.system.bank;
+        let found = forming.siblings.find_or_keep(bank, left, right, number);
+        if let Some(found) = found {
+            let kept = &mut forming.pairs[found as usize];
+            if kept.partner != partner.0 {
+                kept.flags |= HEIR;
+            }
         }
-        let left = self.system.normal_form(left, limits)?;
-        let right = self.system.normal_form(right, limits)?;
-        if left == right || self.is_instance(left, right) || self.joins_by_ac(left, right) {
-            return Ok(None);
-        }
-        Ok(Some(self.weight_of(left, right)))
+        self.tallies.end(arrow, technique, begun, found.is_some());
+        found.is_some()
     }
 
     /// The priority of a pair with these sides.
-    fn weight_of(&mut self, left: TermId, right: TermId) -> u32 {
+    pub(super) fn weight_of(&mut self, left: TermId, right: TermId) -> u32 {
         let bank = &self.system.bank;
         if let Some(equality) = self.equality {
             let whole = [left, right]

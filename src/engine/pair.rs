@@ -1,11 +1,13 @@
 //! What becomes of a pair that is chosen.
 
+use super::arrows::Arrow;
+use super::judge::Overlapping;
 use super::occurrences::path;
 use super::record::{Origin, Record, RecordStep};
 use super::run::Engine;
 use super::waiting::Choice;
 use crate::order::Comparison;
-use crate::rewrite::{Joining, Limits, RuleId, Step, StepBy, Stopped};
+use crate::rewrite::{Limits, RuleId, Step, StepBy, Stopped};
 use crate::term::{TermId, renumber};
 
 /// Sides larger than this are not kept: such a rule would cost more than it can be worth.
@@ -25,10 +27,13 @@ impl Engine {
         };
         let left_normal = self.system.normal_form(left, limits)?;
         let right_normal = self.system.normal_form(right, limits)?;
-        if left_normal == right_normal
-            || self.is_instance(left_normal, right_normal)
-            || self.joins_by_ac(left_normal, right_normal)
-        {
+        // Overlaps were judged; without these tests, a rule that was retired could come back.
+        let is_known = |engine: &mut Engine| {
+            !matches!(choice, Choice::Overlap { .. })
+                && (engine.is_instance(left_normal, right_normal)
+                    || engine.joins_by_ac(left_normal, right_normal))
+        };
+        if left_normal == right_normal || is_known(self) {
             self.counts.redundant += 1;
             return Ok(());
         }
@@ -59,46 +64,28 @@ impl Engine {
         Ok(())
     }
 
-    /// Does the pair join, or is it an instance of what is kept? Leaves no trace.
+    /// Is the pair of an overlap deleted by some technique? Leaves no trace.
     fn is_redundant(&mut self, choice: &Choice, limits: &mut Limits) -> Result<bool, Stopped> {
         let mark = self.system.mark();
         let answer = match self.sides_of(choice) {
             None => Ok(true),
             Some(pair) => {
-                let connected = self.weigher.strategy.connected && self.has_unoriented();
-                let peak = connected.then(|| self.peak_of(choice)).flatten();
-                self.is_redundant_pair(pair, peak, limits)
+                let overlap = match *choice {
+                    Choice::Overlap {
+                        outer,
+                        inner,
+                        heir: false,
+                        ..
+                    } => Some(Overlapping { outer, inner }),
+                    // What stands for another pair has not only its own peak.
+                    _ => None,
+                };
+                let judged = self.judge(Arrow::Chosen, pair, overlap, limits);
+                judged.map(|kept| kept.is_none())
             }
         };
         self.system.rollback(mark);
         answer
-    }
-
-    fn is_redundant_pair(
-        &mut self,
-        pair: (TermId, TermId),
-        peak: Option<TermId>,
-        limits: &mut Limits,
-    ) -> Result<bool, Stopped> {
-        let left = self.system.normal_form(pair.0, limits)?;
-        let right = self.system.normal_form(pair.1, limits)?;
-        if left == right || self.is_instance(left, right) || self.joins_by_ac(left, right) {
-            return Ok(true);
-        }
-        if let Some(peak) = peak
-            && self.is_connected(peak, pair, (left, right), limits)?
-        {
-            self.counts.connected += 1;
-            return Ok(true);
-        }
-        if self.weigher.strategy.ground
-            && self.has_unoriented()
-            && self.system.ground_joins(left, right, limits)? == Joining::Joined
-        {
-            self.counts.ground_joined += 1;
-            return Ok(true);
-        }
-        Ok(false)
     }
 
     /// The sides of a pair as it is made, before simplification.
@@ -106,7 +93,9 @@ impl Engine {
         match *choice {
             Choice::Law(law) => Some(self.laws[law.0 as usize]),
             Choice::Whole(rule) => Some(self.system.rule(rule).sides(false)),
-            Choice::Overlap { outer, at, inner } => {
+            Choice::Overlap {
+                outer, at, inner, ..
+            } => {
                 if !self.unifies(outer, at, inner) {
                     return None;
                 }
@@ -119,7 +108,9 @@ impl Engine {
         match *choice {
             Choice::Law(law) => Origin::Law(law),
             Choice::Whole(rule) => Origin::Rule(rule),
-            Choice::Overlap { outer, at, inner } => {
+            Choice::Overlap {
+                outer, at, inner, ..
+            } => {
                 let (side, _) = self.system.rule(outer.rule).sides(outer.backward);
                 Origin::Overlap {
                     outer,

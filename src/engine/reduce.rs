@@ -1,14 +1,19 @@
 //! Simplifying the active rules by a new one.
 
+use super::arrows::{Arrow, Technique};
+use super::parts::Parts;
 use super::record::{Origin, Record};
 use super::run::Engine;
 use crate::rewrite::{Limits, RuleId, Stopped, System, Use};
 use crate::term::{Bank, Substitution, TermId, instantiate, match_term};
 use rustc_hash::FxHashSet;
+use std::time::{Duration, Instant};
 
 impl Engine {
     /// Retires the active rules that the new one makes redundant or whose left side it reduces;
     /// notes those whose right side it reduces.
+    ///
+    /// Only what the table of arrows has switched on is done.
     pub(super) fn reduce_others(&mut self, new: RuleId) {
         let mut retired = FxHashSet::default();
         let mut stale = FxHashSet::default();
@@ -39,7 +44,8 @@ impl Engine {
         self.stale.extend(stale);
         let rule = self.system.rule(new);
         let (left, right) = (rule.left, rule.right);
-        if rule.oriented && contains_instance(&self.system.bank, left, right) {
+        let rewriting = self.arrows.has(Arrow::Active, Technique::Rewriting);
+        if rewriting && rule.oriented && contains_instance(&self.system.bank, left, right) {
             self.stale.push(new);
         }
     }
@@ -48,14 +54,56 @@ impl Engine {
     pub(super) fn retire(&mut self, id: RuleId) {
         self.unoriented -= usize::from(!self.system.rule(id).oriented);
         self.system.retire(id);
-        self.counts.orphans += self.waiting.drop_batch(id) as u64;
+        let dropped = self.waiting.drop_batch(id);
+        self.count_orphans(dropped);
         self.counts.retired += 1;
+    }
+
+    /// Pairs are gone because a rule that they come from is retired.
+    pub(super) fn count_orphans(&mut self, count: usize) {
+        self.counts.orphans += count as u64;
+        let (arrow, technique) = (Arrow::Waiting, Technique::Orphans);
+        self.tallies
+            .count(arrow, technique, [count, count], Duration::ZERO);
     }
 
     /// The active rules, other than the new one, that it reduces, and whether in the side whose
     /// change makes the overlaps of the rule void.
     fn reducible(&mut self, by: Use, pattern: TermId) -> Vec<(RuleId, bool)> {
         let mut parts = std::mem::take(&mut self.parts);
+        let mut found = Vec::new();
+        if self.arrows.has(Arrow::Active, Technique::Rewriting) {
+            let begun = Instant::now();
+            self.rewritten_by(&mut parts, by, pattern, &mut found);
+            let counts = [1, found.len()];
+            self.tallies
+                .count(Arrow::Active, Technique::Rewriting, counts, begun.elapsed());
+        }
+        if self.arrows.has(Arrow::Active, Technique::Instance) {
+            let begun = Instant::now();
+            let (rewritten, mut asked) = (found.len(), 0);
+            for &id in parts.unoriented(&self.system) {
+                let (left, right) = self.system.rule(id).sides(false);
+                asked += 1;
+                if id != by.rule && self.subsumes(by, left, right) {
+                    found.push((id, true));
+                }
+            }
+            let counts = [asked, found.len() - rewritten];
+            self.tallies
+                .count(Arrow::Active, Technique::Instance, counts, begun.elapsed());
+        }
+        self.parts = parts;
+        found
+    }
+
+    fn rewritten_by(
+        &mut self,
+        parts: &mut Parts,
+        by: Use,
+        pattern: TermId,
+        found: &mut Vec<(RuleId, bool)>,
+    ) {
         let smallest = self.system.bank.size(pattern);
         let mut substitution = Substitution::default();
         let symbol = self.system.bank.as_symbol(pattern);
@@ -67,7 +115,6 @@ impl Engine {
             match_term(&system.bank, pattern, term, &mut substitution)
                 && decreases(system, by, term, &mut substitution)
         });
-        let mut found = Vec::new();
         for (term, owners) in terms {
             for id in owners.into_iter().filter(|id| *id != by.rule) {
                 let rule = self.system.rule(id);
@@ -75,14 +122,6 @@ impl Engine {
                 found.push((id, void));
             }
         }
-        for &id in parts.unoriented(&self.system) {
-            let (left, right) = self.system.rule(id).sides(false);
-            if id != by.rule && self.subsumes(by, left, right) {
-                found.push((id, true));
-            }
-        }
-        self.parts = parts;
-        found
     }
 
     /// Is the equation an instance of the new one?

@@ -1,5 +1,6 @@
 //! The engine and its loop.
 
+use super::arrows::{Arrow, Arrows, Tallies, Technique};
 use super::occurrences::Occurrences;
 use super::overlap::Forming;
 use super::parts::Parts;
@@ -11,6 +12,7 @@ use crate::rewrite::{Limits, RuleId, RuleState, Stopped, System, Use};
 use crate::term::{Symbol, SymbolInfo, TermId, Unifier};
 use rustc_hash::FxHashMap;
 use std::collections::VecDeque;
+use std::time::{Duration, Instant};
 
 /// What the loop has done so far.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
@@ -27,6 +29,8 @@ pub struct Counts {
     pub ground_joined: u64,
     /// Chosen pairs that were connected below their peak.
     pub connected: u64,
+    /// Pairs that were not prime.
+    pub composite: u64,
     /// Waiting pairs that went with a retired rule.
     pub orphans: u64,
     /// Rules that were retired.
@@ -36,6 +40,16 @@ pub struct Counts {
     /// Pairs, or overlaps of rules, that were given up because they are too large. While there
     /// are any, the rules are never called complete.
     pub dropped: u64,
+    /// Waiting pairs that were given up because there were too many, the worst ones; the rules are
+    /// never called complete after that either.
+    pub trimmed: u64,
+}
+
+impl Counts {
+    /// Was anything given up?
+    pub fn is_whole(&self) -> bool {
+        self.dropped == 0 && self.trimmed == 0
+    }
 }
 
 /// Two ground terms, in which constants of [`System::question_constant`] stand for variables.
@@ -90,6 +104,16 @@ pub struct Engine {
     pub(super) counts: Counts,
     /// The equality of a question with unknowns.
     pub(super) equality: Option<Symbol>,
+    /// The table of the strategy, without what may not be used now.
+    pub(super) arrows: Arrows,
+    pub(super) tallies: Tallies,
+    /// How many pairs were deleted since the last look because other pairs stand for them.
+    pub(super) leaning: u64,
+    /// Rules all of whose overlaps are to be formed once more.
+    pub(super) again: VecDeque<RuleId>,
+    /// When so many pairs are chosen, the best waiting ones are weighed again.
+    pub(super) refresh_at: u64,
+    worked: Duration,
 }
 
 impl Engine {
@@ -113,12 +137,20 @@ impl Engine {
             ac_symbols: Vec::new(),
             counts: Counts::default(),
             equality: None,
+            arrows: Arrows::default(),
+            tallies: Tallies::default(),
+            leaning: 0,
+            again: VecDeque::new(),
+            refresh_at: 0,
+            worked: Duration::ZERO,
         }
     }
 
     /// Uses another strategy from now on. Pairs that wait keep the priority that they have.
     pub fn set_strategy(&mut self, strategy: Strategy) {
+        let arrows = strategy.arrows;
         self.weigher = Weigher::new(strategy);
+        self.set_arrows(arrows);
     }
 
     /// From now on this symbol of two arguments is an equality: pairs eq(s, t) = c wait as s = t
@@ -127,11 +159,39 @@ impl Engine {
         self.equality = Some(equality);
     }
 
+    /// Uses another table of techniques from now on.
+    pub fn set_arrows(&mut self, arrows: Arrows) {
+        self.weigher.strategy.arrows = arrows;
+        self.arrows = arrows;
+        self.waiting.keeps_orphans = !arrows.has(Arrow::Waiting, Technique::Orphans);
+    }
+
+    /// The table of techniques.
+    pub fn arrows(&self) -> Arrows {
+        self.weigher.strategy.arrows
+    }
+
+    /// What each cell of the table has done.
+    pub fn tallies(&self) -> &Tallies {
+        &self.tallies
+    }
+
+    /// How long the engine has run.
+    pub fn worked(&self) -> Duration {
+        self.worked
+    }
+
+    /// No more than so many pairs may wait; of more, the worst are given up.
+    pub fn set_most_waiting(&mut self, most: usize) {
+        self.waiting.most = most;
+    }
+
     /// Adds a law between two terms of the system's bank; it is looked at in the next run.
     pub fn add_law(&mut self, left: TermId, right: TermId) -> LawId {
         let id = LawId(self.laws.len() as u32);
         self.laws.push((left, right));
         self.waiting.push_law(id);
+        self.arrows = self.weigher.strategy.arrows;
         id
     }
 
@@ -139,6 +199,18 @@ impl Engine {
     ///
     /// `progress` is called after each chosen pair.
     pub fn run(
+        &mut self,
+        limits: &mut Limits,
+        question: Option<&Question>,
+        progress: impl FnMut(&Engine),
+    ) -> Outcome {
+        let begun = Instant::now();
+        let outcome = self.saturate(limits, question, progress);
+        self.worked += begun.elapsed();
+        outcome
+    }
+
+    fn saturate(
         &mut self,
         limits: &mut Limits,
         question: Option<&Question>,
@@ -190,6 +262,13 @@ impl Engine {
                 self.continue_forming(limits)?;
             }
         }
+        while let Some(rule) = self.again.pop_front() {
+            if let Some(rule) = self.system.current(rule) {
+                self.start_forming_again(rule);
+                self.continue_forming(limits)?;
+            }
+        }
+        self.refresh_waiting(limits)?;
         let every = self.weigher.strategy.oldest_every;
         let by_age = every > 0 && self.counts.chosen % every == every - 1;
         let taken = if by_age {
@@ -198,8 +277,11 @@ impl Engine {
             self.waiting.pop_best()
         };
         let Some(taken) = taken.or_else(|| self.waiting.pop_best()) else {
-            let complete = self.counts.dropped == 0;
-            return Ok(Some(if complete {
+            if self.leaning > 0 {
+                self.look_again();
+                return Ok(None);
+            }
+            return Ok(Some(if self.counts.is_whole() {
                 Outcome::Complete
             } else {
                 Outcome::Exhausted
@@ -210,7 +292,7 @@ impl Engine {
             self.horizon = self.horizon.max(taken.priority());
         }
         match self.waiting.choice(&self.system, taken) {
-            None => self.counts.orphans += 1,
+            None => self.count_orphans(1),
             Some(choice) => {
                 if let Err(stopped) = self.process(&choice, limits) {
                     self.counts.chosen -= 1;
@@ -220,6 +302,16 @@ impl Engine {
             }
         }
         Ok(None)
+    }
+
+    /// No pair is left, but some were deleted because others stand for them. Then the rules are
+    /// complete, but not each pair need join by itself, by which a complete set is verified. So all
+    /// overlaps are formed once more and judged without those criteria; equations that make the
+    /// pairs join become rules.
+    fn look_again(&mut self) {
+        self.leaning = 0;
+        self.arrows = self.weigher.strategy.arrows.each_pair_by_itself();
+        self.again = self.active_rules().collect();
     }
 
     /// Makes rules of the laws that are waiting, and simplifies, without forming overlaps.
@@ -249,7 +341,9 @@ impl Engine {
             && self.forming.is_none()
             && self.unformed.is_empty()
             && self.stale.is_empty()
-            && self.counts.dropped == 0
+            && self.again.is_empty()
+            && self.leaning == 0
+            && self.counts.is_whole()
     }
 
     /// The laws, as they were given.

@@ -1,12 +1,12 @@
 //! How the loop chooses among the waiting pairs, and which criteria delete.
 
+use super::arrows::Arrows;
 use crate::term::{Bank, Head, Symbol, TermId};
 use rustc_hash::FxHashMap;
 
 /// How pairs are weighed and which criteria are used.
 ///
-/// No setting makes an answer wrong. Those under which a pair may be deleted that does not join by
-/// rewriting ([`Strategy::connected`]) make a complete rule set harder to verify.
+/// No setting makes an answer wrong.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub struct Strategy {
     /// The weight of a pair is `larger` times its larger side plus `smaller` times the other.
@@ -22,10 +22,8 @@ pub struct Strategy {
     pub eager: u32,
     /// Every this many choices the oldest pair is taken instead of the best one.
     pub oldest_every: u64,
-    /// Delete pairs that are connected below their peak (Bachmair & Dershowitz 1988)?
-    pub connected: bool,
-    /// Delete pairs that join for every order of their variables (Martin & Nipkow 1990)?
-    pub ground: bool,
+    /// Which techniques simplify and delete what.
+    pub arrows: Arrows,
 }
 
 impl Default for Strategy {
@@ -39,8 +37,7 @@ impl Default for Strategy {
             foreign: 1,
             eager: 4,
             oldest_every: 10,
-            connected: false,
-            ground: true,
+            arrows: Arrows::USUAL,
         }
     }
 }

@@ -1,7 +1,7 @@
 //! The waiting pairs, as recipes.
 
 use super::LawId;
-use crate::rewrite::{RuleId, System, Use};
+use crate::rewrite::{RuleId, RuleState, System, Use};
 use rustc_hash::FxHashMap;
 use std::cmp::Reverse;
 use std::collections::BinaryHeap;
@@ -27,13 +27,24 @@ pub(super) const INNER_BACKWARD: u16 = 4;
 pub(super) const WHOLE: u16 = 8;
 /// A law.
 pub(super) const LAW: u16 = 16;
+/// Stands for an equal pair with another partner too, so that it outlives its own partner.
+pub(super) const HEIR: u16 = 32;
+
+/// With more waiting pairs than this, the worst ones are given up: 48 MiB.
+const MOST_PAIRS: usize = 4 << 20;
 
 /// A pair to be made.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub(super) enum Choice {
     Law(LawId),
     Whole(RuleId),
-    Overlap { outer: Use, at: u16, inner: Use },
+    Overlap {
+        outer: Use,
+        at: u16,
+        inner: Use,
+        /// Does it stand for more than this overlap?
+        heir: bool,
+    },
 }
 
 /// What one new rule gave rise to, the best pair last.
@@ -51,7 +62,7 @@ pub(super) struct Taken {
 }
 
 impl Taken {
-    pub(super) fn priority(&self) -> u32 {
+    pub(super) fn priority(self) -> u32 {
         self.recipe.priority
     }
 }
@@ -61,7 +72,7 @@ impl Taken {
 /// Pairs lie in batches, one for each rule that was added; a heap has the best priority of each
 /// batch. So a pair costs twelve bytes, the oldest pairs are found without a second queue, and the
 /// batch of a retired rule is dropped at once.
-#[derive(Clone, Debug, Default)]
+#[derive(Clone, Debug)]
 pub(super) struct Waiting {
     batches: Vec<Batch>,
     best: BinaryHeap<Reverse<(u32, u32)>>,
@@ -69,6 +80,24 @@ pub(super) struct Waiting {
     count: usize,
     /// Where the overlaps of a rule are.
     batch_of: FxHashMap<RuleId, u32>,
+    /// With more pairs than this, the worst ones are given up.
+    pub(super) most: usize,
+    /// Are pairs kept when a rule that they come from is retired?
+    pub(super) keeps_orphans: bool,
+}
+
+impl Default for Waiting {
+    fn default() -> Self {
+        Waiting {
+            batches: Vec::new(),
+            best: BinaryHeap::new(),
+            oldest: 0,
+            count: 0,
+            batch_of: FxHashMap::default(),
+            most: MOST_PAIRS,
+            keeps_orphans: false,
+        }
+    }
 }
 
 impl Waiting {
@@ -168,6 +197,21 @@ impl Waiting {
         self.count += 1;
     }
 
+    /// Puts back what was taken, with another priority.
+    pub(super) fn put_back_as(&mut self, taken: Taken, priority: u32) {
+        let pairs = &mut self.batches[taken.batch as usize].pairs;
+        let place = pairs.partition_point(|pair| pair.priority >= priority);
+        let recipe = Recipe {
+            priority,
+            ..taken.recipe
+        };
+        pairs.insert(place, recipe);
+        let best = pairs[pairs.len() - 1].priority;
+        self.best.push(Reverse((best, taken.batch)));
+        self.oldest = self.oldest.min(taken.batch as usize);
+        self.count += 1;
+    }
+
     /// The overlaps of one rule are those of another from now on, which has the same left side.
     pub(super) fn hand_over(&mut self, from: RuleId, to: RuleId) {
         if let Some(batch) = self.batch_of.remove(&from) {
@@ -177,12 +221,49 @@ impl Waiting {
 
     /// Drops all pairs of the batch of a rule that was retired. Returns how many.
     pub(super) fn drop_batch(&mut self, rule: RuleId) -> usize {
+        if self.keeps_orphans {
+            return 0;
+        }
         let Some(batch) = self.batch_of.remove(&rule) else {
             return 0;
         };
         let dropped = std::mem::take(&mut self.batches[batch as usize].pairs).len();
         self.count -= dropped;
         dropped
+    }
+
+    /// If there are too many pairs, gives up the worst quarter of the overlaps. Returns how many.
+    ///
+    /// Laws and rules that wait to be simplified are kept. Costs a look at every pair, once in as
+    /// many new pairs as it gives up.
+    pub(super) fn trim(&mut self) -> usize {
+        if self.count <= self.most {
+            return 0;
+        }
+        let keep = self.most - self.most / 4;
+        let mut priorities: Vec<u32> = Vec::with_capacity(self.count);
+        for batch in &self.batches {
+            priorities.extend(batch.pairs.iter().map(|pair| pair.priority));
+        }
+        let (better, bound, _) = priorities.select_nth_unstable(keep);
+        let bound = *bound;
+        // Of the pairs at the bound itself, so many are kept: those of the oldest batches.
+        let mut room = keep - better.iter().filter(|priority| **priority < bound).count();
+        let before = self.count;
+        for batch in &mut self.batches {
+            let kept = batch.pairs.len();
+            batch.pairs.retain(|pair| {
+                let is_overlap = pair.flags & (LAW | WHOLE) == 0;
+                let at_bound = pair.priority == bound && room > 0;
+                room -= usize::from(at_bound);
+                !is_overlap || pair.priority < bound || at_bound
+            });
+            if batch.pairs.len() < kept {
+                batch.pairs.shrink_to_fit();
+            }
+            self.count -= kept - batch.pairs.len();
+        }
+        before - self.count
     }
 
     /// The pair that a recipe stands for; nothing if one of its rules is retired.
@@ -196,13 +277,16 @@ impl Waiting {
         if flags & WHOLE != 0 {
             return Some(Choice::Whole(RuleId(partner)));
         }
-        let own = system.current(self.batches[taken.batch as usize].rule)?;
-        let partner = system.current(RuleId(partner))?;
+        let own = self.batches[taken.batch as usize].rule;
+        let own = self.standing(system, own, self.keeps_orphans)?;
+        let heir = flags & HEIR != 0;
+        let partner = self.standing(system, RuleId(partner), heir || self.keeps_orphans)?;
         let (outer, inner) = if flags & OUTER_IS_PARTNER != 0 {
             (partner, own)
         } else {
             (own, partner)
         };
+        let is_retired = |id| system.current(id).is_none();
         Some(Choice::Overlap {
             outer: Use {
                 rule: outer,
@@ -213,7 +297,19 @@ impl Waiting {
                 rule: inner,
                 backward: flags & INNER_BACKWARD != 0,
             },
+            heir: heir || is_retired(outer) || is_retired(inner),
         })
+    }
+
+    /// The rule that stands for this one now; what it was last if it is retired and that will do.
+    fn standing(&self, system: &System, mut id: RuleId, retired_too: bool) -> Option<RuleId> {
+        loop {
+            match system.rule(id).state {
+                RuleState::Active => return Some(id),
+                RuleState::Retired => return retired_too.then_some(id),
+                RuleState::Replaced(by) => id = by,
+            }
+        }
     }
 }
 
@@ -249,5 +345,30 @@ mod tests {
         waiting.push_batch(RuleId(2), vec![pair(3), pair(4)]);
         assert_eq!(waiting.drop_batch(RuleId(2)), 2);
         assert!(waiting.pop_best().is_none() && waiting.pop_oldest().is_none());
+    }
+    #[test]
+    fn the_worst_pairs_are_given_up_when_there_are_too_many() {
+        let pair = |priority| Recipe {
+            priority,
+            partner: 0,
+            at: 0,
+            flags: 0,
+        };
+        let mut waiting = Waiting {
+            most: 8,
+            ..Waiting::default()
+        };
+        waiting.push_whole(RuleId(0), 100);
+        waiting.push_batch(RuleId(0), vec![pair(1), pair(9), pair(5), pair(7)]);
+        assert_eq!(waiting.trim(), 0);
+        waiting.push_batch(RuleId(1), (0..4).map(|_| pair(7)).collect());
+        // Six of nine stay, besides the rule that waits to be simplified.
+        assert_eq!(waiting.trim(), 2);
+        assert_eq!(waiting.len(), 7);
+        let rest: Vec<u32> = std::iter::from_fn(|| waiting.pop_best())
+            .map(|t| t.recipe.priority)
+            .collect();
+        assert_eq!(rest, [1, 5, 7, 7, 7, 7, 100]);
+        assert_eq!(waiting.trim(), 0);
     }
 }

@@ -2,6 +2,7 @@
 
 use super::workers::check_directed;
 use super::{Budgets, NoOrder, Session};
+use crate::engine::Arrows;
 use crate::language::{
     Change, Diagnostic, DropFault, Question, parse_question, parse_question_prefix,
 };
@@ -13,6 +14,7 @@ use std::sync::Arc;
 pub(super) struct Snapshot {
     theory: Theory,
     budgets: Budgets,
+    arrows: Option<Arrows>,
     it: Option<TermId>,
     /// What the change was, as it was typed.
     line: String,
@@ -104,6 +106,15 @@ impl Session {
         self.redo.clear();
     }
 
+    /// Changes the table of techniques of all engines, from now on; with nothing, each engine has
+    /// the one that was planned for it. `line` is what was typed.
+    pub fn set_arrows(&mut self, arrows: Option<Arrows>, line: &str) {
+        let before = self.snapshot(line);
+        self.workers.set_arrows(arrows);
+        self.undo.push(before);
+        self.redo.clear();
+    }
+
     /// Takes the last change back.
     pub fn undo(&mut self) -> Option<Undone> {
         let snapshot = self.undo.pop()?;
@@ -126,6 +137,7 @@ impl Session {
         let now = Snapshot {
             theory: std::mem::replace(&mut self.theory, snapshot.theory),
             budgets: std::mem::replace(&mut self.budgets, snapshot.budgets),
+            arrows: self.workers.set_arrows(snapshot.arrows),
             it: std::mem::replace(&mut self.it, snapshot.it),
             line: snapshot.line,
         };
@@ -138,6 +150,7 @@ impl Session {
         Snapshot {
             theory: self.theory.clone(),
             budgets: self.budgets,
+            arrows: self.workers.arrows(),
             it: self.it,
             line: line.to_owned(),
         }

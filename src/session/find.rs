@@ -115,6 +115,7 @@ impl Session {
         work: &mut Work,
     ) -> Result<Found, SessionFault> {
         let mut workers = Workers::default();
+        workers.set_arrows(self.workers.arrows());
         workers.catch_up(&goal.theory, 0)?;
         let hunt = Hunt::new(&goal.theory, goal.question);
         let halt = Arc::new(AtomicBool::new(false));

@@ -1,7 +1,7 @@
 //! Which engines are worth having for a question, beside the one that answers from its rules.
 
 use super::workers::Plan;
-use crate::engine::Strategy;
+use crate::engine::{Arrow, Arrows, Strategy, Technique};
 use crate::order::{Candidate, candidates};
 use crate::theory::Theory;
 
@@ -64,7 +64,10 @@ pub(super) fn helpers(theory: &Theory) -> Vec<Plan> {
                 smaller: helper.smaller,
                 variable: helper.variable,
                 foreign: helper.foreign,
-                connected: helper.connected,
+                arrows: match helper.connected {
+                    true => Arrows::USUAL.with(Arrow::Chosen, Technique::Connected),
+                    false => Arrows::USUAL,
+                },
                 ..Strategy::default()
             },
             own: false,

@@ -8,7 +8,7 @@ use super::control::Work;
 use super::goal::Aim;
 use super::runner::Runner;
 use super::workers::{Ended, NoOrder, Plan, Workers};
-use crate::engine::{Engine, Outcome};
+use crate::engine::{Arrows, Engine, Outcome};
 use crate::rewrite::{Limits, Stopped};
 use crate::term::TermId;
 use crate::theory::Theory;
@@ -29,6 +29,8 @@ pub(super) struct Course {
     later: Vec<Plan>,
     question: Option<(TermId, TermId)>,
     aim: Option<Aim>,
+    /// The table of techniques that new engines get, if it was stated.
+    arrows: Option<Arrows>,
     /// Does nothing but the one engine that completed take part?
     settled: bool,
     tried: usize,
@@ -69,6 +71,7 @@ impl Course {
             later,
             question,
             aim,
+            arrows: workers.arrows(),
             settled: workers.settled,
             tried: workers.tried,
             ended: None,
@@ -111,13 +114,18 @@ impl Course {
                     _ => Runner::planned(theory, plan),
                 };
                 match made {
-                    Ok(runner) => self.slots.push(Slot {
-                        runner: Some(runner),
-                        rounds: 0,
-                        formed: 0,
-                        exhausted: false,
-                        busy: false,
-                    }),
+                    Ok(mut runner) => {
+                        if let Some(arrows) = self.arrows {
+                            runner.engine.set_arrows(arrows);
+                        }
+                        self.slots.push(Slot {
+                            runner: Some(runner),
+                            rounds: 0,
+                            formed: 0,
+                            exhausted: false,
+                            busy: false,
+                        });
+                    }
                     Err(problem) => {
                         self.ended = Some(Err(problem));
                         return None;
@@ -144,10 +152,7 @@ impl Course {
     fn put(&mut self, place: usize, mut runner: Runner, outcome: Outcome, used: bool) {
         let ended = match outcome {
             Outcome::Met => Some(Ended::Met(place)),
-            // Deleting what is only connected below a peak is sound, but not what is verified.
-            Outcome::Complete if !runner.strategy.connected && runner.goal.is_none() => {
-                Some(Ended::Complete(place))
-            }
+            Outcome::Complete if runner.goal.is_none() => Some(Ended::Complete(place)),
             _ => None,
         };
         let slot = &mut self.slots[place];

@@ -266,9 +266,12 @@ fn named_counts(counts: Counts) -> Vec<(&'static str, u64)> {
             "joined for every order of the variables",
             counts.ground_joined,
         ),
+        ("connected below the peak", counts.connected),
+        ("not prime", counts.composite),
         ("dropped with a retired rule", counts.orphans),
         ("rules retired", counts.retired),
         ("right sides simplified", counts.simplified),
         ("given up as too large", counts.dropped),
+        ("given up as too many", counts.trimmed),
     ]
 }

@@ -8,6 +8,7 @@ use super::{
     Answer, Completion, NormalForm, ProgramFault, ProofHead, ProofLine, ProofText, Session,
     SessionFault,
 };
+use crate::engine::Counts;
 use crate::language::print_order;
 use crate::proof::{self, Evidence};
 use crate::rewrite::Stopped;
@@ -34,14 +35,17 @@ impl Session {
         let formed = self.workers.formed();
         let mut work = Work::new(control, "completing", within).formed_before(formed);
         let ended = self.workers.run(&self.theory, None, &mut work)?;
-        let (stopped, remark) = match ended {
-            Ended::Complete(_) | Ended::Met(_) => (None, None),
-            Ended::Exhausted => (None, Some(TOO_LARGE.to_owned())),
-            Ended::Stopped(stopped) => (Some(stopped), None),
-        };
         let tried = self.workers.tried();
         let runner = self.workers.best().expect("there is an engine after a run");
         let engine = &runner.engine;
+        let (stopped, remark) = match ended {
+            Ended::Complete(_) | Ended::Met(_) => (None, None),
+            Ended::Exhausted => (None, Some(given_up(engine.counts()))),
+            Ended::Stopped(stopped) if engine.counts().trimmed > 0 => {
+                (Some(stopped), Some(given_up(engine.counts())))
+            }
+            Ended::Stopped(stopped) => (Some(stopped), None),
+        };
         let rules = engine.system.active();
         let oriented = engine
             .active_rules()
@@ -229,5 +233,16 @@ impl Session {
     }
 }
 
-const TOO_LARGE: &str = "some pairs were too large to keep, so completeness cannot be claimed";
+/// Why the rules cannot be called complete although no pair is left, or will not be.
+fn given_up(counts: Counts) -> String {
+    let trimmed = counts.trimmed;
+    if trimmed > 0 {
+        format!(
+            "so many pairs waited that the {trimmed} worst were given up, so completeness cannot be claimed"
+        )
+    } else {
+        "some pairs were too large to keep, so completeness cannot be claimed".to_owned()
+    }
+}
+
 const DIGEST: Duration = Duration::from_millis(200);

@@ -8,7 +8,7 @@ use super::control::Work;
 use super::plans;
 use super::race::{Course, race};
 use super::runner::Runner;
-use crate::engine::Strategy;
+use crate::engine::{Arrows, Strategy};
 use crate::order::{Candidate, OrderSetting, candidates};
 use crate::rewrite::Stopped;
 use crate::term::TermId;
@@ -84,11 +84,37 @@ pub(super) struct Workers {
     lineage: u32,
     /// The order that the theory states.
     stated: Option<OrderSetting>,
+    /// The table of techniques for all engines, if it was stated.
+    arrows: Option<Arrows>,
 }
 
 impl Workers {
     /// Engines for the theory as it is: those there are, with what was added since, or new ones.
     pub(super) fn catch_up(&mut self, theory: &Theory, lineage: u32) -> Result<(), NoOrder> {
+        let arrows = self.arrows;
+        let done = self.follow(theory, lineage);
+        self.set_arrows(arrows);
+        done
+    }
+
+    /// States the table of techniques for all engines, or leaves it to their plans. Returns what
+    /// was stated before.
+    pub(super) fn set_arrows(&mut self, arrows: Option<Arrows>) -> Option<Arrows> {
+        for runner in &mut self.runners {
+            let wanted = arrows.unwrap_or(runner.strategy.arrows);
+            if runner.engine.arrows() != wanted {
+                runner.engine.set_arrows(wanted);
+            }
+        }
+        std::mem::replace(&mut self.arrows, arrows)
+    }
+
+    /// The table of techniques, if it was stated.
+    pub(super) fn arrows(&self) -> Option<Arrows> {
+        self.arrows
+    }
+
+    fn follow(&mut self, theory: &Theory, lineage: u32) -> Result<(), NoOrder> {
         if self.lineage != lineage {
             *self = Workers {
                 lineage,

@@ -24,6 +24,7 @@ mod redo;
 mod rules;
 mod save;
 mod separate;
+mod simplify;
 mod status;
 mod symbols;
 mod theories;
@@ -50,6 +51,7 @@ pub const ALL: &[&Command] = &[
     &check::COMMAND,
     &order::COMMAND,
     &budget::COMMAND,
+    &simplify::COMMAND,
     &drop::COMMAND,
     &undo::COMMAND,
     &redo::COMMAND,

@@ -19,7 +19,6 @@ const LATER: &[(&str, &str)] = &[
         "closed",
         "an equation that follows from the laws holds on closed terms too",
     ),
-    ("simplify", ""),
     (
         "replace",
         "drop NAME takes a law out, and law NAME: s = t states it anew",

@@ -13,7 +13,14 @@ pub const COMMAND: Command = Command {
     group: Group::Working,
     forms: &[("status", "the session in numbers")],
     page: "The theory and its file, what it holds, the order, the rules, and what the engine has \
-           done so far.",
+           done so far.\n\
+           A pair is what two rules make of one term, the peak. Pairs are formed, wait, and are \
+           chosen. One that is redundant when chosen has joined or is an instance of what is kept. \
+           Others join modulo AC (associativity and commutativity) or for every order of their \
+           variables, are connected below the peak, or are not prime: something below the place of \
+           the inner rule can be rewritten. Waiting pairs of a retired rule are dropped. A pair may \
+           be given up because it is too large, or because too many wait and it is among the worst; \
+           after that the rules are never called complete. help simplify tells more of each.",
     example: "open group\ncomplete\nstatus",
     operand: Operand::Words,
     run,
