@@ -21,4 +21,4 @@ pub use id::{Sort, Symbol, TermId, Variable};
 pub use matching::match_term;
 pub use position::{preorder, replace_at, subterm_at};
 pub use substitution::{Substitution, instantiate};
-pub use unify::{Scoped, Side, Unifier};
+pub use unify::{Scoped, Side, Unifier, Weights};

@@ -5,7 +5,7 @@ use super::judge::Overlapping;
 use super::occurrences::{Occurrence, path, subterms};
 use super::run::Engine;
 use super::siblings::Siblings;
-use super::strategy::Strategy;
+use super::strategy::{Lasting, Strategy};
 use super::waiting::{HEIR, INNER_BACKWARD, OUTER_BACKWARD, OUTER_IS_PARTNER, Recipe};
 use crate::rewrite::{Limits, RuleId, Stopped, Use};
 use crate::term::{Scoped, Side, TermId};
@@ -270,6 +270,9 @@ impl Engine {
             return None;
         }
         let (side, outer_right) = self.system.rule(outer.rule).sides(outer.backward);
+        if self.equality.is_some() && self.system.bank.as_symbol(side) == self.equality {
+            return None;
+        }
         let (_, inner_right) = self.system.rule(inner.rule).sides(inner.backward);
         let Engine {
             unifier,
@@ -278,10 +281,10 @@ impl Engine {
             ..
         } = self;
         let bank = &system.bank;
+        let mut lasting = Lasting { weigher, bank };
         let mut weigh = |term, side| {
             let scoped = Scoped { term, side };
-            let weigh = &mut |term| weigher.weight_of_lasting(bank, term);
-            unifier.weight(bank, scoped, variable, weigh)
+            unifier.weight(bank, scoped, variable, &mut lasting)
         };
         let whole = weigh(side, Side::Left)?;
         let redex = weigh(place, Side::Left)?;

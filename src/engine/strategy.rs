@@ -1,8 +1,9 @@
 //! How the loop chooses among the waiting pairs, and which criteria delete.
 
 use super::arrows::Arrows;
-use crate::term::{Bank, Head, Symbol, TermId};
+use crate::term::{Bank, Head, Symbol, TermId, Weights};
 use rustc_hash::FxHashMap;
+use std::sync::Arc;
 
 /// How pairs are weighed and which criteria are used.
 ///
@@ -60,6 +61,8 @@ pub(super) struct Weigher {
     mentioned: Vec<bool>,
     /// What lasting terms weigh, unless that is their size.
     lasting: FxHashMap<TermId, u32>,
+    /// The variables of lasting terms with many, with their occurrences.
+    occurrences: FxHashMap<TermId, Arc<[(u32, u32)]>>,
     stack: Vec<TermId>,
 }
 
@@ -101,8 +104,7 @@ impl Weigher {
         larger.saturating_add(a.min(b).saturating_mul(self.strategy.smaller))
     }
 
-    /// What a lasting term weighs.
-    pub(super) fn weight_of_lasting(&mut self, bank: &Bank, term: TermId) -> u32 {
+    fn weight_of_lasting(&mut self, bank: &Bank, term: TermId) -> u32 {
         if self.strategy.is_plain() {
             return bank.size(term);
         }
@@ -138,5 +140,27 @@ impl Weigher {
 
     fn is_foreign(&self, symbol: Symbol) -> bool {
         !self.mentioned.is_empty() && !self.mentioned.get(symbol.index()).is_some_and(|m| *m)
+    }
+}
+
+/// The weights of lasting terms.
+pub(super) struct Lasting<'a> {
+    pub(super) weigher: &'a mut Weigher,
+    pub(super) bank: &'a Bank,
+}
+
+impl Weights for Lasting<'_> {
+    fn weight(&mut self, term: TermId) -> u32 {
+        self.weigher.weight_of_lasting(self.bank, term)
+    }
+
+    fn occurrences(&mut self, term: TermId) -> Arc<[(u32, u32)]> {
+        let walk = || {
+            let counts = self.bank.count_by_walking(term);
+            let times = |n: u64| u32::try_from(n).unwrap_or(u32::MAX);
+            counts.iter().map(|(v, n)| (v.index, times(*n))).collect()
+        };
+        let known = &mut self.weigher.occurrences;
+        known.entry(term).or_insert_with(walk).clone()
     }
 }

@@ -2,6 +2,7 @@
 
 use super::{Bank, Head, TermId, Variable};
 use rustc_hash::FxHashMap;
+use std::sync::Arc;
 
 /// Which of the two equations a term belongs to.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
@@ -42,15 +43,43 @@ pub struct Unifier {
     weighed: Vec<usize>,
     stack: Vec<(Scoped, Scoped)>,
     visited: Vec<Scoped>,
-    frames: Vec<(Scoped, u32)>,
+    /// By slot, what the value of the variable was built to.
+    values: Vec<TermId>,
+    valued: Vec<usize>,
+    frames: Vec<Frame>,
     built: Vec<TermId>,
 }
+
+/// A term that is being built.
+#[derive(Clone, Copy, Debug)]
+struct Frame {
+    term: Scoped,
+    /// The next argument.
+    next: u32,
+    /// The variable whose value this is, if it is one's.
+    slot: Option<usize>,
+}
+
+/// What [`Unifier::weight`] needs to know of terms as they stand.
+pub trait Weights {
+    /// What the term weighs.
+    fn weight(&mut self, term: TermId) -> u32;
+    /// The variables of the term, by number, with their occurrences; asked for only if the counts
+    /// of the bank are wide.
+    fn occurrences(&mut self, term: TermId) -> Arc<[(u32, u32)]>;
+}
+
+/// A chain of bindings longer than this is not weighed.
+const MOST_BINDINGS: u32 = 64;
 
 impl Unifier {
     /// Forgets all bindings. Must come before every unification.
     pub fn reset(&mut self) {
         for slot in self.bound.drain(..) {
             self.bindings[slot] = None;
+        }
+        for slot in self.valued.drain(..) {
+            self.values[slot] = TermId::NONE;
         }
         for slot in self.weighed.drain(..) {
             self.weights[slot] = u32::MAX;
@@ -95,39 +124,50 @@ impl Unifier {
         true
     }
 
-    /// The term with the bindings put in.
+    /// The term with the bindings put in. The value of each variable is built once; it must stay in
+    /// the bank until [`Unifier::reset`].
     pub fn build(&mut self, bank: &mut Bank, term: Scoped) -> TermId {
         let mut memo = (bank.size(term.term) > 64).then(FxHashMap::<Scoped, TermId>::default);
         self.frames.clear();
         self.built.clear();
         self.step(bank, term, &memo);
-        while let Some((top, next)) = self.frames.last_mut() {
-            let (top, place) = (*top, *next as usize);
-            let arguments = bank.arguments(top.term);
+        while let Some(top) = self.frames.last_mut() {
+            let arguments = bank.arguments(top.term.term);
+            let place = top.next as usize;
             if place < arguments.len() {
-                *next += 1;
-                let argument = top.of(arguments[place]);
+                top.next += 1;
+                let argument = top.term.of(arguments[place]);
                 self.step(bank, argument, &memo);
                 continue;
             }
+            let Frame { term, slot, .. } = *top;
             let symbol = bank
-                .as_symbol(top.term)
+                .as_symbol(term.term)
                 .expect("variables are never framed");
             let start = self.built.len() - place;
             let made = bank.apply(symbol, &self.built[start..]);
             self.built.truncate(start);
             self.built.push(made);
-            if let Some(memo) = &mut memo {
-                memo.insert(top, made);
+            if let Some(slot) = slot {
+                self.keep(slot, made);
+            } else if let Some(memo) = &mut memo {
+                memo.insert(term, made);
             }
             self.frames.pop();
         }
         self.built.pop().expect("the root leaves one term")
     }
 
-    /// What the term with the bindings put in weighs, without building it; nothing if it, or a
-    /// term that it is made of, has too many variables. `weigh` weighs a term as it stands, in
-    /// which a variable weighs `variable`.
+    fn keep(&mut self, slot: usize, made: TermId) {
+        if slot >= self.values.len() {
+            self.values.resize(slot + 1, TermId::NONE);
+        }
+        self.values[slot] = made;
+        self.valued.push(slot);
+    }
+
+    /// What the term with the bindings put in weighs, without building it; nothing if bindings lead
+    /// through too many variables. A variable weighs `variable`.
     ///
     /// Costs a visit per variable and binding; what a variable came to is kept until
     /// [`Unifier::reset`].
@@ -136,37 +176,63 @@ impl Unifier {
         bank: &Bank,
         term: Scoped,
         variable: u32,
-        weigh: &mut impl FnMut(TermId) -> u32,
+        weights: &mut impl Weights,
     ) -> Option<u32> {
+        self.weight_within(bank, term, variable, weights, MOST_BINDINGS)
+    }
+
+    fn weight_within(
+        &mut self,
+        bank: &Bank,
+        term: Scoped,
+        variable: u32,
+        weights: &mut impl Weights,
+        depth: u32,
+    ) -> Option<u32> {
+        let mut sum = weights.weight(term.term);
         let counts = bank.counts(term.term);
         if counts.is_wide() {
-            return None;
-        }
-        let mut sum = weigh(term.term);
-        // The recursion goes from variable to variable, of which there are at most thirty-two.
-        for (index, times) in counts.occurring() {
-            let slot = 2 * index as usize + term.side as usize;
-            let Some(Some(bound)) = self.bindings.get(slot).copied() else {
-                continue;
-            };
-            if slot >= self.weights.len() {
-                self.weights.resize(slot + 1, u32::MAX);
+            for &(index, times) in &*weights.occurrences(term.term) {
+                let more = self.more(bank, (index, term.side), variable, weights, depth)?;
+                sum = sum.saturating_add(more.saturating_mul(times));
             }
-            if self.weights[slot] == u32::MAX {
-                let value = self.weight(bank, bound, variable, weigh)?;
-                self.weights[slot] = value.min(u32::MAX - 1);
-                self.weighed.push(slot);
+        } else {
+            for (index, times) in counts.occurring() {
+                let more = self.more(bank, (index, term.side), variable, weights, depth)?;
+                sum = sum.saturating_add(more.saturating_mul(times));
             }
-            let more =
-                (self.weights[slot] - variable.min(self.weights[slot])).saturating_mul(times);
-            sum = sum.saturating_add(more);
         }
         Some(sum)
     }
 
+    /// How much more a variable weighs with the bindings put in.
+    fn more(
+        &mut self,
+        bank: &Bank,
+        (index, side): (u32, Side),
+        variable: u32,
+        weights: &mut impl Weights,
+        depth: u32,
+    ) -> Option<u32> {
+        let slot = 2 * index as usize + side as usize;
+        let Some(Some(bound)) = self.bindings.get(slot).copied() else {
+            return Some(0);
+        };
+        if slot >= self.weights.len() {
+            self.weights.resize(slot + 1, u32::MAX);
+        }
+        if self.weights[slot] == u32::MAX {
+            let depth = depth.checked_sub(1)?;
+            let value = self.weight_within(bank, bound, variable, weights, depth)?;
+            self.weights[slot] = value.min(u32::MAX - 1);
+            self.weighed.push(slot);
+        }
+        Some(self.weights[slot].saturating_sub(variable))
+    }
+
     /// Builds an argument at once, or frames it.
     fn step(&mut self, bank: &mut Bank, term: Scoped, memo: &Option<FxHashMap<Scoped, TermId>>) {
-        let term = self.resolve(bank, term);
+        let (term, last) = self.resolve_from(bank, term);
         if bank.is_ground(term.term) {
             self.built.push(term.term);
         } else if let Some(variable) = bank.as_variable(term.term) {
@@ -176,10 +242,23 @@ impl Unifier {
                 sort: variable.sort,
             });
             self.built.push(made);
+        } else if let Some(slot) = last {
+            match self.values.get(slot).filter(|value| value.is_some()) {
+                Some(&value) => self.built.push(value),
+                None => self.frames.push(Frame {
+                    term,
+                    next: 0,
+                    slot: last,
+                }),
+            }
         } else if let Some(&known) = memo.as_ref().and_then(|memo| memo.get(&term)) {
             self.built.push(known);
         } else {
-            self.frames.push((term, 0));
+            self.frames.push(Frame {
+                term,
+                next: 0,
+                slot: None,
+            });
         }
     }
 
@@ -195,14 +274,21 @@ impl Unifier {
     }
 
     /// Follows variables to what they are bound to.
-    fn resolve(&self, bank: &Bank, mut term: Scoped) -> Scoped {
+    fn resolve(&self, bank: &Bank, term: Scoped) -> Scoped {
+        self.resolve_from(bank, term).0
+    }
+
+    /// The same, with the last variable on the way.
+    fn resolve_from(&self, bank: &Bank, mut term: Scoped) -> (Scoped, Option<usize>) {
+        let mut last = None;
         while let Some(variable) = bank.as_variable(term.term) {
-            match self.bindings.get(slot(variable, term.side)) {
-                Some(Some(next)) => term = *next,
+            let slot = slot(variable, term.side);
+            match self.bindings.get(slot) {
+                Some(Some(next)) => (term, last) = (*next, Some(slot)),
                 _ => break,
             }
         }
-        term
+        (term, last)
     }
 
     fn bind(&mut self, bank: &Bank, variable: Variable, side: Side, to: Scoped) -> bool {
@@ -255,6 +341,18 @@ mod tests {
     use super::*;
     use crate::term::{Sort, SymbolInfo};
 
+    struct Sizes<'a>(&'a Bank);
+
+    impl Weights for Sizes<'_> {
+        fn weight(&mut self, term: TermId) -> u32 {
+            self.0.size(term)
+        }
+
+        fn occurrences(&mut self, _: TermId) -> Arc<[(u32, u32)]> {
+            unreachable!("no counts are wide")
+        }
+    }
+
     #[test]
     fn the_two_sides_have_their_own_variables() {
         let mut bank = Bank::default();
@@ -279,7 +377,7 @@ mod tests {
         let mut unifier = Unifier::default();
         // x on the right is another x: f(x, y) = x' unifies, and so does f(x, x) with f(x', y').
         assert!(unifier.unify(&bank, left, right));
-        let size = unifier.weight(&bank, right, 1, &mut |term| bank.size(term));
+        let size = unifier.weight(&bank, right, 1, &mut Sizes(&bank));
         assert_eq!(size, Some(3));
         assert_eq!(unifier.build(&mut bank, right), fxy);
         unifier.reset();
