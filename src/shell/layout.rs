@@ -49,7 +49,7 @@ pub fn fold_hanging(text: &str, width: usize, first: usize, rest: usize) -> Stri
         let mut column = first.min(width / 2);
         folded += &" ".repeat(column);
         let start = folded.len();
-        for word in paragraph.split(' ') {
+        for word in words(paragraph) {
             let word = visible(word);
             let length = columns(&word);
             if folded.len() > start && column + 1 + length > width {
@@ -66,6 +66,40 @@ pub fn fold_hanging(text: &str, width: usize, first: usize, rest: usize) -> Stri
         folded.push('\n');
     }
     folded
+}
+
+/// The words of a text; a number stays with the unit of time behind it.
+fn words(text: &str) -> impl Iterator<Item = &str> {
+    let mut rest = Some(text);
+    std::iter::from_fn(move || {
+        let text = rest?;
+        let mut end = text.find(' ');
+        if let Some(at) = end
+            && text[..at].ends_with(|c: char| c.is_ascii_digit())
+        {
+            let next = &text[at + 1..];
+            let length = next.find(' ').unwrap_or(next.len());
+            let unit = next[..length].trim_end_matches([',', '.', ';', ')']);
+            if matches!(unit, "ms" | "s" | "min" | "h") {
+                end = (length < next.len()).then_some(at + 1 + length);
+            }
+        }
+        rest = end.map(|at| &text[at + 1..]);
+        Some(end.map_or(text, |at| &text[..at]))
+    })
+}
+
+/// A term or an equation behind a lead, in lines that fit as far as there are places to break it;
+/// the further lines are indented by as many columns as the lead takes.
+pub fn hang(lead: &str, text: &str, width: usize, breaker: Breaker<'_>) -> String {
+    let room = width.saturating_sub(columns(lead));
+    let indent = " ".repeat(columns(lead));
+    let mut made = String::new();
+    for (place, piece) in breaker.pieces(text, room, room).into_iter().enumerate() {
+        let before = if place == 0 { lead } else { &indent };
+        made += &format!("{before}{}\n", &text[piece]);
+    }
+    made
 }
 
 /// Where the facts beside a verdict begin.
@@ -233,6 +267,9 @@ mod tests {
     #[test]
     fn prose_is_folded_and_cut() {
         assert_eq!(fold("one two three", 9, 2), "  one two\n  three\n");
+        assert_eq!(fold("30 ms · 2 s", 5, 0), "30 ms\n· 2 s\n");
+        assert_eq!(fold("in 12 min, or", 4, 0), "in\n12 min,\nor\n");
+        assert_eq!(fold("a  b ", 9, 0), "a  b \n");
         assert_eq!(cut("abcdef", 4), "abc…");
         assert_eq!(cut("日本語", 4), "日…");
         assert_eq!(cut("abc", 0), "");

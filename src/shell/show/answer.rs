@@ -4,7 +4,7 @@ use super::proof::{LONGEST_CHAIN, chain};
 use crate::session::{
     Answer, FoundAlgebra, Frontier, NormalForm, ProgramFault, ProofHead, Session, Verdict,
 };
-use crate::shell::layout::{Breaker, columns, fold, fold_hanging, heading};
+use crate::shell::layout::{Breaker, columns, fold, fold_hanging, hang, heading};
 use crate::shell::problem::{OWN_FAULT, stop_text};
 use crate::shell::quantity::{count, number, show_duration};
 use crate::shell::screen::{Ink, Look};
@@ -81,20 +81,10 @@ pub fn answer(answer: &Answer, session: &Session, look: Look, place: Place) -> S
 /// The values that were found for unknowns, one line each.
 fn values(answer: &Answer, session: &Session, look: Look) -> String {
     let breaker = Breaker::new(&session.theory().signature);
-    let mut text = String::new();
-    for (unknown, value) in &answer.values {
-        let label = format!("    {unknown} = ");
-        let room = look.width.saturating_sub(columns(&label));
-        for (place, piece) in breaker.pieces(value, room, room).into_iter().enumerate() {
-            let label = if place == 0 {
-                label.clone()
-            } else {
-                " ".repeat(columns(&label))
-            };
-            text += &format!("{label}{}\n", &value[piece]);
-        }
-    }
-    text
+    let line = |(unknown, value): &(String, String)| {
+        hang(&format!("    {unknown} = "), value, look.width, breaker)
+    };
+    answer.values.iter().map(line).collect()
 }
 
 fn short_proof(
@@ -136,16 +126,7 @@ pub fn normal_forms(normal: &[String; 2], session: &Session, look: Look) -> Stri
     let breaker = Breaker::new(&session.theory().signature);
     let mut text = fold("the two sides have different normal forms", look.width, 4);
     for (side, form) in ["left", "right"].iter().zip(normal) {
-        let label = format!("    {side:<8}");
-        let room = look.width.saturating_sub(columns(&label));
-        for (place, piece) in breaker.pieces(form, room, room).into_iter().enumerate() {
-            let label = if place == 0 {
-                label.clone()
-            } else {
-                " ".repeat(columns(&label))
-            };
-            text += &format!("{label}{}\n", &form[piece]);
-        }
+        text += &hang(&format!("    {side:<8}"), form, look.width, breaker);
     }
     text
 }
