@@ -320,6 +320,41 @@ fn sorts_that_do_not_fit_say_so() {
     }
 }
 
+/// The sort is that of the place, whichever operator takes the name.
+#[test]
+fn a_name_that_was_never_declared_gets_the_sort_of_its_place() {
+    let base = "sort Item List\nconstant nil : List\nconstant a : Item\n\
+                infix :: 50 right : Item List -> List\ninfix ++ 40 left : List List -> List\n\
+                prefix - 60 : List -> List\npostfix ! 80 : Item -> List\n\
+                function reverse : List -> List\n";
+    for (text, sort) in [
+        ("law reverse(a :: w :: nil) = nil", "Item"),
+        ("law reverse(a :: a :: w) = nil", "List"),
+        ("law reverse(w :: nil) = nil", "Item"),
+        ("law reverse(w) = nil", "List"),
+        ("law (w :: nil) = nil", "Item"),
+        ("law a :: w ++ nil = nil", "List"),
+        ("law nil ++ w :: nil = nil", "Item"),
+        ("law nil ++ w ++ nil = nil", "List"),
+        ("law - w ++ nil = nil", "List"),
+        ("law a :: w! = nil", "Item"),
+    ] {
+        let d = &faults(&format!("{base}{text}"))[0];
+        assert!(d.message.contains("`w` was never declared"), "{text}: {d}");
+        let wanted = format!("variable w : {sort}, or constant w : {sort}");
+        assert!(
+            d.help.iter().any(|h| h.contains(&wanted)),
+            "{text}: {:?}",
+            d.help
+        );
+    }
+    let d = &faults(&format!("{base}law nil :: nil = nil"))[0];
+    assert!(
+        d.message.contains("takes an Item on its left, not a List"),
+        "{d}"
+    );
+}
+
 #[test]
 fn duplicate_names() {
     for (text, message) in [

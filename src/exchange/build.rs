@@ -29,8 +29,8 @@ pub(super) enum Purpose {
 /// So many names stand in one declaration.
 const PER_LINE: usize = 12;
 
-/// The text of the theory.
-pub(super) fn text(title: &str, terms: &Terms, statements: &[Statement]) -> String {
+/// The text of the theory, and notes on what became of names.
+pub(super) fn text(title: &str, terms: &Terms, statements: &[Statement]) -> (String, Vec<String>) {
     let mut book = Book::new(terms, statements);
     let mut text = String::new();
     let title: String = title
@@ -58,6 +58,20 @@ pub(super) fn text(title: &str, terms: &Terms, statements: &[Statement]) -> Stri
         text += " = ";
         book.term(statement.right.clone(), &mut text);
         text.push('\n');
+    }
+    (text, book.notes())
+}
+
+/// `a`, `a and b`, `a, b and c`.
+fn and<T: AsRef<str>>(parts: &[T]) -> String {
+    let mut text = String::new();
+    for (place, part) in parts.iter().enumerate() {
+        text += match (place, parts.len() - place) {
+            (0, _) => "",
+            (_, 1) => " and ",
+            _ => ", ",
+        };
+        text += part.as_ref();
     }
     text
 }
@@ -110,6 +124,36 @@ impl<'t> Book<'t> {
             }
         }
         book
+    }
+
+    /// One note for each name with different numbers of arguments: often it is mistyped.
+    fn notes(&self) -> Vec<String> {
+        let mut uses: FxHashMap<Word, Vec<u32>> = FxHashMap::default();
+        for (word, arguments) in &self.symbols_in_order {
+            uses.entry(*word).or_default().push(*arguments);
+        }
+        let mut notes = Vec::new();
+        for (word, _) in &self.symbols_in_order {
+            let Some(counts) = uses.remove(word).filter(|counts| counts.len() > 1) else {
+                continue;
+            };
+            let written = counts
+                .iter()
+                .map(|n| self.symbols[&(*word, *n)].text.as_str());
+            let written: Vec<&str> = written.collect();
+            let numbers: Vec<String> = counts.iter().map(u32::to_string).collect();
+            let how_many = match counts.len() {
+                2 => "two".to_owned(),
+                many => many.to_string(),
+            };
+            notes.push(format!(
+                "{} is used with {} arguments, as {how_many} symbols {}",
+                self.terms.words[*word as usize],
+                and(&numbers),
+                and(&written)
+            ));
+        }
+        notes
     }
 
     /// The lines that declare constants, functions and variables.

@@ -3,7 +3,7 @@
 use super::build::{self, Purpose, Statement};
 use super::formula::{Formula, Terms, expect};
 use super::token::{Kind, Lexer};
-use crate::language::{Diagnostic, Fault, Source, decode};
+use crate::language::{Diagnostic, Fault, Source, decode, line_and_column};
 use crate::session::{Library, OpenFault, Opened, Session};
 use rustc_hash::FxHashSet;
 use std::io::Read;
@@ -64,20 +64,22 @@ pub fn open(path: &Path, library: Library) -> Result<Opened, OpenFault> {
         statements: Vec::new(),
         open: Vec::new(),
         whole: FxHashSet::default(),
-        goals: 0,
-        inequation: false,
+        goal: None,
     };
     reading
         .file(path, bytes, None)
         .map_err(|fault| OpenFault::Text(vec![fault]))?;
     let title = path.file_stem().and_then(|stem| stem.to_str());
-    let text = build::text(
+    let (text, notes) = build::text(
         title.unwrap_or_default(),
         &reading.terms,
         &reading.statements,
     );
     drop(reading);
-    Session::read(&path.display().to_string(), &text, library).map_err(OpenFault::Text)
+    let mut opened =
+        Session::read(&path.display().to_string(), &text, library).map_err(OpenFault::Text)?;
+    opened.notes = notes;
+    Ok(opened)
 }
 
 /// The names that an `include` selects, each with its place, and whether it was met.
@@ -105,10 +107,18 @@ struct Reading {
     open: Vec<PathBuf>,
     /// The files that were included as a whole.
     whole: FxHashSet<PathBuf>,
-    /// How many goals there are.
-    goals: usize,
-    /// Is one of them an inequation, which the laws are to contradict?
-    inequation: bool,
+    /// The first goal.
+    goal: Option<Goal>,
+}
+
+/// A goal that was read.
+struct Goal {
+    /// The file and the place of its role.
+    source: String,
+    place: Range<usize>,
+    line: usize,
+    /// Is it an inequation, which the laws are to contradict?
+    is_inequation: bool,
 }
 
 impl Reading {
@@ -147,7 +157,7 @@ impl Reading {
         };
         let fault = match word {
             "cnf" | "fof" => {
-                let read = self.formula(lexer, word == "cnf", selection);
+                let read = self.formula(lexer, source, word == "cnf", selection);
                 return read.map_err(at).map(|()| true);
             }
             "include" => return self.include(lexer, source, selection).map(|()| true),
@@ -167,6 +177,7 @@ impl Reading {
     fn formula(
         &mut self,
         lexer: &mut Lexer<'_>,
+        source: Source<'_>,
         is_clause: bool,
         selection: Option<&mut Selection>,
     ) -> Result<(), Fault> {
@@ -207,7 +218,7 @@ impl Reading {
                 .help(form));
         }
         end_of_statement(lexer)?;
-        self.take(name, role, formula, place)
+        self.take(name, role, formula, place, source)
     }
 
     /// Takes a formula for what it is by its role.
@@ -217,22 +228,30 @@ impl Reading {
         role: Role,
         formula: Formula,
         place: Range<usize>,
+        source: Source<'_>,
     ) -> Result<(), Fault> {
         if role != Role::Conjecture && formula.positive {
             return self.law(name, formula);
         }
-        if self.inequation || (role != Role::Conjecture && self.goals > 0) {
-            return Err(Fault::new(place, "there is an inequation beside another goal")
-                .label("a second goal")
-                .help("together they ask whether one of several equations holds; keep one of them in a file")
-                .help("several conjectures can be stated in fof: each becomes a claim"));
+        let is_inequation = role != Role::Conjecture;
+        if let Some(first) = &self.goal
+            && (first.is_inequation || is_inequation)
+        {
+            return Err(first.beside(place, source));
         }
-        self.goals += 1;
-        let goal = if role == Role::Conjecture {
-            formula
-        } else {
-            self.inequation = true;
+        if self.goal.is_none() {
+            let (line, _) = line_and_column(source.text, place.start);
+            self.goal = Some(Goal {
+                source: source.name.to_owned(),
+                place,
+                line,
+                is_inequation,
+            });
+        }
+        let goal = if is_inequation {
             formula.negated()
+        } else {
+            formula
         };
         if !goal.positive {
             return Err(
@@ -353,6 +372,26 @@ impl Reading {
 
 fn canonical(path: &Path) -> PathBuf {
     path.canonicalize().unwrap_or_else(|_| path.to_owned())
+}
+
+impl Goal {
+    /// What is said of a goal that cannot stand beside this one.
+    fn beside(&self, place: Range<usize>, source: Source<'_>) -> Fault {
+        let fault =
+            Fault::new(place, "there is an inequation beside another goal").label("a second goal");
+        let fault = if self.source == source.name {
+            fault.also(self.place.clone(), "the first goal is here")
+        } else {
+            fault.help(format!(
+                "the first goal is in {}, line {}",
+                self.source, self.line
+            ))
+        };
+        fault
+            .help("an inequation is a goal whatever its role: it asks whether the laws contradict it")
+            .help("together they ask whether one of several equations holds; keep one of them in a file")
+            .help("several conjectures can be stated in fof: each becomes a claim")
+    }
 }
 
 /// What a role makes of a formula.

@@ -339,3 +339,42 @@ fn a_term_of_a_million_levels_is_read() {
     let theory = session.theory();
     assert_eq!(theory.bank.size(theory.laws[0].left), deep as u32 + 1);
 }
+
+#[test]
+fn names_with_different_numbers_of_arguments_are_told() {
+    let place = Place::new();
+    let notes = |clauses: &str| {
+        let opened = open(&place.file("gauges.p", clauses), Library::default());
+        opened.unwrap_or_else(|_| panic!("{clauses}")).notes
+    };
+    assert_eq!(
+        notes("cnf(a, axiom, f(X) = f(X,g)).\ncnf(b, axiom, g = f(g)).\n"),
+        ["f is used with 1 and 2 arguments, as two symbols f and f_2"]
+    );
+    assert_eq!(
+        notes("cnf(a, axiom, h(h,h(X),f(f)) = h(h)).\n"),
+        [
+            "h is used with 3, 0 and 1 arguments, as 3 symbols h, h_2 and h_3",
+            "f is used with 1 and 0 arguments, as two symbols f and f_2"
+        ]
+    );
+    assert!(notes("cnf(a, axiom, f(X,g) = f(g,X)).\n").is_empty());
+}
+
+#[test]
+fn two_goals_are_both_shown() {
+    let place = Place::new();
+    let faults = |path: &Path| match open(path, Library::default()) {
+        Err(OpenFault::Text(faults)) => faults,
+        _ => panic!("it should be refused"),
+    };
+    let goals = "cnf(a, axiom, b != c).\ncnf(d, negated_conjecture, c != b).\n";
+    let one = &faults(&place.file("one.p", goals))[0];
+    assert_eq!((one.line, one.column), (2, 8));
+    assert_eq!(one.notes, ["the first goal is here (line 1, column 8)"]);
+    place.file("first.ax", "\ncnf(a, axiom, b != c).\n");
+    let goals = "include('first.ax').\ncnf(d, negated_conjecture, c != b).\n";
+    let two = &faults(&place.file("two.p", goals))[0];
+    assert_eq!(two.line, 2);
+    assert!(two.help[0].ends_with("first.ax, line 2"), "{:?}", two.help);
+}

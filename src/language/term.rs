@@ -10,7 +10,7 @@ use super::lexer::{Kind, Lexer, Token};
 use super::unknown::Position;
 use crate::term::{Bank, Sort, Symbol, TermId, Variable};
 use crate::theory::{Fixity, Meaning, Side, Signature};
-use faults::{argument_place, call_example, unclosed};
+use faults::{argument_place, call_example, unclosed, with_article};
 pub(in crate::language) use faults::{arguments, shown, type_of};
 use std::ops::Range;
 
@@ -436,11 +436,11 @@ impl<'a, 's, 't> TermReader<'a, 's, 't> {
                 return Err(Fault::new(
                     operand.span(),
                     format!(
-                        "{} takes a {} {}, not a {}",
+                        "{} takes {} {}, not {}",
                         shown(&declaration.name),
-                        self.signature.sort_name(wanted),
+                        with_article(self.signature.sort_name(wanted)),
                         argument_place(declaration.fixity, place),
-                        self.signature.sort_name(sort)
+                        with_article(self.signature.sort_name(sort))
                     ),
                 )
                 .label(format!("of sort {}", self.signature.sort_name(sort)))

@@ -58,8 +58,7 @@ pub(crate) fn fault(
             typed_hint(signature)
         )),
         _ => {
-            let sort = expected.or_else(|| sort_before_operator(signature, after));
-            let typed = match sort {
+            let typed = match expected {
                 Some(sort) if signature.has_sorts() => {
                     format!(" : {}", signature.sort_name(sort))
                 }
@@ -109,15 +108,20 @@ fn typed_hint(signature: &Signature) -> &'static str {
     }
 }
 
-/// The sort that an infix operator right behind the name asks for on its left.
-fn sort_before_operator(signature: &Signature, after: Lexer<'_, '_>) -> Option<Sort> {
+/// The infix or postfix operator right behind the name, and the sort that it asks for on its left.
+pub(crate) fn operator_behind(
+    signature: &Signature,
+    after: Lexer<'_, '_>,
+) -> Option<(Fixity, Sort)> {
     let (Kind::Sign(name) | Kind::Name(name) | Kind::Quoted(name)) = after.peek().ok()?.kind else {
         return None;
     };
     let symbol = signature.meaning(&name)?.symbol?;
     let declaration = signature.symbol(symbol)?;
     match declaration.fixity {
-        Fixity::Infix { .. } | Fixity::Postfix { .. } => declaration.arguments.first().copied(),
+        fixity @ (Fixity::Infix { .. } | Fixity::Postfix { .. }) => {
+            Some((fixity, *declaration.arguments.first()?))
+        }
         _ => None,
     }
 }

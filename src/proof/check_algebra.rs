@@ -1,6 +1,7 @@
 //! The checker for finite algebras: every law under every assignment, and the claim's values.
 
 use rustc_hash::FxHashMap;
+use std::cell::Cell;
 
 use super::evidence::{AlgebraEvidence, Condition, Table};
 use super::signature::Signature;
@@ -94,20 +95,28 @@ fn check_claim(
         _ => {}
     }
     let values = claim.values;
+    let computed = Cell::new((true, [0, 0]));
     // Without unknowns this looks at one assignment.
     let failure = algebra.first(&program, &free, start, work, |conditions, left, right| {
+        computed.set((conditions, [left, right]));
         !conditions || left == right || values.is_some_and(|values| values != [left, right])
     })?;
-    match failure {
-        None => Ok(()),
-        Some(values) => {
-            let reason = format!(
-                "a condition fails, the sides are equal or have other values, for {}",
-                algebra.assignment(&program, &values)
-            );
-            Err(rejected("claim", reason))
+    let Some(assignment) = failure else {
+        return Ok(());
+    };
+    let at = algebra.assignment(&program, &assignment);
+    let (conditions, [left, right]) = computed.get();
+    Err(match values {
+        _ if !conditions => rejected("claim", format!("a condition fails for {at}")),
+        _ if left == right => {
+            let reason = format!("both sides have the value {left} for {at}");
+            rejected("claim", reason)
         }
-    }
+        _ => {
+            let reason = format!("the values of the sides are {left} and {right} for {at}");
+            rejected("claim.values", reason)
+        }
+    })
 }
 
 /// The number of elements of each sort, at least one.

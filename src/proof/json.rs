@@ -23,9 +23,15 @@ use super::work::Outcome;
 ///
 /// If the text is not JSON, or not of the form of any evidence.
 pub fn from_json(json: &[u8]) -> Result<Evidence, Outcome> {
-    let value: Json<'_> = serde_json::from_slice(json).map_err(|error| Outcome::Rejected {
-        place: format!("line {} column {}", error.line(), error.column()),
-        reason: format!("not JSON: {error}"),
+    let value: Json<'_> = serde_json::from_slice(json).map_err(|error| {
+        let place = format!("line {} column {}", error.line(), error.column());
+        let said = error.to_string();
+        // The place stands in the message as well.
+        let what = said.strip_suffix(&format!(" at {place}")).unwrap_or(&said);
+        Outcome::Rejected {
+            reason: format!("not JSON: {what}"),
+            place,
+        }
     })?;
     let top = Place {
         parent: None,

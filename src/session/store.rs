@@ -17,6 +17,8 @@ pub struct Opened {
     pub derived: usize,
     /// Derived lines that were refused, with their places; the rest was taken.
     pub refused: Vec<Diagnostic>,
+    /// What is worth knowing about the text that is no fault, as sentences without full stop.
+    pub notes: Vec<String>,
 }
 
 /// Why a theory was not opened.
@@ -77,6 +79,7 @@ impl Session {
             session,
             derived,
             refused,
+            notes: Vec::new(),
         })
     }
 
@@ -90,6 +93,7 @@ impl Session {
             session,
             derived,
             refused,
+            notes: Vec::new(),
         })
     }
 

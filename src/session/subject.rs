@@ -104,10 +104,19 @@ impl<'a> Subject<'a> {
     fn belongs(&self, evidence: &Evidence) -> Result<(), String> {
         let laws = evidence.laws();
         laws.iter().try_for_each(|law| self.law(law))?;
-        // The laws of a theory have different names, so that counting them is enough.
-        let named: FxHashSet<_> = laws.iter().map(|law| law.name).collect();
-        if !matches!(evidence, Evidence::Proof(_)) && named.len() != self.theory.laws.len() {
-            return Err("it does not have every law of the theory".to_owned());
+        // A proof needs the laws that it uses; the others say something about all laws.
+        if !matches!(evidence, Evidence::Proof(_)) {
+            let named: FxHashSet<_> = laws.iter().map(|law| self.terms.text(law.name)).collect();
+            let is_missing = |name: &&str| !named.contains(name);
+            let known = self.theory.laws.iter().map(|law| law.name.as_str());
+            let missing: Vec<&str> = known.filter(is_missing).collect();
+            if let Some(first) = missing.first() {
+                let more = match missing.len() - 1 {
+                    0 => String::new(),
+                    more => format!(" and {more} more"),
+                };
+                return Err(format!("it leaves out the law {first}{more} of the theory"));
+            }
         }
         let defined = self.defined(evidence.definitions())?;
         self.types(evidence.types(), &defined)
@@ -137,7 +146,7 @@ impl<'a> Subject<'a> {
         let known = self
             .theory
             .law(name)
-            .ok_or_else(|| format!("{name} is no law"))?;
+            .ok_or_else(|| format!("the theory has no law {name}"))?;
         let same = self.same(known.left, law.left) && self.same(known.right, law.right);
         if same && law.when.is_empty() {
             Ok(())

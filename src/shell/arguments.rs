@@ -83,7 +83,7 @@ pub enum Task {
     },
     /// Checks evidence in files, without searching for anything.
     Verify {
-        /// The files, as --evidence and the command evidence write them.
+        /// The files, as --evidence and the command evidence write them; - is standard input.
         #[arg(required = true, value_name = "EVIDENCE")]
         files: Vec<String>,
         /// The laws and sorts must be those of this theory.

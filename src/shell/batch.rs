@@ -206,6 +206,7 @@ fn open_quietly(shell: &mut Shell, file: &str) -> bool {
     match places::open(file, shell.session.library().clone()) {
         Ok(opened) => {
             shell.session = opened.session;
+            shell.say_notes(&opened.notes);
             if !opened.refused.is_empty() {
                 shell.tell(Problem::Text(opened.refused));
                 shell.remark("These derived rules are left out; everything else was taken.");

@@ -147,6 +147,17 @@ impl Shell {
             .problem(&layout::fold_hanging(text, width, 0, 2));
     }
 
+    /// Tells what is worth knowing about a theory that was opened.
+    pub fn say_notes(&mut self, notes: &[String]) {
+        const MOST: usize = 8;
+        for note in notes.iter().take(MOST) {
+            self.remark(&format!("Note: {note}."));
+        }
+        if notes.len() > MOST {
+            self.remark(&format!("Note: {} more like this.", notes.len() - MOST));
+        }
+    }
+
     /// In a script, what is typed has a file and a line.
     fn put_place(&self, problem: Problem) -> Problem {
         let (Problem::Text(faults), Some((script, number))) = (&problem, &self.place) else {

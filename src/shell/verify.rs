@@ -1,9 +1,9 @@
 //! `equable verify`: the checkers on files alone, without the engine.
 
 use super::desk::Shell;
-use super::problem::Problem;
+use super::problem::{Problem, plain_error};
 use super::{places, quantity, status};
-use crate::proof::{self, Evidence, Outcome, TermIndex, WorkLimit};
+use crate::proof::{self, Evidence, Name, Outcome, TermIndex, WorkLimit};
 use crate::session::{Session, is_of_theory};
 use crate::theory::Theory;
 use serde_json::{Value, json};
@@ -40,6 +40,10 @@ pub fn run(shell: &mut Shell, files: &[String], theory: Option<&str>, as_json: b
         let checked = match checked {
             Ok(checked) => checked,
             Err(error) => {
+                if as_json {
+                    let object = json!({ "file": file, "error": plain_error(&error) });
+                    shell.out(&format!("{object}\n"));
+                }
                 shell.tell(Problem::system("read", Path::new(file), &error));
                 worst = status::worse(worst, status::INPUT);
                 continue;
@@ -49,7 +53,7 @@ pub fn run(shell: &mut Shell, files: &[String], theory: Option<&str>, as_json: b
         let text = if as_json {
             format!("{}\n", checked.json(file, begun.elapsed().as_secs_f64()))
         } else {
-            checked.text(file)
+            checked.text(file, theory.is_some())
         };
         shell.out(&text);
         if shell.screen.broken().is_some() {
@@ -65,6 +69,10 @@ struct Checked {
     kind: Option<&'static str>,
     /// The sides of the claim.
     claim: Option<[String; 2]>,
+    /// The variables for all values of which the sides differ.
+    unknowns: Vec<String>,
+    /// The names of the laws in the file.
+    laws: Vec<String>,
 }
 
 fn check(file: &str, theory: Option<&Theory>, stop: &Arc<AtomicBool>) -> std::io::Result<Checked> {
@@ -73,8 +81,10 @@ fn check(file: &str, theory: Option<&Theory>, stop: &Arc<AtomicBool>) -> std::io
         outcome,
         kind: None,
         claim: None,
+        unknowns: Vec::new(),
+        laws: Vec::new(),
     };
-    let Some(bytes) = read(Path::new(file), limit.0)? else {
+    let Some(bytes) = read(file, limit.0)? else {
         return Ok(unread(Outcome::TooCostly));
     };
     let read = proof::read_json(&bytes, limit);
@@ -87,6 +97,12 @@ fn check(file: &str, theory: Option<&Theory>, stop: &Arc<AtomicBool>) -> std::io
     let terms = evidence.terms();
     let text = |term: TermIndex| terms.show(term);
     let claim = evidence.claim().map(|(s, t)| [text(s), text(t)]);
+    let name = |name: &Name| terms.text(*name).to_owned();
+    let unknowns = match &evidence {
+        Evidence::Algebra(algebra) => algebra.claim.unknowns.iter().map(name).collect(),
+        _ => Vec::new(),
+    };
+    let laws = evidence.laws().iter().map(|law| name(&law.name)).collect();
     let kind = Some(match evidence {
         Evidence::Proof(_) => "proof",
         Evidence::Algebra(_) => "algebra",
@@ -103,12 +119,20 @@ fn check(file: &str, theory: Option<&Theory>, stop: &Arc<AtomicBool>) -> std::io
         outcome,
         kind,
         claim,
+        unknowns,
+        laws,
     })
 }
 
-/// The bytes of a file; nothing if there are more than `most`.
-fn read(path: &Path, most: u64) -> std::io::Result<Option<Vec<u8>>> {
-    let file = File::open(path)?;
+/// The bytes of a file, or of standard input for `-`; nothing if there are more than `most`.
+fn read(name: &str, most: u64) -> std::io::Result<Option<Vec<u8>>> {
+    if name == "-" {
+        let mut bytes = Vec::new();
+        let input = std::io::stdin().lock();
+        input.take(most + 1).read_to_end(&mut bytes)?;
+        return Ok((bytes.len() as u64 <= most).then_some(bytes));
+    }
+    let file = File::open(name)?;
     let known = file.metadata()?;
     if known.is_dir() {
         return Err(std::io::Error::from(std::io::ErrorKind::IsADirectory));
@@ -132,20 +156,61 @@ impl Checked {
     }
 
     /// One line.
-    fn text(&self, file: &str) -> String {
+    fn text(&self, file: &str, is_compared: bool) -> String {
         let text = match &self.outcome {
-            Outcome::Accepted => match (self.kind, &self.claim) {
-                (Some("proof"), Some([s, t])) => format!("accepted: proof of {s} = {t}"),
-                (Some("algebra"), Some([s, t])) => format!("accepted: algebra with {s} != {t}"),
-                (_, Some([s, t])) => format!("accepted: complete rules, {s} != {t}"),
-                (_, None) => "accepted: complete rules".to_owned(),
-            },
+            Outcome::Accepted => {
+                let mut text = self.accepted();
+                if !is_compared {
+                    text += &self.resting();
+                }
+                text
+            }
             Outcome::Rejected { place, reason } => {
-                format!("rejected at {}: {}", shown(place), shown(reason))
+                format!("rejected at {}: {}", self.place(place), shown(reason))
             }
             Outcome::TooCostly => "too costly to check".to_owned(),
         };
         format!("{}: {text}\n", shown(file))
+    }
+
+    /// What was accepted.
+    fn accepted(&self) -> String {
+        match (self.kind, &self.claim) {
+            (Some("proof"), Some([s, t])) => format!("accepted: proof of {s} = {t}"),
+            (Some("algebra"), Some([s, t])) if self.unknowns.is_empty() => {
+                format!("accepted: algebra with {s} != {t}")
+            }
+            (Some("algebra"), Some([s, t])) => {
+                let unknowns = shown(&self.unknowns.join(", "));
+                format!("accepted: algebra with {s} != {t} for all {unknowns}")
+            }
+            (_, Some([s, t])) => format!("accepted: complete rules, {s} != {t}"),
+            (_, None) => "accepted: complete rules".to_owned(),
+        }
+    }
+
+    /// That the laws were not compared with those of anybody.
+    fn resting(&self) -> String {
+        match self.laws.len() {
+            0 => " (without any law)".to_owned(),
+            1 => " (by the 1 law in the file; --theory FILE compares it with a theory)".to_owned(),
+            laws => format!(
+                " (by the {} laws in the file; --theory FILE compares them with a theory)",
+                quantity::number(laws as u128)
+            ),
+        }
+    }
+
+    /// A place in the file; a law has its name behind its number.
+    fn place(&self, place: &str) -> String {
+        let number = place.strip_prefix("laws[").and_then(|rest| {
+            let (number, _) = rest.split_once(']')?;
+            number.parse::<usize>().ok()
+        });
+        match number.and_then(|number| self.laws.get(number)) {
+            Some(name) => shown(&format!("{place} ({name})")),
+            None => shown(place),
+        }
     }
 
     fn json(&self, file: &str, seconds: f64) -> Value {
@@ -159,7 +224,9 @@ impl Checked {
             "outcome": outcome,
             "kind": self.kind,
             "claim": self.claim,
-            "place": place.map(|place| shown(place)),
+            "unknowns": self.unknowns,
+            "laws": self.laws.len(),
+            "place": place.map(|place| self.place(place)),
             "reason": reason.map(|reason| shown(reason)),
             "seconds": (seconds * 1e6).round() / 1e6,
         })

@@ -48,14 +48,39 @@ fn what_is_not_so_is_rejected_with_its_place() {
         "proof",
         PROOF,
         0,
-        "proof: accepted: proof of *(e, e) = e\n",
+        "proof: accepted: proof of *(e, e) = e (by the 1 law in the file; --theory FILE compares it \
+         with a theory)\n",
     );
     ends(
         &place,
         "algebra",
         ALGEBRA,
         0,
-        "algebra with *(x, y) != *(y, x)\n",
+        "algebra with *(x, y) != *(y, x) (without any law)\n",
+    );
+    let unknown = ALGEBRA
+        .replace(",\"y\":1}", "},\"unknowns\":[\"y\"]")
+        .replace(",\"values\":[0,1]", "")
+        .replace("[\"*\",1,0]", "[\"f\",0]")
+        .replace("\"tables\":{", "\"tables\":{\"f\":[1,0],");
+    ends(&place, "unknown", unknown, 0, "*(x, y) != f(x) for all y (");
+    let values = ALGEBRA.replace("[0,1]}}", "[1,0]}}");
+    let said = "rejected at claim.values: the values of the sides are 0 and 1 for x = 0, y = 1\n";
+    ends(&place, "values", values, 1, said);
+    let same = ALGEBRA.replace("\"y\":1", "\"y\":0");
+    let said = "rejected at claim: both sides have the value 0 for x = 0, y = 0\n";
+    ends(&place, "same", same, 1, said);
+    let fails = ALGEBRA.replace(
+        "\"laws\":[]",
+        "\"laws\":[{\"name\":\"turn\",\"left\":2,\"right\":3}]",
+    );
+    ends(&place, "fails", fails, 1, "rejected at laws[0] (turn): ");
+    ends(
+        &place,
+        "json",
+        "{\"kind\" 1}",
+        1,
+        "at line 1 column 9: not JSON: expected `:`\n",
     );
     let truncated = &PROOF[..PROOF.len() / 2];
     ends(&place, "short", truncated, 1, "rejected at line 2 column");
@@ -147,6 +172,15 @@ fn the_worst_is_reported_and_the_rest_goes_on() {
     assert_eq!(status(&["missing", "bad", "good"]), (3, 2));
     assert_eq!(status(&[".", "good"]), (3, 1));
     assert_eq!(status(&[]), (3, 0));
+    let ran = place.run(&["verify", "--json", "missing", "good"]);
+    let first: Value = serde_json::from_str(ran.out.lines().next().expect("a line")).expect("JSON");
+    assert_eq!((ran.status, &first["file"]), (3, &Value::from("missing")));
+    assert!(first["error"].is_string(), "{first}");
+    let mut reading = place.command();
+    let input = std::fs::File::open(place.path("good")).expect("the file");
+    let ran = super::place::ran(reading.args(["verify", "-"]).stdin(input));
+    assert_eq!(ran.status, 0, "{}{}", ran.out, ran.err);
+    assert!(ran.out.starts_with("-: accepted: "), "{}", ran.out);
     let ran = place.run(&["verify", "good", "--theory", "missing.theory"]);
     assert_eq!(ran.status, 3);
     let ran = place.run(&["verify", "bad", "good", "--json"]);
@@ -192,7 +226,10 @@ fn a_theory_says_what_its_laws_are() {
     // An algebra needs every law.
     place.file("algebra", ALGEBRA);
     let (status, out) = judged("algebra", "unit.theory");
-    assert!(status == 1 && out.contains("every law"), "{out}");
+    assert!(
+        status == 1 && out.contains("leaves out the law unit"),
+        "{out}"
+    );
     // A definition of a symbol that the theory has would be one more law.
     let defined = PROOF
         .replace("[\"*\",1,1]]", "[\"*\",1,1],[\"f\",0],[\"f\",1]]")

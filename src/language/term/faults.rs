@@ -5,7 +5,7 @@ use crate::language::diagnostic::Fault;
 use crate::language::lexer::Kind;
 use crate::language::unknown::{self, Position};
 use crate::term::{Sort, Symbol};
-use crate::theory::{Fixity, Meaning, Signature};
+use crate::theory::{Fixity, Meaning, Side, Signature};
 use std::ops::Range;
 
 impl TermReader<'_, '_, '_> {
@@ -52,7 +52,7 @@ impl TermReader<'_, '_, '_> {
         position: Position,
         expected: Option<Sort>,
     ) -> Fault {
-        let expected = match self.waiting.last() {
+        let in_place = match self.waiting.last() {
             None => expected,
             Some(Waiting::Bracket(_)) => None,
             Some(Waiting::Prefix { symbol, .. }) => self.argument_sort(*symbol, 0),
@@ -61,7 +61,32 @@ impl TermReader<'_, '_, '_> {
                 self.argument_sort(*symbol, self.operands.len() - *first as usize)
             }
         };
+        // What stands behind the name may take it before what waits does.
+        let behind = unknown::operator_behind(self.signature, self.lexer);
+        let behind = behind.filter(|(fixity, _)| self.is_taken_by(*fixity));
+        let expected = behind.map(|(_, sort)| sort).or(in_place);
         unknown::fault(self.signature, self.lexer, name, span, position, expected)
+    }
+
+    /// Does an operator right behind an operand take it, and not the operator that waits?
+    fn is_taken_by(&self, next: Fixity) -> bool {
+        let Fixity::Infix { strength, side } = next else {
+            return true;
+        };
+        match self.waiting.last() {
+            Some(Waiting::Infix {
+                strength: before,
+                side: waiting,
+                ..
+            }) => {
+                strength > *before
+                    || (strength == *before && side == Side::Right && *waiting == Side::Right)
+            }
+            Some(Waiting::Prefix {
+                strength: before, ..
+            }) => strength > *before,
+            _ => true,
+        }
     }
 
     pub(super) fn argument_sort(&self, symbol: Symbol, place: usize) -> Option<Sort> {
@@ -151,6 +176,17 @@ pub(in crate::language) fn shown(name: &str) -> String {
         short.push('…');
     }
     format!("`{short}`")
+}
+
+/// `a List`, `an Item`.
+pub(super) fn with_article(sort: &str) -> String {
+    let is_vowel = |c: char| "aeiou".contains(c.to_ascii_lowercase());
+    let article = if sort.starts_with(is_vowel) {
+        "an"
+    } else {
+        "a"
+    };
+    format!("{article} {sort}")
 }
 
 /// `1 argument`, `2 arguments`.

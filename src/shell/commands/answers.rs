@@ -104,7 +104,14 @@ mod tests {
             shell.statement(&format!("{sum} = {sum}"));
             let answer = shell.session.answers().last().expect("an answer").clone();
             let breaker = Breaker::new(&shell.session.theory().signature);
-            let plain = entry(&answer, Look { color: false, width }, breaker);
+            let plain = entry(
+                &answer,
+                Look {
+                    color: false,
+                    width,
+                },
+                breaker,
+            );
             let colored = entry(&answer, Look { color: true, width }, breaker);
             assert!(colored.contains("\x1b[") && !colored.contains('\u{241b}'));
             let mut bare = String::new();
@@ -120,7 +127,10 @@ mod tests {
         shell.statement(&format!("{tower} = {tower}"));
         let answer = shell.session.answers().last().expect("an answer");
         let breaker = Breaker::new(&shell.session.theory().signature);
-        let look = Look { color: false, width: 40 };
+        let look = Look {
+            color: false,
+            width: 40,
+        };
         let text = entry(answer, look, breaker);
         assert!(text.lines().all(|line| columns(line) <= 40), "{text}");
     }

@@ -16,8 +16,10 @@ pub const COMMAND: Command = Command {
         "import FILE",
         "open a file in clause syntax, such as cnf(name, axiom, f(X) = c).",
     )],
-    page: "Statements cnf and fof of one equation each are understood, and include. Axioms become \
-           laws; the conjecture, or the negation of a negated one, becomes a claim. What is open is \
+    page: "Statements cnf and fof of one equation each are understood, and include. Equations \
+           become laws; the conjecture, or the opposite of an inequation, becomes a claim. An \
+           inequation is the goal whatever its role, an axiom too, since some files state their goal \
+           so. What is open is \
            put away; if it has changes that are not saved, you are asked first. save FILE keeps what \
            was imported as a theory. Paths in include begin in the folder that --library or the \
            environment variable EQUABLE_LIBRARY names; without one they are looked for beside the \

@@ -73,6 +73,7 @@ pub fn enter(shell: &mut Shell, opened: Opened) {
         text += &fold(note, width, 4);
     }
     shell.out(&text);
+    shell.say_notes(&opened.notes);
     if !opened.refused.is_empty() {
         shell.tell(Problem::Text(opened.refused));
         shell.remark("These derived rules are left out; everything else was taken, and complete finds what is missing.");
