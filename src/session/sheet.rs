@@ -1,7 +1,7 @@
 //! Evidence as text: its plain terms become terms of a bank of their own, for the printer.
 
 use super::naming::Naming;
-use crate::language::{Names, Printer, SymbolName};
+use crate::language::{Names, Printer, SymbolName, quote_law};
 use crate::proof::{self, Name, Node, TermIndex, Terms, Way};
 use crate::term::{Bank, Sort, Symbol, TermId, Variable};
 use crate::theory::{Signature, Theory};
@@ -16,7 +16,7 @@ pub struct ProofLine {
     pub text: String,
     /// Where in the text the subterm stands that the step has changed.
     pub changed: Option<Range<usize>>,
-    /// The law or lemma; empty for the first line.
+    /// The law, as it is typed, or the lemma; empty for the first line.
     pub by: String,
     /// Was it used from right to left?
     pub backward: bool,
@@ -27,7 +27,7 @@ pub struct ProofLine {
 /// A proved equation.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub struct LemmaText {
-    /// What it is called.
+    /// What it is called: `lemma 2`, or `rule 7` where it is about a rule.
     pub name: String,
     /// The equation.
     pub equation: String,
@@ -62,9 +62,11 @@ const LONGEST_LINE: usize = 4_000;
 
 /// The plain terms of one piece of evidence, ready for the printer.
 pub(super) struct Sheet<'t> {
-    signature: &'t Signature,
+    theory: &'t Theory,
     symbols: FxHashMap<String, Symbol>,
     terms: &'t Terms,
+    /// What lemmas are called here; the others keep the names that they have in the evidence.
+    lemmas: FxHashMap<Name, String>,
     bank: Bank,
     variables: Vec<String>,
     known: FxHashMap<TermIndex, TermId>,
@@ -100,20 +102,43 @@ impl<'t> Sheet<'t> {
         }
         let symbols = naming.symbols.iter().enumerate();
         Sheet {
-            signature: &theory.signature,
+            theory,
             symbols: symbols
                 .map(|(n, name)| (name.clone(), Symbol(n as u32)))
                 .collect(),
             terms,
+            lemmas: FxHashMap::default(),
             bank,
             variables: Vec::new(),
             known: FxHashMap::default(),
         }
     }
 
+    /// Calls the lemmas of a proof `lemma 1`, `lemma 2`, … in the order in which they stand. The
+    /// numbers in their own names are those of some engine, and mean nothing outside of it.
+    pub(super) fn number_lemmas(mut self, proof: &proof::Proof) -> Self {
+        let names = (1_u64..).map(|number| format!("lemma {number}"));
+        let free = names.filter(|name| self.theory.law(name).is_none());
+        let lemmas = proof.lemmas.iter().map(|lemma| lemma.equation.name);
+        self.lemmas = lemmas.zip(free).collect();
+        self
+    }
+
+    /// What a law or lemma is called; a law as it is typed.
+    fn name(&self, name: Name) -> String {
+        if let Some(name) = self.lemmas.get(&name) {
+            return name.clone();
+        }
+        let text = self.terms.text(name);
+        match self.theory.law(text) {
+            Some(_) => quote_law(text),
+            None => text.to_owned(),
+        }
+    }
+
     pub(super) fn proof(&mut self, proof: &proof::Proof) -> ProofText {
         let lemmas = proof.lemmas.iter().map(|lemma| LemmaText {
-            name: self.terms.text(lemma.equation.name).to_owned(),
+            name: self.name(lemma.equation.name),
             equation: self.equation(lemma.equation.left, lemma.equation.right),
             lines: self.chain(lemma.equation.left, &lemma.steps),
         });
@@ -149,7 +174,7 @@ impl<'t> Sheet<'t> {
     fn line(&mut self, step: &proof::Step) -> ProofLine {
         let term = self.term(step.to);
         let names = SheetNames {
-            signature: self.signature,
+            signature: &self.theory.signature,
             variables: &self.variables,
         };
         let printer = Printer::new(&names).limit(LONGEST_LINE);
@@ -157,7 +182,7 @@ impl<'t> Sheet<'t> {
         ProofLine {
             text: printed.text,
             changed: printed.highlight,
-            by: self.terms.text(step.by).to_owned(),
+            by: self.name(step.by),
             backward: step.way == Way::Backward,
             at: step.at.iter().map(|place| place + 1).collect(),
         }
@@ -170,7 +195,7 @@ impl<'t> Sheet<'t> {
     pub(super) fn text(&mut self, term: TermIndex) -> String {
         let term = self.term(term);
         let names = SheetNames {
-            signature: self.signature,
+            signature: &self.theory.signature,
             variables: &self.variables,
         };
         Printer::new(&names)

@@ -172,7 +172,8 @@ impl Session {
             return None;
         };
         let naming = super::naming::naming(&self.theory);
-        Some(Sheet::new(&self.theory, &naming, &proof.terms).head(proof, most))
+        let sheet = Sheet::new(&self.theory, &naming, &proof.terms);
+        Some(sheet.number_lemmas(proof).head(proof, most))
     }
 
     /// The proof of an answer as text, if it is `equal`.
@@ -181,7 +182,8 @@ impl Session {
             return None;
         };
         let naming = super::naming::naming(&self.theory);
-        Some(Sheet::new(&self.theory, &naming, &proof.terms).proof(proof))
+        let sheet = Sheet::new(&self.theory, &naming, &proof.terms);
+        Some(sheet.number_lemmas(proof).proof(proof))
     }
 
     /// Says so if the rules make all terms of a sort equal.

@@ -2,7 +2,7 @@
 
 use super::layout::{fold, fold_hanging};
 use super::screen::{Ink, Look};
-use crate::language::{Diagnostic, DropFault};
+use crate::language::{Diagnostic, DropFault, quote_law};
 use crate::order::OrderProblem;
 use crate::rewrite::Stopped;
 use crate::session::{ChangeFault, NoOrder, Obstacle, OpenFault, SaveFault, SessionFault};
@@ -93,9 +93,10 @@ impl Problem {
                     }
                     Obstacle::With(names) => format!(
                         "in no order that was found it decreases together with: {}",
-                        names.join(", ")
+                        quoted(names)
                     ),
                 };
+                let rule = quote_law(rule);
                 Problem::said(
                     format!("rule {rule} cannot be used from left to right: {reason}"),
                     "make a law of it, which is used in both directions, or turn it round",
@@ -104,7 +105,7 @@ impl Problem {
             NoOrder::Misdirected(names) => Problem::said(
                 format!(
                     "in this order the right side is not smaller than the left side in: {}",
-                    names.join(", ")
+                    quoted(names)
                 ),
                 "change the precedence or the weights, or make laws of these rules; help order",
             ),
@@ -193,6 +194,12 @@ impl Problem {
     pub fn status(&self) -> u8 {
         super::status::INPUT
     }
+}
+
+/// Names of laws, as they are typed.
+fn quoted(names: &[String]) -> String {
+    let quoted: Vec<String> = names.iter().map(|name| quote_law(name)).collect();
+    quoted.join(", ")
 }
 
 fn past(what: &str) -> &str {

@@ -4,7 +4,7 @@ use super::desk::Shell;
 use super::line::{Line, TYPED};
 use super::problem::Problem;
 use super::show;
-use crate::language::{Change, Fault, Question, Source};
+use crate::language::{Change, Fault, Question, Source, quote_law};
 use crate::session::{Control, Session, SessionFault};
 use crate::term::TermId;
 use std::time::Duration;
@@ -124,7 +124,7 @@ fn said(shell: &Shell, changes: &[Change]) -> String {
                 };
                 if law.unnamed || law.property.is_some() {
                     let equation = shell.session.equation_text(law.left, "=", law.right);
-                    rows.push(vec![format!("{name}:"), equation]);
+                    rows.push(vec![format!("{}:", quote_law(name)), equation]);
                 }
             }
             Change::Used(name) => {

@@ -1,6 +1,7 @@
 //! `claims`
 
 use super::{Command, Group, Operand};
+use crate::language::quote_law;
 use crate::shell::desk::Shell;
 use crate::shell::layout::table;
 use crate::shell::line::Line;
@@ -20,7 +21,10 @@ pub const COMMAND: Command = Command {
 
 fn run(shell: &mut Shell, line: Line<'_>) -> Result<(), Problem> {
     line.end()?;
-    let row = |claim: crate::session::ClaimView| vec![claim.name.unwrap_or_default(), claim.text];
+    let row = |claim: crate::session::ClaimView| {
+        let name = claim.name.as_deref().map(quote_law);
+        vec![name.unwrap_or_default(), claim.text]
+    };
     let rows: Vec<Vec<String>> = shell.session.claims().into_iter().map(row).collect();
     if rows.is_empty() {
         shell.out("No claims yet. State one, such as claim x * e = x.\n");

@@ -1,6 +1,7 @@
 //! `laws`
 
 use super::{Command, Group, Operand};
+use crate::language::quote_law;
 use crate::shell::desk::Shell;
 use crate::shell::layout::table;
 use crate::shell::line::Line;
@@ -33,7 +34,7 @@ fn run(shell: &mut Shell, line: Line<'_>) -> Result<(), Problem> {
                 LawKind::Definition => about.push("definition".to_owned()),
             }
             about.extend(law.from.map(|from| format!("from {from}")));
-            let mut row = vec![law.name, law.text];
+            let mut row = vec![quote_law(&law.name), law.text];
             if !about.is_empty() {
                 row.push(about.join(", "));
             }

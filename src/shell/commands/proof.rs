@@ -22,7 +22,9 @@ pub const COMMAND: Command = Command {
     ],
     page: "A proof is a chain of equalities: every line is equal to the line before it, by the law \
            or lemma beside it, used from left to right unless it says otherwise, at the place that \
-           it gives. Lemmas come first, each with its own chain. A checker of its own has gone \
+           it gives. Lemmas come first, each with its own chain, numbered in the order \
+           in which they are proved; short gives each in one line. (why and trace speak of rules by \
+           the numbers that rules shows.) A checker of its own has gone \
            through every step before the answer was printed. For an answer `not equal` the normal \
            forms are shown, for rules that are complete give equal terms the same one.",
     example: "open group\nx * i(x) = e\nproof\nproof 1 short",
@@ -94,7 +96,7 @@ fn render(shell: &Shell, answer: &Answer, short: bool) -> String {
         );
     }
     text += &match (answer.verdict, shell.session.proof_text(answer)) {
-        (_, Some(proof)) if short => show::proof_short(&proof, &answer.question, look, breaker),
+        (_, Some(proof)) if short => show::proof_short(&proof, &answer.question, look),
         (_, Some(proof)) => show::proof(&proof, &answer.question, look, breaker),
         (Verdict::NotEqual, None) => show::answer(answer, &shell.session, look, show::Place::Shell),
         (Verdict::Equal, None) => fold("The proof cannot be shown as text.", look.width, 0),

@@ -1,6 +1,7 @@
 //! `rules`
 
 use super::{Command, Group, Operand};
+use crate::language::quote_law;
 use crate::shell::desk::Shell;
 use crate::shell::layout::table;
 use crate::shell::line::Line;
@@ -36,7 +37,7 @@ fn run(shell: &mut Shell, line: Line<'_>) -> Result<(), Problem> {
         .len();
     let row = |rule: &crate::session::RuleView| {
         let mut row = vec![format!("{:>digits$}", rule.number), rule.text.clone()];
-        row.extend(rule.law.clone().map(|law| format!("law {law}")));
+        row.extend(rule.law.as_deref().map(|law| format!("law {}", quote_law(law))));
         row
     };
     let rows: Vec<Vec<String>> = rules.iter().map(row).collect();

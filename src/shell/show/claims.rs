@@ -2,6 +2,7 @@
 
 use super::Place;
 use super::answer::ink;
+use crate::language::quote_law;
 use crate::session::{ClaimResult, Verdict};
 use crate::shell::layout::{columns, fold, fold_hanging, pad};
 use crate::shell::problem::stop_text;
@@ -48,7 +49,7 @@ fn line(result: &ClaimResult, label: &str, column: usize, look: Look, place: Pla
 
 fn label(result: &ClaimResult) -> String {
     match &result.name {
-        Some(name) => format!("{name}: {}", result.text),
+        Some(name) => format!("{}: {}", quote_law(name), result.text),
         None => result.text.clone(),
     }
 }

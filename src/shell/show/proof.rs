@@ -1,7 +1,7 @@
 //! Chains of equalities and proofs.
 
 use crate::session::{LemmaText, ProofLine, ProofText};
-use crate::shell::layout::{Breaker, columns, fold};
+use crate::shell::layout::{Breaker, columns, cut, fold};
 use crate::shell::quantity::count;
 use crate::shell::screen::{Ink, Look};
 use std::ops::Range;
@@ -26,22 +26,22 @@ pub fn chain(lines: &[ProofLine], look: Look, breaker: Breaker<'_>) -> String {
     for (place, (line, cite)) in lines.iter().zip(&cites).enumerate() {
         let lead = if place == 0 { "    " } else { "  = " };
         let width = columns(&line.text);
-        let gap = if cite.is_empty() {
-            0
-        } else if width <= column && LEAD + column + GAP + columns(cite) <= look.width {
-            column - width + GAP
+        let in_column = width <= column && LEAD + column + GAP + columns(cite) <= look.width;
+        let (gap, cite) = if cite.is_empty() || in_column {
+            (column.saturating_sub(width) + GAP, cite.clone())
         } else {
-            2
+            // Outside of the column a name could be taken for a part of the term.
+            (2, format!("by {cite}"))
         };
         text += lead;
         let last = put_term(&mut text, line, look, breaker);
         if cite.is_empty() {
             text.push('\n');
-        } else if last + gap + columns(cite) <= look.width {
-            text += &format!("{}{}\n", " ".repeat(gap), look.ink(Ink::Quiet, cite));
+        } else if last + gap + columns(&cite) <= look.width {
+            text += &format!("{}{}\n", " ".repeat(gap), look.ink(Ink::Quiet, &cite));
         } else {
             text.push('\n');
-            for line in fold(cite, look.width, 8).lines() {
+            for line in fold(&cite, look.width, 8).lines() {
                 text += &format!("{}\n", look.ink(Ink::Quiet, line));
             }
         }
@@ -92,10 +92,6 @@ fn cite(line: &ProofLine) -> String {
     if cite.is_empty() {
         return cite;
     }
-    // A name that begins with a sign would read as part of the term beside it.
-    if !cite.starts_with(char::is_alphanumeric) {
-        cite = format!("\"{cite}\"");
-    }
     if line.backward {
         cite += ", right to left";
     }
@@ -119,21 +115,34 @@ pub fn proof(proof: &ProofText, question: &str, look: Look, breaker: Breaker<'_>
     text + &chain(&proof.lines, look, breaker)
 }
 
-/// The lemmas without their chains, and how long everything is.
-pub fn proof_short(proof: &ProofText, question: &str, look: Look, breaker: Breaker<'_>) -> String {
+/// The lemmas without their chains, and how long everything is: one line each.
+pub fn proof_short(proof: &ProofText, question: &str, look: Look) -> String {
+    let line = |name: &str, equation: &str, lines: &[ProofLine]| {
+        let length = format!("   ({})", count(steps(lines), "step"));
+        let room = look.width.saturating_sub(columns(name) + columns(&length));
+        format!("{name}{}{length}\n", cut_equation(equation, room.max(12)))
+    };
     let mut text = String::new();
     for lemma in &proof.lemmas {
-        let line = format!(
-            "{}: {}   ({})",
-            lemma.name,
-            lemma.equation,
-            count(steps(&lemma.lines), "step")
-        );
-        text += &broken(&line, look, breaker);
-        text.push('\n');
+        text += &line(&format!("{}: ", lemma.name), &lemma.equation, &lemma.lines);
     }
-    let line = format!("{question}   ({})", count(steps(&proof.lines), "step"));
-    text + &broken(&line, look, breaker) + "\n"
+    text + &line("", question, &proof.lines)
+}
+
+/// An equation in so many columns: where it is longer, a side that needs more than half is cut.
+fn cut_equation(equation: &str, room: usize) -> String {
+    if columns(equation) <= room {
+        return equation.to_owned();
+    }
+    let Some((left, right)) = equation.split_once(" = ") else {
+        return cut(equation, room);
+    };
+    let room = room.saturating_sub(3);
+    let half = room / 2;
+    let first = room.saturating_sub(columns(right).min(half));
+    let left = cut(left, first);
+    let right = cut(right, room.saturating_sub(columns(&left)));
+    format!("{left} = {right}")
 }
 
 fn head(lemma: &LemmaText, look: Look, breaker: Breaker<'_>) -> String {
@@ -189,6 +198,15 @@ mod tests {
   = x                        once
 "
         );
+        assert_eq!(
+            shown(30),
+            "    x ▷ x
+  = (factory ▷ x) ▷ x
+        by base, right to
+        left, at 1
+  = x        once
+"
+        );
         for width in 1..60 {
             shown(width);
         }
@@ -198,5 +216,37 @@ mod tests {
         };
         let text = chain(&lines, color, Breaker::new(&signature));
         assert!(text.contains("\x1b[4mx\x1b[0m"), "{text:?}");
+    }
+    #[test]
+    fn lemmas_in_short_take_one_line_each() {
+        let lemma = |name: &str, equation: &str| LemmaText {
+            name: name.to_owned(),
+            equation: equation.to_owned(),
+            lines: vec![line("x", "", false, &[]), line("x", "once", false, &[])],
+        };
+        let long = "f(x, y) ▷ ".repeat(300);
+        let proof = ProofText {
+            lemmas: vec![
+                lemma("lemma 1", "x ▷ x = x"),
+                lemma("lemma 2", &format!("{long}x = x")),
+                lemma("lemma 3", &format!("x = {long}x")),
+                lemma("lemma 4", &format!("{long}x = {long}y")),
+            ],
+            lines: vec![line("x", "", false, &[])],
+        };
+        let look = Look {
+            color: false,
+            width: 50,
+        };
+        let text = proof_short(&proof, "x = x", look);
+        assert_eq!(
+            text,
+            "lemma 1: x ▷ x = x   (1 step)
+lemma 2: f(x, y) ▷ f(x, y) ▷ … = x   (1 step)
+lemma 3: x = f(x, y) ▷ f(x, y) ▷ …   (1 step)
+lemma 4: f(x, y) ▷ f… = f(x, y) ▷ …   (1 step)
+x = x   (0 steps)
+"
+        );
     }
 }
