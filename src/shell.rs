@@ -27,13 +27,12 @@ mod verify;
 mod words;
 
 use arguments::Arguments;
-use clap::Parser;
 use std::process::ExitCode;
 
 /// Runs the program: reads the command line, does what it says, and gives the exit status.
 pub fn main() -> ExitCode {
     problem::install_panic_sentence();
-    let arguments = match Arguments::try_parse() {
+    let arguments = match Arguments::read() {
         Ok(arguments) => arguments,
         Err(error) => {
             let status = if error.use_stderr() { status::INPUT } else { 0 };

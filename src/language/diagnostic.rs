@@ -113,7 +113,23 @@ pub struct Message {
     pub help: Vec<String>,
     /// What else there is to know.
     pub notes: Vec<String>,
+    /// Another place; the first of the notes is about it.
+    also: Option<Also>,
     excerpt: Excerpt,
+}
+
+/// Another place that matters, and why.
+#[derive(Clone, Debug, PartialEq, Eq)]
+struct Also {
+    why: String,
+    line: usize,
+    column: usize,
+}
+
+impl Also {
+    fn note(&self) -> String {
+        format!("{} (line {}, column {})", self.why, self.line, self.column)
+    }
 }
 
 /// A part of one line: some characters before the place, the place, and some after it.
@@ -134,9 +150,9 @@ impl Diagnostic {
         let start = floor(text, fault.span.start);
         let end = floor(text, fault.span.end).max(start);
         let (line, column) = line_and_column(text, start);
-        let notes = fault.also.iter().map(|(span, why)| {
+        let also = fault.also.map(|(span, why)| {
             let (line, column) = line_and_column(text, floor(text, span.start));
-            format!("{why} (line {line}, column {column})")
+            Also { why, line, column }
         });
         Diagnostic(Box::new(Message {
             source: source.name.to_owned(),
@@ -146,7 +162,8 @@ impl Diagnostic {
             message: fault.message,
             label: fault.label,
             help: fault.help,
-            notes: notes.collect(),
+            notes: also.iter().map(Also::note).collect(),
+            also,
             excerpt: Excerpt::new(text, start..end),
         }))
     }
@@ -172,6 +189,17 @@ impl Diagnostic {
     #[must_use]
     pub fn further_down(mut self, lines: usize) -> Self {
         self.line += lines;
+        if let Message {
+            also: Some(also),
+            notes,
+            ..
+        } = &mut *self.0
+        {
+            also.line += lines;
+            if let Some(first) = notes.first_mut() {
+                *first = also.note();
+            }
+        }
         self
     }
 

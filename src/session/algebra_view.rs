@@ -1,7 +1,7 @@
 //! The finite algebras of a session, to be shown and evaluated in.
 
 use super::algebras::named_tables;
-use super::naming::naming;
+use super::naming::{Naming, naming};
 use super::sheet::Sheet;
 use super::{Answer, Session};
 use crate::algebra::Equation;
@@ -17,6 +17,9 @@ pub struct AlgebraView {
     pub sizes: Vec<(String, u32)>,
     /// The table of each symbol, by its name.
     pub tables: Vec<(String, Table)>,
+    /// For each table the sorts of the arguments and, last, of the values; empty if there is one
+    /// sort only.
+    pub sorts: Vec<Vec<String>>,
     /// Are all algebras with fewer elements ruled out, for the question that it was found for?
     pub smallest: bool,
     /// The question that it was found for.
@@ -52,6 +55,8 @@ pub struct AlgebraText {
     pub sizes: Vec<(String, u32)>,
     /// As in [`AlgebraView`].
     pub tables: Vec<(String, Table)>,
+    /// As in [`AlgebraView`].
+    pub sorts: Vec<Vec<String>>,
     /// The values of the variables.
     pub with: Vec<(String, u32)>,
     /// The two sides, and their values.
@@ -71,8 +76,10 @@ impl Session {
         let naming = naming(&self.theory);
         let sorts = self.theory.signature.sorts();
         let view = |(kept, algebra): (&super::algebras::Kept, &crate::algebra::Algebra)| {
-            let tables = named_tables(&naming, algebra).into_iter();
+            let tables = named_tables(&naming, algebra);
+            let names = tables.iter().map(|(name, _)| *name);
             AlgebraView {
+                sorts: table_sorts(&naming, names),
                 number: kept.number,
                 sizes: sorts
                     .iter()
@@ -80,6 +87,7 @@ impl Session {
                     .zip(algebra.sizes().iter().copied())
                     .collect(),
                 tables: tables
+                    .into_iter()
                     .map(|(name, table)| (name.to_owned(), table))
                     .collect(),
                 smallest: kept.smallest,
@@ -165,6 +173,10 @@ impl Session {
                 .iter()
                 .map(|(s, n)| (terms.text(*s).to_owned(), *n))
                 .collect(),
+            sorts: table_sorts(
+                &naming,
+                found.tables.iter().map(|(name, _)| terms.text(*name)),
+            ),
             tables: (found.tables.iter())
                 .map(|(name, table)| (terms.text(*name).to_owned(), table.clone()))
                 .collect(),
@@ -182,4 +194,20 @@ impl Session {
             ],
         })
     }
+}
+
+/// The sorts of the arguments and values of the symbols of these names, if there are several sorts.
+fn table_sorts<'n>(naming: &Naming, names: impl Iterator<Item = &'n str>) -> Vec<Vec<String>> {
+    if naming.sorts.len() < 2 {
+        return Vec::new();
+    }
+    let sorts = |name: &str| {
+        let place = naming.symbols.iter().position(|known| known == name);
+        let types = place.map_or(&[][..], |place| &naming.types[place]);
+        let names = types
+            .iter()
+            .map(|sort| naming.sorts[usize::from(sort.0)].clone());
+        names.collect()
+    };
+    names.map(sorts).collect()
 }

@@ -1,7 +1,8 @@
 //! The command line.
 
 use super::quantity;
-use clap::{Args, Parser, Subcommand, ValueEnum};
+use clap::error::ErrorKind;
+use clap::{Args, CommandFactory, Parser, Subcommand, ValueEnum};
 use std::path::PathBuf;
 use std::time::Duration;
 
@@ -17,8 +18,7 @@ apply, 4 goes before 3, 3 before 1, and 1 before 2.";
 
 /// Keeps equational laws and answers, with evidence, what follows from them.
 #[derive(Debug, Parser)]
-#[command(name = "equable", version, after_help = AFTER, subcommand_negates_reqs = true)]
-#[command(args_conflicts_with_subcommands = true, disable_help_subcommand = true)]
+#[command(name = "equable", version, after_help = AFTER, disable_help_subcommand = true)]
 pub struct Arguments {
     /// What to do; without it the shell is opened.
     #[command(subcommand)]
@@ -32,6 +32,59 @@ pub struct Arguments {
     /// Without colours and without the line that shows progress.
     #[arg(long, global = true)]
     pub plain: bool,
+    /// What the tasks that answer have in common.
+    #[command(flatten)]
+    pub options: Options,
+    /// For ask, check and complete: write the evidence of every settled answer into this folder, one
+    /// JSON file each.
+    #[arg(long, global = true, value_name = "FOLDER")]
+    pub evidence: Option<PathBuf>,
+}
+
+impl Arguments {
+    /// Reads the command line. Options may stand before the word for the task and behind it.
+    ///
+    /// # Errors
+    ///
+    /// What cannot be read, an option that the task does not have, and the wish for help.
+    pub fn read() -> Result<Arguments, clap::Error> {
+        let read = Arguments::try_parse()?;
+        match read.misplaced() {
+            None => Ok(read),
+            Some(message) => Err(Arguments::command().error(ErrorKind::ArgumentConflict, message)),
+        }
+    }
+
+    /// Says what does not go with the task.
+    fn misplaced(&self) -> Option<String> {
+        if let (Some(file), Some(_)) = (&self.file, &self.task) {
+            return Some(format!(
+                "{file} stands before the word that says what to do"
+            ));
+        }
+        let (word, allowed): (&str, &[&str]) = match &self.task {
+            None => ("the shell", &[]),
+            Some(Task::Run { .. }) => ("run", &[]),
+            Some(Task::Ask { .. }) => ("ask", &["--json", "--within", "--evidence"]),
+            Some(Task::Normal { .. }) => ("normal", &["--json", "--within"]),
+            Some(Task::Check { .. }) => ("check", &["--json", "--within", "--evidence"]),
+            Some(Task::Complete { .. }) => ("complete", &["--json", "--within", "--evidence"]),
+            Some(Task::Verify { .. }) => ("verify", &["--json"]),
+        };
+        let given = [
+            ("--json", self.options.json.is_some()),
+            ("--within", self.options.within.is_some()),
+            ("--evidence", self.evidence.is_some()),
+        ];
+        let mut wrong = given
+            .iter()
+            .filter(|(option, given)| *given && !allowed.contains(option));
+        if let Some((option, _)) = wrong.next() {
+            return Some(format!("{word} has no option {option}"));
+        }
+        let is_full = self.options.json == Some(Json::Full);
+        (is_full && word == "verify").then(|| "verify writes no evidence: take --json".to_owned())
+    }
 }
 
 /// What can be done without the shell.
@@ -48,10 +101,6 @@ pub enum Task {
         file: String,
         /// The question, 's = t' or 's != t'.
         question: String,
-        #[command(flatten)]
-        options: Options,
-        #[command(flatten)]
-        evidence: EvidenceFolder,
     },
     /// The normal form of a term by the rules of a theory.
     Normal {
@@ -59,27 +108,20 @@ pub enum Task {
         file: String,
         /// The term.
         term: String,
-        #[command(flatten)]
-        options: Options,
     },
     /// Verifies every claim of the theories.
     Check {
         /// The theories.
         #[arg(required = true)]
         files: Vec<String>,
-        #[command(flatten)]
-        options: Options,
-        #[command(flatten)]
-        evidence: EvidenceFolder,
     },
     /// Looks for a complete set of rules for a theory.
     Complete {
         /// The theory.
         file: String,
-        #[command(flatten)]
-        options: Options,
-        #[command(flatten)]
-        evidence: EvidenceFolder,
+        /// Print the rules even if they are not complete.
+        #[arg(long)]
+        all: bool,
     },
     /// Checks evidence in files, without searching for anything.
     Verify {
@@ -89,30 +131,19 @@ pub enum Task {
         /// The laws and sorts must be those of this theory.
         #[arg(long, value_name = "FILE")]
         theory: Option<String>,
-        /// One JSON object a line instead of text.
-        #[arg(long)]
-        json: bool,
     },
 }
 
 /// What the tasks that answer have in common.
 #[derive(Clone, Copy, Debug, Args)]
 pub struct Options {
-    /// One JSON object a line instead of text; full has the evidence inside.
-    #[arg(long, value_name = "FORM", num_args = 0..=1, require_equals = true)]
+    /// For tasks that answer: one JSON object a line instead of text; full has the evidence inside.
+    #[arg(long, global = true, value_name = "FORM", num_args = 0..=1, require_equals = true)]
     #[arg(default_missing_value = "brief")]
     pub json: Option<Json>,
-    /// For how long to work, such as 500ms, 60s, 2m or 1h.
-    #[arg(long, value_name = "TIME", value_parser = duration)]
+    /// For tasks that search: for how long to work, such as 500ms, 60s, 2m or 1h.
+    #[arg(long, global = true, value_name = "TIME", value_parser = duration)]
     pub within: Option<Duration>,
-}
-
-/// Where evidence goes.
-#[derive(Clone, Debug, Args)]
-pub struct EvidenceFolder {
-    /// Write the evidence of every settled answer into this folder, one JSON file each.
-    #[arg(long = "evidence", value_name = "FOLDER")]
-    pub folder: Option<PathBuf>,
 }
 
 /// How much an answer as JSON holds.

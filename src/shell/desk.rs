@@ -9,8 +9,9 @@ use super::screen::{Look, Screen};
 use super::signals::Signals;
 use super::{layout, question, show, status, words};
 use crate::language::{Diagnostic, first_word, is_declaration, is_reserved};
-use crate::proof::{self, Evidence};
+use crate::proof::{self, Evidence, Table};
 use crate::session::{Control, ProgramFault, Session};
+use std::collections::HashMap;
 use std::panic::{AssertUnwindSafe, catch_unwind};
 use std::path::Path;
 
@@ -36,6 +37,8 @@ pub struct Shell {
     pub pending_lines: usize,
     /// Was the last piece of work stopped by Ctrl-C?
     pub interrupted: bool,
+    /// The tables of the algebras that were printed, by number.
+    pub printed: HashMap<u32, Vec<(String, Table)>>,
 }
 
 impl Shell {
@@ -52,6 +55,7 @@ impl Shell {
             place: None,
             pending_lines: 0,
             interrupted: false,
+            printed: HashMap::new(),
         }
     }
 

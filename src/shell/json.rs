@@ -1,6 +1,7 @@
 //! Answers as JSON, one object a line.
 
 use super::arguments::Json;
+use super::problem::Problem;
 use crate::language::Names;
 use crate::language::TheoryNames;
 use crate::order::OrderKind;
@@ -17,6 +18,23 @@ pub fn expected(expected: Option<Expected>) -> Value {
         Some(Expected::NotEqual) => json!("not equal"),
         None => Value::Null,
     }
+}
+
+/// Why there is no answer about a file: the first fault, and how many more there are.
+pub fn refused(file: &str, problem: &Problem) -> Value {
+    let (text, place, more) = match problem {
+        Problem::Text(faults) => {
+            let first = faults.first();
+            let place = first.filter(|fault| fault.line > 0).map(|fault| {
+                let (source, line, column) = (&fault.source, fault.line, fault.column);
+                json!({ "source": source, "line": line, "column": column })
+            });
+            let text = first.map_or("", |fault| &fault.message);
+            (text, place, faults.len().saturating_sub(1))
+        }
+        Problem::Said { message, .. } => (message.as_str(), None, 0),
+    };
+    json!({ "file": file, "error": { "text": text, "place": place, "more": more } })
 }
 
 /// Where the evidence of an answer is, as fields of its object.

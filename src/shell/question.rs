@@ -59,8 +59,16 @@ pub fn settle(
     let number =
         asked.map_err(|fault| Problem::session(fault, &shell.session.theory().signature))?;
     let answer = &shell.session.answers()[number as usize - 1];
-    let text = show::answer(answer, &shell.session, shell.look(), show::Place::Shell);
     let fault = answer.fault.clone();
+    // By its tables, for numbers begin anew with another theory.
+    let algebra = answer.algebra.map(|algebra| algebra.number);
+    let tables = shell.session.algebra_text(answer).map(|found| found.tables);
+    let found = algebra.zip(tables);
+    let is_printed =
+        (found.as_ref()).is_some_and(|(number, tables)| shell.printed.get(number) == Some(tables));
+    let place = show::Place::Shell;
+    let text = show::answer_again(answer, &shell.session, shell.look(), place, is_printed);
+    shell.printed.extend(found);
     shell.out(&text);
     if let Some((fault, evidence)) = fault {
         shell.report_fault(&fault, &evidence);

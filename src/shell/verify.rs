@@ -1,8 +1,8 @@
 //! `equable verify`: the checkers on files alone, without the engine.
 
 use super::desk::Shell;
-use super::problem::{Problem, plain_error};
-use super::{places, quantity, status};
+use super::problem::Problem;
+use super::{json, places, quantity, status};
 use crate::proof::{self, Evidence, Name, Outcome, TermIndex, WorkLimit};
 use crate::session::{Session, is_of_theory};
 use crate::theory::Theory;
@@ -40,11 +40,11 @@ pub fn run(shell: &mut Shell, files: &[String], theory: Option<&str>, as_json: b
         let checked = match checked {
             Ok(checked) => checked,
             Err(error) => {
+                let problem = Problem::system("read", Path::new(file), &error);
                 if as_json {
-                    let object = json!({ "file": file, "error": plain_error(&error) });
-                    shell.out(&format!("{object}\n"));
+                    shell.out(&format!("{}\n", json::refused(file, &problem)));
                 }
-                shell.tell(Problem::system("read", Path::new(file), &error));
+                shell.tell(problem);
                 worst = status::worse(worst, status::INPUT);
                 continue;
             }

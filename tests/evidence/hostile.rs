@@ -175,7 +175,7 @@ fn the_worst_is_reported_and_the_rest_goes_on() {
     let ran = place.run(&["verify", "--json", "missing", "good"]);
     let first: Value = serde_json::from_str(ran.out.lines().next().expect("a line")).expect("JSON");
     assert_eq!((ran.status, &first["file"]), (3, &Value::from("missing")));
-    assert!(first["error"].is_string(), "{first}");
+    assert!(first["error"]["text"].is_string(), "{first}");
     let mut reading = place.command();
     let input = std::fs::File::open(place.path("good")).expect("the file");
     let ran = super::place::ran(reading.args(["verify", "-"]).stdin(input));

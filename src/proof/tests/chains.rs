@@ -329,7 +329,7 @@ fn algebras() {
     rejected_at(Evidence::Algebra(wrong), "tables.m");
     let mut wrong = projection();
     wrong.claim.values = Some([1, 0]);
-    rejected_at(Evidence::Algebra(wrong), "claim");
+    rejected_at(Evidence::Algebra(wrong), "claim.values");
     let mut wrong = projection();
     wrong.claim.with[1].1 = 2;
     rejected_at(Evidence::Algebra(wrong), "claim.with.y");

@@ -32,7 +32,7 @@ fn run(shell: &mut Shell, mut line: Line<'_>) -> Result<(), Problem> {
     let results = shell.work(|session, control| session.check(within, control, &mut |_| {}));
     let results =
         results.map_err(|fault| Problem::session(fault, &shell.session.theory().signature))?;
-    let mut text = show::claims(&results, shell.look(), show::Place::Shell);
+    let mut text = show::claims(&results, &shell.session, shell.look(), None);
     text += &show::claims_summary(&results, shell.look());
     text += &show::claims_left(results.len(), claims, shell.look());
     shell.out(&text);

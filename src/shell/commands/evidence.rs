@@ -2,7 +2,7 @@
 
 use super::{Command, Group, Operand, proof};
 use crate::language::Fault;
-use crate::session::{Verdict, write_evidence};
+use crate::session::{Answer, Verdict, write_evidence};
 use crate::shell::desk::Shell;
 use crate::shell::line::Line;
 use crate::shell::problem::Problem;
@@ -43,7 +43,7 @@ fn run(shell: &mut Shell, mut line: Line<'_>) -> Result<(), Problem> {
     let path = Path::new(if line.end().is_ok() { name } else { rest });
     let answer = &shell.session.answers()[place];
     if answer.evidence.is_none() {
-        return Err(without(answer.number, answer.verdict));
+        return Err(without(answer));
     }
     if !shell.may_replace(path) {
         shell.out("Nothing was written.\n");
@@ -65,12 +65,21 @@ fn run(shell: &mut Shell, mut line: Line<'_>) -> Result<(), Problem> {
 }
 
 /// Why there is nothing to write.
-fn without(number: u32, verdict: Verdict) -> Problem {
-    match verdict {
-        Verdict::Undecided => Problem::said(
-            format!("answer {number} is undecided, so there is no evidence"),
-            "prove s = t within 60s, with the sides of the question, looks longer",
-        ),
+fn without(answer: &Answer) -> Problem {
+    let number = answer.number;
+    match answer.verdict {
+        Verdict::Undecided => {
+            // A question with unknowns begins with the word for it.
+            let what = if answer.question.starts_with("find ") {
+                "find x: s = t within 60s, with the unknowns and"
+            } else {
+                "prove s = t within 60s, with"
+            };
+            Problem::said(
+                format!("answer {number} is undecided, so there is no evidence"),
+                format!("{what} the sides of the question, looks longer"),
+            )
+        }
         _ => Problem::said(
             format!("answer {number} has no evidence that could be written"),
             "ask the question again",

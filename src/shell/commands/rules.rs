@@ -37,7 +37,11 @@ fn run(shell: &mut Shell, line: Line<'_>) -> Result<(), Problem> {
         .len();
     let row = |rule: &crate::session::RuleView| {
         let mut row = vec![format!("{:>digits$}", rule.number), rule.text.clone()];
-        row.extend(rule.law.as_deref().map(|law| format!("law {}", quote_law(law))));
+        row.extend(
+            rule.law
+                .as_deref()
+                .map(|law| format!("law {}", quote_law(law))),
+        );
         row
     };
     let rows: Vec<Vec<String>> = rules.iter().map(row).collect();

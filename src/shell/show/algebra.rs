@@ -9,10 +9,24 @@ use crate::shell::screen::Look;
 /// A table with more entries than this is not printed.
 const LARGEST: usize = 1_600;
 
-/// The algebra of an answer, with the values that tell the sides apart.
-pub fn text(found: &AlgebraText, look: Look) -> String {
-    let mut text = sizes(&found.sizes, look);
-    text += &tables(&found.tables, look);
+/// The algebra of an answer, with the values that tell the sides apart. One that has been printed
+/// before is only named.
+pub fn text(found: &AlgebraText, number: u32, is_known: bool, look: Look) -> String {
+    let mut text = if is_known {
+        fold(
+            &format!("A{number} is shown above, and by algebras"),
+            look.width,
+            4,
+        )
+    } else {
+        sizes(&found.sizes, look) + &tables(&found.tables, &found.sorts, look)
+    };
+    text += &fold(&deciding(found), look.width, 4);
+    text
+}
+
+/// The values that tell the sides apart.
+pub fn deciding(found: &AlgebraText) -> String {
     let with: Vec<String> = found
         .with
         .iter()
@@ -25,12 +39,11 @@ pub fn text(found: &AlgebraText, look: Look) -> String {
         let unknowns = found.unknowns.join(", ");
         format!("{left} and {right} differ for all values of {unknowns}")
     };
-    let line = if with.is_empty() {
+    if with.is_empty() {
         differ
     } else {
         format!("{}: {differ}", with.join(", "))
-    };
-    text + &fold(&line, look.width, 4)
+    }
 }
 
 /// A known algebra, for a list.
@@ -46,7 +59,9 @@ pub fn known(view: &AlgebraView, look: Look) -> String {
         "A{}: {elements}, {smallest} for {}",
         view.number, view.question
     );
-    fold(&line, look.width, 0) + &sizes(&view.sizes, look) + &tables(&view.tables, look)
+    fold(&line, look.width, 0)
+        + &sizes(&view.sizes, look)
+        + &tables(&view.tables, &view.sorts, look)
 }
 
 /// How many elements each named sort has.
@@ -67,7 +82,9 @@ fn sizes(sizes: &[(String, u32)], look: Look) -> String {
     )
 }
 
-fn tables(tables: &[(String, Table)], look: Look) -> String {
+/// The tables of the symbols; where there are several sorts, each with the sorts of its arguments
+/// and of its values.
+fn tables(tables: &[(String, Table)], sorts: &[Vec<String>], look: Look) -> String {
     let mut text = String::new();
     let constants: Vec<String> = tables
         .iter()
@@ -77,28 +94,34 @@ fn tables(tables: &[(String, Table)], look: Look) -> String {
     if !constants.is_empty() {
         text += &fold(&constants.join(", "), look.width, 4);
     }
-    for (name, table) in tables.iter().filter(|(_, table)| !table.shape.is_empty()) {
-        text += &match table.shape[..] {
-            _ if table.values.len() > LARGEST => {
-                let entries = number(table.values.len() as u128);
-                fold(
-                    &format!("{name}: {entries} entries, in the evidence"),
-                    look.width,
-                    4,
-                )
-            }
-            [columns] => grid(name, &[String::new()], columns, &table.values, look),
-            [rows, columns] => {
-                let rows: Vec<String> = (0..rows).map(|row| row.to_string()).collect();
-                grid(name, &rows, columns, &table.values, look)
-            }
-            [ref before @ .., columns] => {
-                grid(name, &row_names(before), columns, &table.values, look)
-            }
-            [] => String::new(),
+    for (place, (name, table)) in tables.iter().enumerate() {
+        let Some((&across, before)) = table.shape.split_last() else {
+            continue;
+        };
+        if let Some((result, arguments)) = sorts.get(place).and_then(|sorts| sorts.split_last()) {
+            text += &fold(&caption(name, arguments, result), look.width, 4);
+        }
+        text += &if table.values.len() > LARGEST {
+            let entries = number(table.values.len() as u128);
+            let line = format!("{name}: {entries} entries, in the evidence");
+            fold(&line, look.width, 4)
+        } else {
+            grid(name, &row_names(before), across, &table.values, look)
         };
     }
     text
+}
+
+/// What stands beside and above a table: `get: Layer down, Key across, gives Value`.
+fn caption(name: &str, arguments: &[String], result: &str) -> String {
+    match arguments.split_last() {
+        Some((across, [])) => format!("{name}: {across} across, gives {result}"),
+        Some((across, down)) => {
+            let down = down.join(", ");
+            format!("{name}: {down} down, {across} across, gives {result}")
+        }
+        None => String::new(),
+    }
 }
 
 /// All choices of the first arguments: `0,0`, `0,1`, …
@@ -167,8 +190,29 @@ mod tests {
             color: false,
             width: 80,
         };
-        let text = tables(&[("▷".to_owned(), table)], look);
+        let text = tables(&[("▷".to_owned(), table)], &[], look);
         assert_eq!(text, "    ▷ | 0 1\n    --+----\n    0 | 0 1\n    1 | 1 1\n");
+    }
+
+    #[test]
+    fn a_table_of_several_sorts_says_which_stand_where() {
+        let table = Table {
+            shape: vec![2, 1],
+            values: vec![0, 1],
+        };
+        let sorts = vec![["Layer", "Key", "Value"].map(str::to_owned).to_vec()];
+        let look = Look {
+            color: false,
+            width: 80,
+        };
+        let text = tables(&[("get".to_owned(), table)], &sorts, look);
+        assert_eq!(
+            text,
+            "    get: Layer down, Key across, gives Value\n    get | 0\n    ----+--\n    \
+             0   | 0\n    1   | 1\n"
+        );
+        let one = caption("size", &["Layer".to_owned()], "Value");
+        assert_eq!(one, "size: Layer across, gives Value");
     }
 
     #[test]

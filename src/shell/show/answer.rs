@@ -2,7 +2,8 @@
 
 use super::proof::{LONGEST_CHAIN, chain};
 use crate::session::{
-    Answer, FoundAlgebra, Frontier, NormalForm, ProgramFault, ProofHead, Session, Verdict,
+    AlgebraText, Answer, By, FoundAlgebra, Frontier, NormalForm, ProgramFault, ProofHead, Session,
+    Verdict,
 };
 use crate::shell::layout::{Breaker, columns, fold, fold_hanging, hang, heading};
 use crate::shell::problem::{OWN_FAULT, stop_text};
@@ -30,6 +31,17 @@ pub fn ink(verdict: Verdict) -> Ink {
 
 /// An answer with as much of its evidence as is quickly read.
 pub fn answer(answer: &Answer, session: &Session, look: Look, place: Place) -> String {
+    answer_again(answer, session, look, place, false)
+}
+
+/// The same, where the tables of its algebra may have been printed before.
+pub fn answer_again(
+    answer: &Answer,
+    session: &Session,
+    look: Look,
+    place: Place,
+    is_printed: bool,
+) -> String {
     let mut facts = Vec::new();
     if place == Place::Shell {
         facts.push(format!("answer {}", number(answer.number)));
@@ -66,16 +78,69 @@ pub fn answer(answer: &Answer, session: &Session, look: Look, place: Place) -> S
                 text += &normal_forms(normal, session, look);
             }
             if let Some(found) = session.algebra_text(answer) {
-                text += &super::algebra::text(&found, look);
+                let number = answer.algebra.map_or(0, |algebra| algebra.number);
+                text += &super::algebra::text(&found, number, is_printed, look);
+                if place == Place::Shell {
+                    text += &smaller(answer, &found, look);
+                }
             }
         }
         Verdict::Undecided => {
             if let Some(frontier) = &answer.frontier {
                 text += &self::frontier(frontier, look, place);
             }
+            if place == Place::Batch {
+                let longer = (answer.elapsed.as_secs() * 10).max(60);
+                let next = format!("next: the same with --within {longer}s");
+                text += &fold_hanging(&next, look.width, 4, 10);
+            }
         }
     }
     text
+}
+
+/// An algebra that was there before the question need not be the smallest that does: how to look
+/// for a smaller one.
+fn smaller(answer: &Answer, found: &AlgebraText, look: Look) -> String {
+    let is_smallest = answer.algebra.is_some_and(|algebra| algebra.smallest);
+    let total: u32 = found.sizes.iter().map(|(_, size)| size).sum();
+    let least = found.sizes.len() as u32;
+    let is_long = columns(&answer.question) > 60;
+    if is_smallest || answer.by != Some(By::KnownAlgebra) || total <= least + 1 {
+        return String::new();
+    }
+    // With unknowns or a long question the line would not be typed.
+    let how = if is_long || !found.unknowns.is_empty() {
+        String::new()
+    } else {
+        format!(": separate {}, at most {}", answer.question, total - 1)
+    };
+    let text = format!("it was known before; a smaller one may do{how}");
+    fold_hanging(&text, look.width, 4, 8)
+}
+
+/// Why an answer is as it is, in one line; nothing where there is nothing to say.
+pub fn reason(answer: &Answer, session: &Session) -> Option<String> {
+    if let Some(found) = session.algebra_text(answer) {
+        let number = answer.algebra.map_or(0, |algebra| algebra.number);
+        let total: u32 = found.sizes.iter().map(|(_, size)| size).sum();
+        let elements = count(total as usize, "element");
+        let deciding = super::algebra::deciding(&found);
+        return Some(format!("{deciding} (A{number}, {elements})"));
+    }
+    if let Some([left, right]) = &answer.normal {
+        return Some(format!("different normal forms {left} and {right}"));
+    }
+    let head = session.proof_head(answer, 1)?;
+    let mut text = String::new();
+    for (unknown, value) in &answer.values {
+        text += &format!("{unknown} = {value}, ");
+    }
+    text += &format!("proved in {}", count(head.more, "step"));
+    if head.lemmas > 0 {
+        text += &format!(" by {}", count(head.lemmas, "lemma"));
+    }
+    Some(text)
 }
 
 /// The values that were found for unknowns, one line each.

@@ -3,14 +3,24 @@
 use super::Place;
 use super::answer::ink;
 use crate::language::quote_law;
-use crate::session::{ClaimResult, Verdict};
-use crate::shell::layout::{columns, fold, fold_hanging, pad};
+use crate::session::{ClaimResult, Session, Verdict};
+use crate::shell::layout::{columns, cut, fold, fold_hanging, pad};
 use crate::shell::problem::stop_text;
 use crate::shell::quantity::{count, number, show_duration};
 use crate::shell::screen::{Ink, Look};
 
-/// One line for each claim: whether it is as claimed, the answer, the claim, how long it took.
-pub fn claims(results: &[ClaimResult], look: Look, place: Place) -> String {
+/// One line for each claim: whether it is as claimed, the answer, the claim, how long it took; and
+/// why, where it is not as claimed. `file` is the theory's on the command line.
+pub fn claims(
+    results: &[ClaimResult],
+    session: &Session,
+    look: Look,
+    file: Option<&str>,
+) -> String {
+    let place = match file {
+        Some(_) => Place::Batch,
+        None => Place::Shell,
+    };
     let labels: Vec<String> = results.iter().map(label).collect();
     let most = look.width.saturating_sub(TEXT + 24);
     let fitting = labels
@@ -20,8 +30,54 @@ pub fn claims(results: &[ClaimResult], look: Look, place: Place) -> String {
     let column = fitting.max().unwrap_or(0);
     let lines = results.iter().zip(&labels);
     lines
-        .map(|(result, label)| line(result, label, column, look, place))
+        .map(|(result, label)| {
+            let mut text = line(result, label, column, look, place);
+            if result.is_as_claimed() == Some(false) {
+                text += &because(result, session, look, file);
+            }
+            text
+        })
         .collect()
+}
+
+/// Why a claim is not as claimed, and what shows the whole evidence.
+fn because(result: &ClaimResult, session: &Session, look: Look, file: Option<&str>) -> String {
+    let answer = &result.answer;
+    let reason = super::answer::reason(answer, session);
+    let lead = TEXT.min(look.width / 4);
+    let room = look.width.saturating_sub(lead).max(8);
+    let indent = " ".repeat(lead);
+    let mut text = reason.map_or_else(String::new, |reason| {
+        format!("{indent}{}\n", cut(&reason, room))
+    });
+    match file {
+        None => {
+            text += &fold(
+                &format!("proof {} shows more", answer.number),
+                look.width,
+                lead,
+            )
+        }
+        // A line to be copied is not broken, and is left out where it would be too long for that.
+        Some(file) if columns(&answer.question) <= LONGEST => {
+            let (file, question) = (shell_word(file), shell_word(&answer.question));
+            text += &format!("{indent}equable ask {file} {question}\n");
+        }
+        Some(_) => {}
+    }
+    text
+}
+
+/// A question with more columns is not put into a line to be copied.
+const LONGEST: usize = 400;
+
+/// A text as one word of a command line.
+fn shell_word(text: &str) -> String {
+    let is_harmless = |c: char| c.is_alphanumeric() || "_-./:+".contains(c);
+    if !text.is_empty() && !text.starts_with('-') && text.chars().all(is_harmless) {
+        return text.to_owned();
+    }
+    format!("'{}'", text.replace('\'', "'\\''"))
 }
 
 /// Where the text of a claim begins.
@@ -108,4 +164,18 @@ pub fn claims_left(done: usize, all: usize, look: Look) -> String {
         count(all - done, "claim")
     );
     fold(&text, look.width, 0)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn words_of_a_command_line_are_quoted() {
+        assert_eq!(shell_word("theories/group.theory"), "theories/group.theory");
+        assert_eq!(shell_word("x * y = y"), "'x * y = y'");
+        assert_eq!(shell_word("x' = x"), "'x'\\'' = x'");
+        assert_eq!(shell_word("-x"), "'-x'");
+        assert_eq!(shell_word(""), "''");
+    }
 }
