@@ -145,3 +145,15 @@ fn enormous_lines() {
     assert!(matches!(ran.status, 0 | 3), "{}", ran.status);
     assert!(ran.out.contains("equal        answer 1"), "{}", ran.out);
 }
+
+#[test]
+fn the_places_of_one_message_agree() {
+    let place = Place::new();
+    let lines = "infix * 40 left\nconstant e\n\n(e * e = e\n";
+    let ran = place.run(&[], lines);
+    assert_eq!(ran.status, 3);
+    assert!(ran.err.contains("input:4:1"), "{}", ran.err);
+    let notes = ran.err.match_indices("(line ").count();
+    assert_eq!(ran.err.matches("(line 4,").count(), notes, "{}", ran.err);
+    assert!(notes > 0, "{}", ran.err);
+}

@@ -80,3 +80,38 @@ fn normal_and_complete() {
     });
     assert_eq!(complete["order"], order);
 }
+
+#[test]
+fn what_cannot_be_read_is_an_object_too() {
+    let place = Place::new();
+    place.file("group.theory", GROUP);
+    place.file("bad.theory", "constant a\nlaw one: a = b\nlaw two: c = a\n");
+    let files = [
+        "check",
+        "missing.theory",
+        "bad.theory",
+        "group.theory",
+        "--json",
+    ];
+    let ran = place.run(&files, "");
+    assert_eq!(ran.status, 3);
+    let made = lines(&ran.out);
+    assert_eq!(made.len(), 4);
+    assert_eq!(made[0]["file"], "missing.theory");
+    assert_eq!(made[0]["error"]["place"], Value::Null);
+    let text = made[0]["error"]["text"].as_str();
+    assert!(
+        text.is_some_and(|text| text.contains("no theory")),
+        "{}",
+        made[0]
+    );
+    let error = json!({
+        "text": "`b` was never declared", "more": 1,
+        "place": { "source": "bad.theory", "line": 2, "column": 14 },
+    });
+    assert_eq!(made[1], json!({ "file": "bad.theory", "error": error }));
+    assert_eq!(made[2]["verdict"], "equal");
+    let ran = place.run(&["ask", "group.theory", "x * = e", "--json"], "");
+    assert_eq!(ran.status, 3);
+    assert_eq!(lines(&ran.out)[0]["error"]["place"]["source"], "question");
+}

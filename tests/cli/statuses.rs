@@ -154,3 +154,127 @@ fn what_is_not_saved_is_said() {
     let ran = place.run(&[], "new gauges\nconstant a\nnew other\nquit\n");
     assert!(ran.err.contains(said), "{}", ran.err);
 }
+
+#[test]
+fn options_may_stand_before_the_word_for_the_task() {
+    let place = Place::new();
+    place.file("group.theory", GROUP);
+    for arguments in [
+        &["--plain", "check", "group.theory"][..],
+        &["--within", "5s", "--json", "check", "group.theory"],
+        &["--json=full", "ask", "group.theory", "x * e = x"],
+        &["--evidence", "out", "check", "--plain", "group.theory"],
+        &["--json", "verify", "out/group-flip.json"],
+    ] {
+        let ran = place.run(arguments, "");
+        assert_eq!(ran.status, 0, "{arguments:?}: {}{}", ran.out, ran.err);
+    }
+    for (arguments, said) in [
+        (
+            &["--json", "group.theory"][..],
+            "the shell has no option --json",
+        ),
+        (
+            &["run", "-", "--within", "5s"],
+            "run has no option --within",
+        ),
+        (
+            &["--evidence", "out", "normal", "group.theory", "x"],
+            "normal has no option --evidence",
+        ),
+        (&["verify", "--json=full", "a"], "verify writes no evidence"),
+        (&["group.theory", "check", "group.theory"], "stands before"),
+    ] {
+        let ran = place.run(arguments, "");
+        assert_eq!(ran.status, 3, "{arguments:?}: {}{}", ran.out, ran.err);
+        assert!(ran.err.contains(said), "{arguments:?}: {}", ran.err);
+    }
+}
+
+#[test]
+fn what_is_not_as_claimed_says_why() {
+    let place = Place::new();
+    let laws = "variable x y z\nconstant a b\nfunction f 1\nfunction g 2\n\
+                law same: f(f(x)) = f(x)\nlaw first: g(x, y) = g(y, x)\n";
+    place.file(
+        "fleet.theory",
+        format!("{laws}claim high: f(x) != f(f(x))\nclaim low: g(x, a) = x\n"),
+    );
+    let ran = place.run(&["check", "fleet.theory"], "");
+    assert_eq!(ran.status, 1, "{}{}", ran.out, ran.err);
+    for said in [
+        "             proved in 1 step\n             equable ask fleet.theory 'f(x) = f(f(x))'\n",
+        "equable ask fleet.theory 'g(x, a) = x'\n",
+    ] {
+        assert!(ran.out.contains(said), "{said}: {}", ran.out);
+    }
+    let ran = place.run(&["fleet.theory"], "check\n");
+    assert!(ran.out.contains("proof 1 shows more"), "{}", ran.out);
+    let ran = place.run(&["ask", "fleet.theory", "find z: f(z) = f(g(a, b))"], "");
+    assert_eq!(ran.status, 0, "{}{}", ran.out, ran.err);
+}
+
+#[test]
+fn what_is_undecided_says_what_to_try() {
+    let place = Place::new();
+    place.file("open.theory", OPEN);
+    let ask = |question| place.run(&["ask", "open.theory", question, "--within", "300ms"], "");
+    for question in ["f(g(x)) = x", "find y: f(y) = x"] {
+        let ran = ask(question);
+        assert_eq!(ran.status, 2, "{}{}", ran.out, ran.err);
+        let said = "next: the same with --within 60s";
+        assert!(ran.out.contains(said), "{}", ran.out);
+    }
+    let lines = "find y: f(y) = x within 300ms\nevidence 1 a.json\n";
+    let ran = place.run(&["open.theory"], lines);
+    assert!(ran.err.contains("find x: s = t within 60s"), "{}", ran.err);
+    let ran = place.run(&["complete", "open.theory", "--within", "300ms"], "");
+    assert_eq!(ran.status, 2);
+    assert!(
+        ran.out.lines().count() < 12 && ran.out.contains("--all prints"),
+        "{}",
+        ran.out
+    );
+    let all = ["complete", "open.theory", "--within", "300ms", "--all"];
+    let ran = place.run(&all, "");
+    assert!(
+        ran.out.contains("\nf(f(") || ran.out.contains("x * x -> x"),
+        "{}",
+        ran.out
+    );
+}
+
+#[test]
+fn an_algebra_that_was_printed_is_only_named_again() {
+    let place = Place::new();
+    let theory = "sort Layer Value\nconstant a b : Layer\nfunction get : Layer -> Value\n\
+                  function lay : Layer Layer -> Layer\nvariable x y z : Layer\n\
+                  law lay(x, lay(y, z)) = lay(lay(x, y), z)\nlaw lay(x, x) = x\n";
+    place.file("sorts.theory", theory);
+    let lines = "get(x) = get(y)\nget(x) = get(a)\nlay(a, b) = lay(b, a)\nproof 2\n";
+    let ran = place.run(&["sorts.theory"], lines);
+    assert_eq!(ran.status, 0, "{}{}", ran.out, ran.err);
+    assert!(
+        ran.out.contains("get: Layer across, gives Value\n"),
+        "{}",
+        ran.out
+    );
+    assert!(
+        ran.out
+            .contains("lay: Layer down, Layer across, gives Layer\n"),
+        "{}",
+        ran.out
+    );
+    let parts: Vec<&str> = ran.out.split("not equal").collect();
+    assert_eq!(parts.len(), 5, "{}", ran.out);
+    assert!(
+        parts[2].contains("A1 is shown above") && !parts[2].contains('|'),
+        "{}",
+        parts[2]
+    );
+    assert!(
+        parts[4].contains('|'),
+        "proof shows the whole: {}",
+        parts[4]
+    );
+}

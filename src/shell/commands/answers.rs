@@ -3,7 +3,7 @@
 use super::{Command, Group, Operand};
 use crate::session::Answer;
 use crate::shell::desk::Shell;
-use crate::shell::layout::{Breaker, columns, cut};
+use crate::shell::layout::{Breaker, columns, cut, pad};
 use crate::shell::line::Line;
 use crate::shell::problem::Problem;
 use crate::shell::quantity::show_duration;
@@ -36,8 +36,12 @@ fn run(shell: &mut Shell, line: Line<'_>) -> Result<(), Problem> {
         shell.out("No answers yet. Type an equation, such as x * e = x.\n");
         return Ok(());
     }
+    // Times stand below each other as far as the questions leave room for that.
+    let widths = answers.iter().map(|answer| columns(&answer.question));
+    let beside = look.width.saturating_sub(COLUMN + 3 + TIME);
+    let column = widths.filter(|width| *width <= beside).max().unwrap_or(0);
     let text: String = (answers.iter())
-        .map(|answer| entry(answer, look, breaker))
+        .map(|answer| entry(answer, column, look, breaker))
         .collect();
     shell.out(&text);
     Ok(())
@@ -47,12 +51,14 @@ fn run(shell: &mut Shell, line: Line<'_>) -> Result<(), Problem> {
 const COLUMN: usize = 18;
 /// At least so many columns are left for a question beside its verdict.
 const ROOM: usize = 30;
+/// For a time as most of them are.
+const TIME: usize = 12;
 /// A question is cut behind so many lines.
 const LINES: usize = 3;
 
 /// One answer: its number, the verdict, the question in lines that fit, and the time. Colours are
 /// put on last, for a line is broken by what it looks like.
-fn entry(answer: &Answer, look: Look, breaker: Breaker<'_>) -> String {
+fn entry(answer: &Answer, column: usize, look: Look, breaker: Breaker<'_>) -> String {
     let mut facts = show_duration(answer.elapsed);
     if answer.outdated {
         facts += ", by earlier laws";
@@ -69,7 +75,14 @@ fn entry(answer: &Answer, look: Look, breaker: Breaker<'_>) -> String {
         // A term without a place to break it goes over the edge, which a cut prevents.
         lines.push(cut(&question[piece], room));
     }
-    let beside = lines.len() == 1 && columns(&lines[0]) + 3 + columns(&facts) <= room;
+    let mut beside = false;
+    if let [line] = &mut lines[..] {
+        let padded = pad(line, column);
+        beside = columns(&padded) + 3 + columns(&facts) <= room;
+        if beside {
+            *line = padded;
+        }
+    }
     let ink = show::ink(answer.verdict);
     let mut text = format!("{number}   {}", look.ink(ink, verdict));
     text += &if is_wide {
@@ -106,13 +119,14 @@ mod tests {
             let breaker = Breaker::new(&shell.session.theory().signature);
             let plain = entry(
                 &answer,
+                0,
                 Look {
                     color: false,
                     width,
                 },
                 breaker,
             );
-            let colored = entry(&answer, Look { color: true, width }, breaker);
+            let colored = entry(&answer, 0, Look { color: true, width }, breaker);
             assert!(colored.contains("\x1b[") && !colored.contains('\u{241b}'));
             let mut bare = String::new();
             for part in colored.split('\x1b') {
@@ -131,7 +145,7 @@ mod tests {
             color: false,
             width: 40,
         };
-        let text = entry(answer, look, breaker);
+        let text = entry(answer, 0, look, breaker);
         assert!(text.lines().all(|line| columns(line) <= 40), "{text}");
     }
 }

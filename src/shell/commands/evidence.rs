@@ -17,9 +17,29 @@ pub const COMMAND: Command = Command {
         ("evidence 3 FILE", "write that of answer 3"),
     ],
     page: "Writes the evidence of an answer as one JSON object, so that anyone can check the answer \
-           with a program of their own: a proof, a finite algebra, or a complete rule set. \
-           equable verify FILE, on the command line, runs the checkers of this program on it, \
-           without the search. The file is written whole or not at all.",
+           with a program of their own. equable verify FILE, on the command line, runs the checkers \
+           of this program on it, without the search; with --theory FILE it compares the laws too. \
+           The file is written whole or not at all.\n\n\
+           kind is proof, algebra or complete. terms lists every term once; everywhere else a term \
+           is its place in that list, counted from 0. An entry is a variable, \"x\", or a symbol with \
+           the places of its arguments, which stand before it: [\"*\", 0, 1]; a constant is [\"e\"]; a \
+           sign that is prefix and infix is -/1 and -/2. laws are the equations taken for granted, \
+           each with name, left and right; with sorts, types has those of each symbol, the result \
+           last, and variables that of each variable.\n\n\
+           A proof has lemmas, each of which may use those before it, and a claim: left, right and \
+           steps. A step goes from the term before it to the term to: by names a law or lemma, way \
+           is forward (from left to right) or backward, with says what stands for each of its \
+           variables, and at is where: the number of the argument at each level, counted from 0, \
+           where printed proofs count from 1; [] is the whole term. witness has the values that a \
+           find has found.\n\n\
+           An algebra has sorts, with the number of elements of each (0, 1, …), and tables: [[0, 1], \
+           [1, 0]] has the value for first argument 0 and second argument 1 in its first row, \
+           second place; a constant is a number. Every law holds for all values of its variables. \
+           With those in with, the two sides of the claim have the two values; with unknowns, they \
+           differ for all values of these.\n\n\
+           A complete set has order, rules, each with name, left, right and oriented, and a lemma of \
+           the same name that proves it. The claim, if there is one, has the two normal forms.\n\n\
+           help json is about the answers of --json.",
     example: "open group\nx * i(x) = e\nevidence 1 inverse.json",
     operand: Operand::Files,
     run,

@@ -39,6 +39,29 @@ pub const TOPICS: &[Page] = &[
         example: "constant \"new\"\npostfix ' 80\n\"new\"' = \"new\"",
     },
     Page {
+        word: "json",
+        forms: &[
+            ("equable check --json FILE", "one JSON object a line"),
+            ("--json=full", "the same, with the evidence inside"),
+        ],
+        page: "ask and check: file, claim (its name, or null), question, verdict (equal, not equal, \
+               undecided), expected (equal or not equal), by, seconds, evidence (null, the path that \
+               --evidence gave, or the evidence itself); where there are some, values (of the unknowns \
+               of find), normal (the two normal forms that differ), and rules and pairs (how far an \
+               undecided search came).\n\n\
+               by says how it was settled: table (both sides had been rewritten before, to the same \
+               term), normal forms (both sides were rewritten to the same term), proof (a search \
+               found one), complete (the rules are complete and the normal forms differ), known \
+               algebra (found for an earlier question), algebra (searched for), or null.\n\n\
+               normal: file, term, normal, steps, seconds, complete, checked, finished. complete: \
+               file, complete, rules, oriented, order, pairs, seconds, list, evidence. verify: file, \
+               outcome (accepted, rejected, too costly to check), kind, claim, unknowns, laws (how \
+               many), place, reason, seconds. A file with which nothing can be done: file and error, \
+               with text, place (source, line and column, or null) and more (how many further \
+               faults). help evidence is about the evidence.",
+        example: "",
+    },
+    Page {
         word: "properties",
         forms: &[("law + is associative commutative", "several laws at once")],
         page: "Each word states one or more laws, which are named after it, such as + associative. \

@@ -109,14 +109,13 @@ fn smaller(answer: &Answer, found: &AlgebraText, look: Look) -> String {
     if is_smallest || answer.by != Some(By::KnownAlgebra) || total <= least + 1 {
         return String::new();
     }
+    let mut text = fold("it was known before; a smaller one may do", look.width, 4);
     // With unknowns or a long question the line would not be typed.
-    let how = if is_long || !found.unknowns.is_empty() {
-        String::new()
-    } else {
-        format!(": separate {}, at most {}", answer.question, total - 1)
-    };
-    let text = format!("it was known before; a smaller one may do{how}");
-    fold_hanging(&text, look.width, 4, 8)
+    if !is_long && found.unknowns.is_empty() {
+        let next = format!("next: separate {}, at most {}", answer.question, total - 1);
+        text += &fold_hanging(&next, look.width, 4, 10);
+    }
+    text
 }
 
 /// Why an answer is as it is, in one line; nothing where there is nothing to say.

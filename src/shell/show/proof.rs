@@ -204,7 +204,7 @@ mod tests {
   = (factory ▷ x) ▷ x
         by base, right to
         left, at 1
-  = x        once
+  = x  by once
 "
         );
         for width in 1..60 {
@@ -242,9 +242,9 @@ mod tests {
         assert_eq!(
             text,
             "lemma 1: x ▷ x = x   (1 step)
-lemma 2: f(x, y) ▷ f(x, y) ▷ … = x   (1 step)
-lemma 3: x = f(x, y) ▷ f(x, y) ▷ …   (1 step)
-lemma 4: f(x, y) ▷ f… = f(x, y) ▷ …   (1 step)
+lemma 2: f(x, y) ▷ f(x, y) ▷ f(x, … = x   (1 step)
+lemma 3: x = f(x, y) ▷ f(x, y) ▷ f(x, …   (1 step)
+lemma 4: f(x, y) ▷ f(x… = f(x, y) ▷ f(…   (1 step)
 x = x   (0 steps)
 "
         );
