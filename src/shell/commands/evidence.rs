@@ -24,7 +24,8 @@ pub const COMMAND: Command = Command {
            is its place in that list, counted from 0. An entry is a variable, \"x\", or a symbol with \
            the places of its arguments, which stand before it: [\"*\", 0, 1]; a constant is [\"e\"]; a \
            sign that is prefix and infix is -/1 and -/2. laws are the equations taken for granted, \
-           each with name, left and right; with sorts, types has those of each symbol, the result \
+           each with name, left and right; definitions are those of symbols that the program has \
+           added; with sorts, types has those of each symbol, the result \
            last, and variables that of each variable.\n\n\
            A proof has lemmas, each of which may use those before it, and a claim: left, right and \
            steps. A step goes from the term before it to the term to: by names a law or lemma, way \
@@ -38,7 +39,9 @@ pub const COMMAND: Command = Command {
            With those in with, the two sides of the claim have the two values; with unknowns, they \
            differ for all values of these.\n\n\
            A complete set has order, rules, each with name, left, right and oriented, and a lemma of \
-           the same name that proves it. The claim, if there is one, has the two normal forms.\n\n\
+           the same name that proves it; one that is not oriented is used both ways, on instances \
+           that decrease. The claim, if there is one, has the two normal forms; its variables count \
+           as constants below every symbol, smaller the earlier in the alphabet.\n\n\
            help json is about the answers of --json.",
     example: "open group\nx * i(x) = e\nevidence 1 inverse.json",
     operand: Operand::Files,

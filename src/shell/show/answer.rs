@@ -135,6 +135,9 @@ pub fn reason(answer: &Answer, session: &Session) -> Option<String> {
     for (unknown, value) in &answer.values {
         text += &format!("{unknown} = {value}, ");
     }
+    if head.more == 0 {
+        return Some(text + "the two sides are the same term");
+    }
     text += &format!("proved in {}", count(head.more, "step"));
     if head.lemmas > 0 {
         text += &format!(" by {}", count(head.lemmas, "lemma"));
