@@ -23,7 +23,7 @@ pub(super) const CHECK_LIMIT: WorkLimit = WorkLimit::DEFAULT;
 const HEAD_START: Duration = Duration::from_millis(25);
 /// For how long the search for an algebra has a core for itself: most that are found at all are
 /// found by then.
-const ALGEBRAS_FIRST: Duration = Duration::from_secs(2);
+pub(super) const ALGEBRAS_FIRST: Duration = Duration::from_secs(2);
 /// A theory that has formed more pairs than this without being complete is not easy.
 const EASY: u64 = 10_000;
 

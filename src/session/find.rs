@@ -121,6 +121,7 @@ impl Session {
         let halt = Arc::new(AtomicBool::new(false));
         let caught_one = Arc::new(AtomicBool::new(false));
         let mut limits = work.algebra_limits(halt.clone());
+        limits.share_from(Instant::now() + super::ask::ALGEBRAS_FIRST);
         let (ended, caught) = std::thread::scope(|scope| {
             let done = caught_one.clone();
             let hunter = scope.spawn(move || {

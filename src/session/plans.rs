@@ -52,8 +52,18 @@ const HELPERS: [Helper; 10] = [
     aimed(4, [4, 1, 3, 1]),
 ];
 
-/// The helpers for a theory, the first one first.
-pub(super) fn helpers(theory: &Theory) -> Vec<Plan> {
+/// The same for a question that has no subterms to aim at, as one with unknowns has not.
+const UNAIMED: [Helper; 5] = [
+    open(0, [1, 1, 1, 1]),
+    open(0, [2, 1, 2, 2]),
+    open(1, [1, 1, 1, 1]),
+    open(0, [4, 1, 3, 1]),
+    open(2, [1, 1, 1, 1]),
+];
+
+/// The helpers for a theory, the first one first; with those that are aimed only if the question
+/// can be aimed at.
+pub(super) fn helpers(theory: &Theory, can_be_aimed: bool) -> Vec<Plan> {
     let laws: Vec<_> = theory.laws.iter().map(|l| (l.left, l.right)).collect();
     let orders: Vec<Candidate> = candidates(&theory.bank, &laws, &[]);
     let plan = |helper: &Helper| {
@@ -74,5 +84,6 @@ pub(super) fn helpers(theory: &Theory) -> Vec<Plan> {
             aimed: helper.aimed,
         })
     };
-    HELPERS.iter().filter_map(plan).collect()
+    let helpers: &[Helper] = if can_be_aimed { &HELPERS } else { &UNAIMED };
+    helpers.iter().filter_map(plan).collect()
 }

@@ -5,6 +5,7 @@
 //! questions are settled by an order that never completes, so all engines take part in a search.
 
 use super::control::Work;
+use super::goal::Aim;
 use super::plans;
 use super::race::{Course, race};
 use super::runner::Runner;
@@ -310,7 +311,8 @@ impl Workers {
                 !plan.aimed && same && runner.strategy == plan.strategy
             })
         };
-        let mut helpers = plans::helpers(theory);
+        let can_be_aimed = question.is_some_and(|q| Aim::new(theory, q).is_some());
+        let mut helpers = plans::helpers(theory, can_be_aimed);
         helpers.retain(|plan| !known(plan));
         // The next one is the last one: helpers and own orders by turns.
         let mut own = std::mem::take(&mut self.planned).into_iter().rev();
