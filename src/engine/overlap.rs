@@ -240,7 +240,8 @@ impl Engine {
     /// The priority of a pair with these sides.
     pub(super) fn weight_of(&mut self, left: TermId, right: TermId) -> u32 {
         let bank = &self.system.bank;
-        if let Some(equality) = self.equality {
+        let inside = self.weigher.strategy.inside;
+        if let Some(equality) = self.equality.filter(|_| inside) {
             let whole = [left, right]
                 .into_iter()
                 .find(|side| bank.as_symbol(*side) == Some(equality));
@@ -270,7 +271,8 @@ impl Engine {
             return None;
         }
         let (side, outer_right) = self.system.rule(outer.rule).sides(outer.backward);
-        if self.equality.is_some() && self.system.bank.as_symbol(side) == self.equality {
+        let inside = self.weigher.strategy.inside && self.equality.is_some();
+        if inside && self.system.bank.as_symbol(side) == self.equality {
             return None;
         }
         let (_, inner_right) = self.system.rule(inner.rule).sides(inner.backward);

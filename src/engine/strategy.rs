@@ -23,6 +23,9 @@ pub struct Strategy {
     pub eager: u32,
     /// Every this many choices the oldest pair is taken instead of the best one.
     pub oldest_every: u64,
+    /// Does a pair with eq(s, t), where eq is the equality of a question with unknowns, weigh what
+    /// s = t would weigh, and come first if s and t unify?
+    pub inside: bool,
     /// Which techniques simplify and delete what.
     pub arrows: Arrows,
 }
@@ -38,6 +41,7 @@ impl Default for Strategy {
             foreign: 1,
             eager: 4,
             oldest_every: 10,
+            inside: true,
             arrows: Arrows::USUAL,
         }
     }

@@ -14,6 +14,7 @@ struct Helper {
     foreign: u32,
     connected: bool,
     aimed: bool,
+    inside: bool,
 }
 
 const fn aimed(order: usize, [larger, smaller, variable, foreign]: [u32; 4]) -> Helper {
@@ -25,6 +26,7 @@ const fn aimed(order: usize, [larger, smaller, variable, foreign]: [u32; 4]) -> 
         foreign,
         connected: true,
         aimed: true,
+        inside: true,
     }
 }
 
@@ -34,6 +36,13 @@ const fn open(order: usize, weights: [u32; 4]) -> Helper {
         connected: false,
         aimed: false,
         ..aimed(order, weights)
+    }
+}
+
+const fn outside(order: usize, weights: [u32; 4]) -> Helper {
+    Helper {
+        inside: false,
+        ..open(order, weights)
     }
 }
 
@@ -53,12 +62,13 @@ const HELPERS: [Helper; 10] = [
 ];
 
 /// The same for a question that has no subterms to aim at, as one with unknowns has not.
-const UNAIMED: [Helper; 5] = [
+const UNAIMED: [Helper; 6] = [
+    outside(0, [1, 1, 1, 1]),
     open(0, [1, 1, 1, 1]),
     open(0, [2, 1, 2, 2]),
-    open(1, [1, 1, 1, 1]),
+    outside(1, [1, 1, 1, 1]),
     open(0, [4, 1, 3, 1]),
-    open(2, [1, 1, 1, 1]),
+    outside(2, [1, 1, 1, 1]),
 ];
 
 /// The helpers for a theory, the first one first; with those that are aimed only if the question
@@ -74,6 +84,7 @@ pub(super) fn helpers(theory: &Theory, can_be_aimed: bool) -> Vec<Plan> {
                 smaller: helper.smaller,
                 variable: helper.variable,
                 foreign: helper.foreign,
+                inside: helper.inside,
                 arrows: match helper.connected {
                     true => Arrows::USUAL.with(Arrow::Chosen, Technique::Connected),
                     false => Arrows::USUAL,
