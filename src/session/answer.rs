@@ -1,8 +1,9 @@
 //! Answers.
 
-use crate::proof::Evidence;
+use crate::proof::{Evidence, Outcome};
 use crate::rewrite::Stopped;
 use std::sync::Arc;
+use std::sync::atomic::{AtomicBool, Ordering};
 use std::time::Duration;
 
 /// What was found out about a question. There is no fourth.
@@ -133,6 +134,35 @@ pub struct Answer {
 }
 
 impl Answer {
+    /// Takes what the checker said of the evidence for a verdict; only what it accepted settles
+    /// the question. Returns what stands in the way otherwise.
+    pub(super) fn judged(
+        &mut self,
+        outcome: Outcome,
+        evidence: Evidence,
+        (verdict, by): (Verdict, By),
+        stop: &AtomicBool,
+    ) -> Option<String> {
+        let remark = match outcome {
+            Outcome::Accepted => {
+                self.fault = None;
+                self.verdict = verdict;
+                self.by = Some(by);
+                self.evidence = Some(evidence);
+                return None;
+            }
+            Outcome::TooCostly if stop.load(Ordering::Relaxed) => {
+                "evidence was found; checking it was interrupted"
+            }
+            Outcome::TooCostly => "evidence was found, but it is too costly to check",
+            Outcome::Rejected { place, reason } => {
+                self.fault = Some((ProgramFault { place, reason }, evidence));
+                "the checker rejected the evidence: a fault of this program"
+            }
+        };
+        Some(remark.to_owned())
+    }
+
     /// A question that is not settled.
     pub(super) fn open(number: u32, question: String, laws: Arc<str>) -> Answer {
         Answer {

@@ -6,7 +6,7 @@ use super::runner::Compared;
 use super::sheet::Sheet;
 use super::subject::is_about;
 use super::workers::Ended;
-use super::{Answer, By, FoundAlgebra, Frontier, ProgramFault, Session, SessionFault, Verdict};
+use super::{Answer, By, FoundAlgebra, Frontier, Session, SessionFault, Verdict};
 use crate::algebra::Counterexample;
 use crate::proof::{self, Evidence, WorkLimit};
 use crate::rewrite::{Limits, Stopped};
@@ -389,25 +389,7 @@ impl Session {
         let begun = Instant::now();
         let outcome = self.verify(&evidence, Some(question), stop);
         answer.checking += begun.elapsed();
-        match outcome {
-            proof::Outcome::Accepted => {
-                answer.fault = None;
-                answer.verdict = verdict;
-                answer.by = Some(by);
-                answer.evidence = Some(evidence);
-                None
-            }
-            proof::Outcome::TooCostly if stop.load(Ordering::Relaxed) => {
-                Some("evidence was found; checking it was interrupted".to_owned())
-            }
-            proof::Outcome::TooCostly => {
-                Some("evidence was found, but it is too costly to check".to_owned())
-            }
-            proof::Outcome::Rejected { place, reason } => {
-                answer.fault = Some((ProgramFault { place, reason }, evidence));
-                Some("the checker rejected the evidence: a fault of this program".to_owned())
-            }
-        }
+        answer.judged(outcome, evidence, (verdict, by), stop)
     }
 
     /// Is the evidence about the theory and the question, and accepted by the checker?

@@ -11,7 +11,7 @@ use super::shorten::shorten;
 use super::subject::is_about_find;
 use super::witness;
 use super::workers::{Ended, Workers};
-use super::{Answer, By, FoundAlgebra, Frontier, ProgramFault, Session, SessionFault, Verdict};
+use super::{Answer, By, FoundAlgebra, Frontier, Session, SessionFault, Verdict};
 use crate::algebra::Counterexample;
 use crate::language::{Diagnostic, Find, parse_find, quote_symbol};
 use crate::proof::{self, Evidence};
@@ -247,28 +247,16 @@ impl Session {
             },
         };
         answer.checking = begun.elapsed();
-        match outcome {
-            proof::Outcome::Accepted => {
-                answer.verdict = match by {
-                    By::Proof => Verdict::Equal,
-                    _ => Verdict::NotEqual,
-                };
-                answer.by = Some(by);
-                answer.values = self.values(&evidence);
-                answer.evidence = Some(evidence);
-                None
-            }
-            proof::Outcome::TooCostly if stop.load(Ordering::Relaxed) => {
-                Some("evidence was found; checking it was interrupted".to_owned())
-            }
-            proof::Outcome::TooCostly => {
-                Some("evidence was found, but it is too costly to check".to_owned())
-            }
-            proof::Outcome::Rejected { place, reason } => {
-                answer.fault = Some((ProgramFault { place, reason }, evidence));
-                Some("the checker rejected the evidence: a fault of this program".to_owned())
-            }
-        }
+        let verdict = match by {
+            By::Proof => Verdict::Equal,
+            _ => Verdict::NotEqual,
+        };
+        let remark = answer.judged(outcome, evidence, (verdict, by), stop);
+        answer.values = match &answer.evidence {
+            Some(evidence) => self.values(evidence),
+            None => Vec::new(),
+        };
+        remark
     }
 
     /// The values of the unknowns as text.
